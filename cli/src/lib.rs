@@ -1,0 +1,3 @@
+//! Section files in; tables, figures and results out. Knows nothing of numerics.
+
+pub mod section;

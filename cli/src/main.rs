@@ -1,0 +1,3 @@
+//! The `sectile` command.
+
+fn main() {}

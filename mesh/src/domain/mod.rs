@@ -1,0 +1,47 @@
+//! The valid planar regions that a section consists of: a planar graph of sides, each knowing which
+//! piece lies on either hand.
+
+pub mod fault;
+
+use crate::outline::piece::Piece;
+use crate::outline::side::Arc;
+use crate::point::Point;
+use fault::Fault;
+
+/// A side of the planar graph; two sides meet only at their ends.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct DomainSide {
+    /// Index of its first point.
+    pub from: u32,
+    /// Index of its last point (equal to `from` never: full circles are split).
+    pub to: u32,
+    /// The arc that it follows; `None`: it is straight.
+    pub arc: Option<Arc>,
+    /// The piece to the left when going from `from` to `to`; `None`: no material.
+    pub left: Option<u32>,
+    /// The piece to the right.
+    pub right: Option<u32>,
+}
+
+/// Valid planar regions: pieces that share sides, or parts of sides, are one connected region.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Domain {
+    /// The points where sides meet.
+    pub points: Vec<Point>,
+    /// The sides; those with material on both hands are interfaces between pieces.
+    pub sides: Vec<DomainSide>,
+    /// The name of each piece.
+    pub piece_names: Vec<String>,
+    /// The material index of each piece.
+    pub piece_materials: Vec<usize>,
+    /// Number of separate connected parts; torsion needs exactly one.
+    pub parts: usize,
+}
+
+/// Makes one valid domain of the pieces: shared sides and parts of sides become interfaces.
+///
+/// # Errors
+/// Every fault found.
+pub fn build(_pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
+    unreachable!("placeholder")
+}

@@ -1,0 +1,119 @@
+//! The solved section.
+
+use sectile_mesh::Point;
+use sectile_mesh::domain::Domain;
+use sectile_mesh::mesh::Mesh;
+
+use crate::figure::Figure;
+use crate::material::Material;
+use crate::quantity::Quantity;
+
+/// What the adaptive loop aims at.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Settings {
+    /// Half-width of the bounds over the value, for every figure that is not exact.
+    pub tolerance: f64,
+    /// Order of the elements; `None`: the default.
+    pub order: Option<usize>,
+    /// The loop stops before a mesh whose larger system has more unknowns than this.
+    pub max_unknowns: usize,
+}
+
+/// One turn of the adaptive loop.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Level {
+    /// Triangles.
+    pub triangles: usize,
+    /// Unknowns of the larger of the two systems.
+    pub unknowns: usize,
+    /// The figure that is farthest from its tolerance.
+    pub worst: Quantity,
+    /// Its half-width over its scale (1e-4: reached a tolerance of 1e-4).
+    pub worst_error: f64,
+}
+
+/// Wall-clock seconds by stage.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct Timings {
+    /// Triangulation and bisection.
+    pub mesh: f64,
+    /// Fill-reducing ordering.
+    pub order: f64,
+    /// Element matrices and assembly.
+    pub assemble: f64,
+    /// Factorisation.
+    pub factor: f64,
+    /// Triangular solves.
+    pub solve: f64,
+    /// Particular fluxes, gaps, bounds and properties.
+    pub bounds: f64,
+}
+
+/// Something that the reader must know.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Note {
+    /// Its kind, stable for programs: `sharp-corner`, `tolerance-not-reached`, `separate-parts`, …
+    pub kind: &'static str,
+    /// What it says.
+    pub text: String,
+    /// Where, in the axes of the section file.
+    pub at: Option<Point>,
+}
+
+/// A solved section: mesh, fields and properties. Lengths are in the unit of the domain.
+#[derive(Clone, Debug)]
+pub struct Solution {
+    /// The last mesh.
+    pub mesh: Mesh,
+    /// Order of the elements.
+    pub order: usize,
+    /// The turns of the adaptive loop.
+    pub levels: Vec<Level>,
+    /// Whether every figure met the tolerance.
+    pub reached: bool,
+    /// The properties in the order of [`Quantity::ALL`]; those that do not apply are absent.
+    pub properties: Vec<(Quantity, Figure)>,
+    /// Findings.
+    pub notes: Vec<Note>,
+    /// Seconds by stage.
+    pub timings: Timings,
+}
+
+impl Solution {
+    /// A property, where it applies.
+    #[must_use]
+    pub fn get(&self, quantity: Quantity) -> Option<Figure> {
+        self.properties
+            .iter()
+            .find(|(q, _)| *q == quantity)
+            .map(|(_, f)| *f)
+    }
+}
+
+/// Why a section cannot be solved.
+#[derive(Debug, thiserror::Error, PartialEq)]
+pub enum SolveError {
+    /// The mesh could not be made.
+    #[error("the section could not be meshed: {0}")]
+    Mesh(String),
+    /// A factorisation broke down.
+    #[error("the linear system could not be factorised: {0}")]
+    Factor(String),
+    /// A setting is out of range.
+    #[error("{0}")]
+    Setting(String),
+}
+
+/// Solves a section: the adaptive loop until every figure meets the tolerance or the unknowns run
+/// out. `materials` are indexed by [`Domain::piece_materials`]; `progress` is called after each level.
+///
+/// # Errors
+/// See [`SolveError`].
+pub fn solve(
+    _domain: &Domain,
+    _materials: &[Material],
+    _settings: &Settings,
+    _progress: &mut dyn FnMut(&Level),
+) -> Result<Solution, SolveError> {
+    Err(SolveError::Mesh("not built yet".into()))
+}
