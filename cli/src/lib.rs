@@ -1,3 +1,4 @@
 //! Section files in; tables, figures and results out. Knows nothing of numerics.
 
 pub mod section;
+pub mod write;

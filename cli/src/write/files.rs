@@ -1,0 +1,321 @@
+//! Writing an output folder: whole files or none, and never over another section's results.
+//!
+//! `results.json` says in `source` which section file a folder belongs to, relative to the folder, so
+//! that it holds wherever the program is started and after both are moved together.
+
+use std::fs;
+use std::io::{self, Write};
+use std::path::{Component, Path, PathBuf};
+
+/// The file that tells whose folder it is.
+const RESULTS: &str = "results.json";
+
+/// Why an output folder was not written.
+#[derive(Debug, thiserror::Error)]
+pub enum WriteError {
+    /// The folder holds results of another section file.
+    #[error("the folder {} holds the results of another section file, {owner}; nothing was written. Choose another folder with --out, or remove this one", .folder.display())]
+    OtherSection {
+        /// The folder.
+        folder: PathBuf,
+        /// The section file that its results name.
+        owner: String,
+    },
+    /// The folder holds a file of the same name that is not known to be ours.
+    #[error("the file {} is in the way and was not written for this section; nothing was written. Choose another folder with --out, or remove the file", .path.display())]
+    InTheWay {
+        /// The file.
+        path: PathBuf,
+    },
+    /// The system refused.
+    #[error("{} could not be {what}: {source}", .path.display())]
+    System {
+        /// The file or folder.
+        path: PathBuf,
+        /// `made`, `read`, `written` or `put in its place`.
+        what: &'static str,
+        /// The system's reason.
+        source: io::Error,
+    },
+}
+
+/// What to write as `source` in a folder's `results.json`: the section file relative to the folder,
+/// with `/` between names; its absolute path where the two have no common root. The folder need not
+/// exist yet.
+///
+/// # Errors
+/// The section file does not exist, or the current folder is unknown.
+pub fn source_from(folder: &Path, section_file: &Path) -> Result<String, WriteError> {
+    let refused = |path: &Path| {
+        let path = path.to_path_buf();
+        move |source| WriteError::System {
+            path,
+            what: "read",
+            source,
+        }
+    };
+    let target = section_file.canonicalize().map_err(refused(section_file))?;
+    let base = resolve(folder).map_err(refused(folder))?;
+    let (target, base): (Vec<_>, Vec<_>) =
+        (target.components().collect(), base.components().collect());
+    let common = target.iter().zip(&base).take_while(|(a, b)| a == b).count();
+    let name = |c: &Component| c.as_os_str().to_string_lossy().into_owned();
+    if common == 0 {
+        let path: PathBuf = target.iter().collect();
+        return Ok(path.to_string_lossy().into_owned());
+    }
+    let mut parts = vec!["..".to_string(); base.len() - common];
+    parts.extend(target[common..].iter().map(name));
+    Ok(parts.join("/"))
+}
+
+/// The absolute path of a folder of which only the first part may exist.
+fn resolve(folder: &Path) -> io::Result<PathBuf> {
+    let absolute = std::path::absolute(folder)?;
+    let mut tail = Vec::new();
+    let mut head = absolute.as_path();
+    loop {
+        if let Ok(found) = head.canonicalize() {
+            let mut path = found;
+            path.extend(tail.iter().rev());
+            return Ok(path);
+        }
+        match (head.parent(), head.file_name()) {
+            (Some(parent), Some(name)) => {
+                tail.push(name.to_os_string());
+                head = parent;
+            }
+            _ => return Ok(absolute),
+        }
+    }
+}
+
+/// Whether a folder may take the results of the section file `source` (as from [`source_from`]):
+/// it does not exist, holds none of `names`, or its `results.json` names the same source.
+///
+/// # Errors
+/// It holds another section's results or a file in the way. Ask before solving, not after.
+pub fn check(folder: &Path, source: &str, names: &[&str]) -> Result<(), WriteError> {
+    let path = folder.join(RESULTS);
+    match fs::read(&path) {
+        Ok(bytes) => {
+            let owner = serde_json::from_slice::<serde_json::Value>(&bytes)
+                .ok()
+                .and_then(|value| Some(value.get("source")?.as_str()?.to_string()));
+            match owner {
+                Some(owner) if owner == source => Ok(()),
+                Some(owner) => Err(WriteError::OtherSection {
+                    folder: folder.to_path_buf(),
+                    owner,
+                }),
+                None => Err(WriteError::InTheWay { path }),
+            }
+        }
+        Err(fault) if fault.kind() == io::ErrorKind::NotFound => {
+            let taken = names
+                .iter()
+                .map(|name| folder.join(name))
+                .find(|path| path.exists());
+            taken.map_or(Ok(()), |path| Err(WriteError::InTheWay { path }))
+        }
+        Err(source) => Err(WriteError::System {
+            path,
+            what: "read",
+            source,
+        }),
+    }
+}
+
+/// Writes the files `(name, text)` of one section into `folder`, which is made if need be: each to a
+/// temporary file beside its place first; only when all are on the disk are they renamed,
+/// `results.json` before the others, so that a folder always says whose it is.
+///
+/// # Errors
+/// As [`check`]; or the system refused, and the temporary files are removed again.
+pub fn write_all(folder: &Path, source: &str, files: &[(&str, &str)]) -> Result<(), WriteError> {
+    let names: Vec<&str> = files.iter().map(|(name, _)| *name).collect();
+    check(folder, source, &names)?;
+    fs::create_dir_all(folder).map_err(|source| WriteError::System {
+        path: folder.to_path_buf(),
+        what: "made",
+        source,
+    })?;
+    let mut order: Vec<&(&str, &str)> = files.iter().collect();
+    order.sort_by_key(|(name, _)| *name != RESULTS);
+
+    let mut temporary = Vec::new();
+    let outcome = order
+        .iter()
+        .try_for_each(|(name, text)| {
+            let path = temporary_path(&folder.join(name));
+            temporary.push(path.clone());
+            write_through(&path, text)
+        })
+        .and_then(|()| {
+            order
+                .iter()
+                .zip(&temporary)
+                .try_for_each(|((name, _), path)| put_in_place(path, &folder.join(name)))
+        });
+    if outcome.is_err() {
+        for path in &temporary {
+            // Those already renamed are gone from here; nothing else can be done about the rest.
+            let _ = fs::remove_file(path);
+        }
+    }
+    outcome
+}
+
+/// Writes one file whole or not at all, replacing what is there.
+///
+/// # Errors
+/// The system refused.
+pub fn write(path: &Path, text: &str) -> Result<(), WriteError> {
+    let temporary = temporary_path(path);
+    let outcome = write_through(&temporary, text).and_then(|()| put_in_place(&temporary, path));
+    if outcome.is_err() {
+        let _ = fs::remove_file(&temporary);
+    }
+    outcome
+}
+
+/// A name in the same folder, since a rename is atomic only within one file system.
+fn temporary_path(path: &Path) -> PathBuf {
+    let name = path.file_name().unwrap_or_default().to_string_lossy();
+    path.with_file_name(format!(".{name}.{}.part", std::process::id()))
+}
+
+fn write_through(path: &Path, text: &str) -> Result<(), WriteError> {
+    let attempt = || {
+        let mut file = fs::File::create(path)?;
+        file.write_all(text.as_bytes())
+    };
+    attempt().map_err(|source| WriteError::System {
+        path: path.to_path_buf(),
+        what: "written",
+        source,
+    })
+}
+
+fn put_in_place(from: &Path, to: &Path) -> Result<(), WriteError> {
+    fs::rename(from, to).map_err(|source| WriteError::System {
+        path: to.to_path_buf(),
+        what: "put in its place",
+        source,
+    })
+}
+
+#[cfg(test)]
+mod tests {
+    #![allow(clippy::unwrap_used)]
+    use super::*;
+
+    /// A fresh folder below the build's own temporary folder, removed at the end.
+    struct Scratch(PathBuf);
+
+    impl Scratch {
+        fn new(name: &str) -> Self {
+            let path =
+                std::env::temp_dir().join(format!("sectile-files-{}-{name}", std::process::id()));
+            let _ = fs::remove_dir_all(&path);
+            fs::create_dir_all(&path).unwrap();
+            Self(path.canonicalize().unwrap())
+        }
+    }
+
+    impl Drop for Scratch {
+        fn drop(&mut self) {
+            let _ = fs::remove_dir_all(&self.0);
+        }
+    }
+
+    fn listing(folder: &Path) -> Vec<String> {
+        let mut names: Vec<String> = fs::read_dir(folder)
+            .unwrap()
+            .map(|e| e.unwrap().file_name().to_string_lossy().into_owned())
+            .collect();
+        names.sort();
+        names
+    }
+
+    #[test]
+    fn source_is_relative_to_a_folder_that_need_not_exist() {
+        let scratch = Scratch::new("source");
+        let file = scratch.0.join("beam.section.toml");
+        fs::write(&file, "").unwrap();
+        let source = |folder: &str| source_from(&scratch.0.join(folder), &file).unwrap();
+        assert_eq!(source("out"), "../beam.section.toml");
+        assert_eq!(source("deep/er"), "../../beam.section.toml");
+        assert_eq!(source("."), "beam.section.toml");
+        assert!(source_from(&scratch.0, &scratch.0.join("missing")).is_err());
+    }
+
+    #[test]
+    fn own_results_are_replaced_and_nothing_else_is_left() {
+        let scratch = Scratch::new("own");
+        let folder = scratch.0.join("out");
+        let first = [("section.svg", "old"), (RESULTS, r#"{"source": "a"}"#)];
+        write_all(&folder, "a", &first).unwrap();
+        let second = [("section.svg", "new"), (RESULTS, r#"{"source": "a"}"#)];
+        write_all(&folder, "a", &second).unwrap();
+        assert_eq!(listing(&folder), [RESULTS, "section.svg"]);
+        assert_eq!(
+            fs::read_to_string(folder.join("section.svg")).unwrap(),
+            "new"
+        );
+    }
+
+    #[test]
+    fn results_of_another_section_stay_as_they_are() {
+        let scratch = Scratch::new("other");
+        write_all(&scratch.0, "a", &[(RESULTS, r#"{"source": "a"}"#)]).unwrap();
+        let fault = write_all(&scratch.0, "b", &[(RESULTS, r#"{"source": "b"}"#)]).unwrap_err();
+        assert!(
+            matches!(&fault, WriteError::OtherSection { owner, .. } if owner == "a"),
+            "{fault}"
+        );
+        assert!(fault.to_string().contains("--out"));
+        assert_eq!(
+            fs::read_to_string(scratch.0.join(RESULTS)).unwrap(),
+            r#"{"source": "a"}"#
+        );
+    }
+
+    #[test]
+    fn foreign_files_are_in_the_way() {
+        let scratch = Scratch::new("foreign");
+        fs::write(scratch.0.join("mesh.svg"), "mine").unwrap();
+        let fault = write_all(&scratch.0, "a", &[("mesh.svg", "x"), (RESULTS, "{}")]).unwrap_err();
+        assert!(matches!(fault, WriteError::InTheWay { .. }));
+        assert_eq!(
+            fs::read_to_string(scratch.0.join("mesh.svg")).unwrap(),
+            "mine"
+        );
+        assert_eq!(listing(&scratch.0), ["mesh.svg"]);
+
+        let scratch = Scratch::new("foreign-results");
+        fs::write(scratch.0.join(RESULTS), "not json").unwrap();
+        let fault = write_all(&scratch.0, "a", &[(RESULTS, "{}")]).unwrap_err();
+        assert!(matches!(fault, WriteError::InTheWay { .. }));
+    }
+
+    #[test]
+    fn a_refused_file_leaves_no_other_behind() {
+        let scratch = Scratch::new("refused");
+        // A file name with a folder that does not exist cannot be created.
+        let files = [(RESULTS, r#"{"source": "a"}"#), ("no/such.svg", "x")];
+        let fault = write_all(&scratch.0, "a", &files).unwrap_err();
+        assert!(matches!(fault, WriteError::System { .. }));
+        assert!(listing(&scratch.0).is_empty());
+    }
+
+    #[test]
+    fn one_file_is_replaced_whole() {
+        let scratch = Scratch::new("one");
+        let path = scratch.0.join("a.txt");
+        write(&path, "one").unwrap();
+        write(&path, "two").unwrap();
+        assert_eq!(fs::read_to_string(&path).unwrap(), "two");
+        assert_eq!(listing(&scratch.0), ["a.txt"]);
+    }
+}

@@ -1,0 +1,14 @@
+//! Results as text: the terminal's table, `properties.csv`, `results.json`, and how files are written.
+//! Depends on results only, never on how they were computed.
+
+pub mod csv;
+pub mod digits;
+pub mod files;
+pub mod json;
+pub mod table;
+pub mod units;
+pub mod wording;
+
+/// The line of caution that every output carries.
+pub const CAUTION: &str =
+    "Linear-elastic section analysis: check against local codes, by licensed practice.";
