@@ -1,0 +1,378 @@
+//! What the figures of fields have in common: bands, scale, extremes, sharp corners.
+
+use sectile_mesh::domain::Domain;
+use sectile_mesh::outline::side::Circle;
+use sectile_mesh::{Point, Vector};
+
+use super::SIZE_LIMIT;
+use super::arrows;
+use super::bands;
+use super::colour::{self, Rgb};
+use super::legend::Scale;
+use super::levels::Levels;
+use super::marks::{self, Mark};
+use super::outline::{self, Shape};
+use super::page::{Finished, INK, Label, MARGIN, Page, Pen};
+use super::path::{FinePath, simplified, simplified_loop};
+use super::place::Ground;
+use super::rect::Rect;
+use super::surface::Surface;
+use super::view::View;
+use crate::section::Units;
+use crate::write::{CAUTION, digits};
+
+const MOST_HEIGHT: f64 = 120.0;
+/// Width of a standing scale, mm.
+const STANDING: f64 = 30.0;
+
+/// A field to be drawn.
+#[derive(Clone, Copy)]
+pub struct Field<'a> {
+    /// What the figure shows, its heading.
+    pub kind: &'a str,
+    /// The section's title.
+    pub title: &'a str,
+    /// A line on what the field is and in which unit.
+    pub subtitle: &'a str,
+    /// The field's symbol, such as `|τ|`.
+    pub symbol: &'a str,
+    /// Its unit.
+    pub unit: &'a str,
+    /// Units of the section.
+    pub units: &'a Units,
+    /// The section.
+    pub domain: &'a Domain,
+    /// Small triangles, section axes.
+    pub surface: &'a Surface,
+    /// Values at the surface's points.
+    pub values: &'a [f64],
+    /// Whether negative values are as good as positive ones.
+    pub signed: bool,
+    /// Directions to be shown by arrows, section axes.
+    pub direction: Option<&'a [Vector]>,
+    /// Where extremes are not quoted: about sharp re-entrant corners.
+    pub excluded: &'a [Circle],
+    /// A point to be marked, such as the shear centre.
+    pub mark: Option<(Mark, Point)>,
+}
+
+/// An extreme that may be quoted.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Extreme {
+    /// Its value.
+    pub value: f64,
+    /// Its place, section axes.
+    pub at: Point,
+}
+
+/// The largest of `sign · value` outside the excluded circles; of places that are equal within
+/// rounding the highest, then the leftmost.
+#[must_use]
+pub fn extreme(
+    surface: &Surface,
+    values: &[f64],
+    excluded: &[Circle],
+    sign: f64,
+) -> Option<Extreme> {
+    let allowed = |p: Point| excluded.iter().all(|c| p.distance(c.centre) >= c.radius);
+    let found = || {
+        values
+            .iter()
+            .zip(&surface.points)
+            .filter(|(v, p)| v.is_finite() && allowed(**p))
+    };
+    let most = found()
+        .map(|(v, _)| sign * v)
+        .fold(f64::NEG_INFINITY, f64::max);
+    let near = most - 1e-6 * most.abs();
+    let extent = surface.points.iter().fold(Rect::EMPTY, |r, &p| r.with(p));
+    // Rounding of coordinates must not decide which of two mirrored places is taken.
+    let grain = 1e-9 * extent.width().max(extent.height()).max(f64::MIN_POSITIVE);
+    let rank = |p: Point| ((-p.y / grain).round(), (p.x / grain).round());
+    found()
+        .filter(|(v, _)| sign * **v >= near)
+        .min_by(|(_, p), (_, q)| {
+            let (a, b) = (rank(**p), rank(**q));
+            a.0.total_cmp(&b.0).then(a.1.total_cmp(&b.1))
+        })
+        .map(|(v, p)| Extreme { value: *v, at: *p })
+}
+
+/// Draws the field.
+#[must_use]
+pub fn draw(field: &Field, width: f64) -> Finished {
+    let mut last = None;
+    // Finer than a printer's dot first; coarser where the file would grow too large.
+    for tolerance in [0.008, 0.02, 0.05, 0.1, 0.2] {
+        let finished = attempt(field, width, tolerance);
+        if finished.svg.len() <= SIZE_LIMIT {
+            return finished;
+        }
+        last = Some(finished);
+    }
+    last.unwrap_or_else(|| attempt(field, width, 0.5))
+}
+
+fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
+    let mut page = Page::new(width, field.kind, field.title, field.subtitle);
+    let extent = outline::extent(field.domain);
+    let bounds = field.mark.map_or(extent, |(_, p)| {
+        let size = extent.width().hypot(extent.height());
+        let sight = extent.grown(1.5 * size);
+        if sight.contains(&Rect::about(p, 0.0)) {
+            extent.with(p)
+        } else {
+            extent
+        }
+    });
+    let high = extreme(field.surface, field.values, field.excluded, 1.0);
+    let low = extreme(field.surface, field.values, field.excluded, -1.0);
+    let (Some(high), Some(low)) = (high, low) else {
+        let note = "The field has no value outside the excluded places.".to_string();
+        return page.finish(&[note], CAUTION);
+    };
+    let levels = if field.signed {
+        Levels::between(low.value.min(0.0), high.value.max(0.0))
+    } else {
+        Levels::between(0.0, high.value)
+    };
+    let colours = colours(&levels, field.signed);
+    let top = levels.edge(levels.bands());
+    let open_above = field.values.iter().any(|&v| v > top + 1e-3 * levels.step);
+    let quantity = format!("{} in {}", field.symbol, field.unit);
+    let scale = Scale {
+        quantity: &quantity,
+        levels,
+        colours: &colours,
+        open_above,
+    };
+
+    let beside = bounds.height() > 0.7 * bounds.width() && width >= 100.0;
+    let right = width - MARGIN - if beside { STANDING + 4.0 } else { 0.0 };
+    // Labels of extremes stand around the section where they can: room for them on all sides.
+    let area = Rect::new(
+        MARGIN + if beside { 14.0 } else { 4.0 },
+        page.cursor + 7.0,
+        right - if beside { 14.0 } else { 4.0 },
+        page.cursor + 7.0 + MOST_HEIGHT,
+    );
+    let view = View::fit(bounds, area);
+    let drawn = view.rect(bounds);
+    let top_of_drawing = page.cursor;
+    paint(&mut page, field, &levels, &colours, &view, tolerance);
+    let bottom = drawn.y1 + 7.0;
+
+    let shape = Shape::new(field.domain, &view);
+    let mut ground = Ground {
+        area: Rect::new(MARGIN, top_of_drawing, right, bottom),
+        taken: Vec::new(),
+        leaders: Vec::new(),
+        shape: Some(&shape),
+    };
+    for circle in field.excluded {
+        let r = (circle.radius * view.scale).max(0.5);
+        page.circle(
+            view.point(circle.centre),
+            r,
+            Pen::line(INK, 0.18).dashed("0.7 0.5"),
+        );
+    }
+    if let Some((mark, p)) = field.mark {
+        let p = view.point(p);
+        if drawn.grown(0.01).contains(&Rect::about(p, 0.0)) {
+            mark.draw(&mut page, p);
+            ground.taken.push(Rect::about(p, mark.radius() + 0.3));
+        }
+    }
+    let mut notes = Vec::new();
+    mark_extremes(
+        &mut page,
+        &mut ground,
+        field,
+        &view,
+        (low, high),
+        &mut notes,
+    );
+
+    if beside {
+        let column = Rect::new(
+            width - MARGIN - STANDING,
+            top_of_drawing + 1.0,
+            width - MARGIN,
+            (top_of_drawing + 75.0).min(bottom.max(top_of_drawing + 45.0)),
+        );
+        scale.standing(&mut page, column);
+        page.cursor = bottom.max(column.y1);
+    } else {
+        page.cursor = bottom + 0.5;
+        let most = 120.0_f64.min(width - 2.0 * MARGIN);
+        scale.lying(&mut page, (MARGIN, MARGIN + most));
+    }
+    page.cursor += 4.5;
+    let at = Point::new(MARGIN, page.cursor);
+    marks::scale_bar(&mut page, at, view.scale, field.units.length);
+    page.cursor += 0.5;
+    excluded_note(field, open_above, &mut notes);
+    page.finish(&notes, CAUTION)
+}
+
+fn colours(levels: &Levels, signed: bool) -> Vec<Rgb> {
+    let n = levels.bands();
+    let reach = levels.edge(0).abs().max(levels.edge(n).abs());
+    (0..n)
+        .map(|i| {
+            let middle = 0.5 * (levels.edge(i) + levels.edge(i + 1));
+            if signed {
+                colour::diverging(middle / reach)
+            } else {
+                colour::sequential(i as f64 / (n as f64 - 1.0).max(1.0))
+            }
+        })
+        .collect()
+}
+
+/// Bands, lines between them, the outline, arrows.
+fn paint(
+    page: &mut Page,
+    field: &Field,
+    levels: &Levels,
+    colours: &[Rgb],
+    view: &View,
+    tolerance: f64,
+) {
+    let quantum = 0.01_f64.max(0.5 * tolerance);
+    let on_page = Surface {
+        points: field
+            .surface
+            .points
+            .iter()
+            .map(|&p| view.point(p))
+            .collect(),
+        cells: field.surface.cells.clone(),
+        rim: field.surface.rim.clone(),
+    };
+    // Under everything the true outline in the lowest colour: chords of the bands leave no paper.
+    let base = colours[0].hex();
+    page.path(outline::boundary_path(field.domain, view), Pen::fill(&base));
+    for i in 1..levels.bands() {
+        let mut path = FinePath::new(quantum);
+        for points in bands::region(&on_page, field.values, levels.edge(i)) {
+            path.closed(&simplified_loop(&points, tolerance));
+        }
+        let data = path.finish();
+        if !data.is_empty() {
+            page.fine_path(data, quantum, Pen::fill(&colours[i].hex()));
+        }
+    }
+    let (mut solid, mut dashed) = (FinePath::new(quantum), FinePath::new(quantum));
+    let mut nought = FinePath::new(quantum);
+    for i in 1..levels.bands() {
+        let path = match levels.first + i as i64 {
+            0 => &mut nought,
+            k if k < 0 => &mut dashed,
+            _ => &mut solid,
+        };
+        for points in bands::lines(&on_page, field.values, levels.edge(i)) {
+            path.open(&simplified(&points, tolerance));
+        }
+    }
+    let thin = Pen::line(INK, if field.signed { 0.12 } else { 0.07 });
+    for (path, pen) in [
+        (solid, thin),
+        (dashed, thin.dashed("0.9 0.6")),
+        (nought, Pen::line(INK, 0.3)),
+    ] {
+        if !path.is_empty() {
+            page.fine_path(path.finish(), quantum, pen);
+        }
+    }
+    let seams = outline::interface_path(field.domain, view);
+    if !seams.is_empty() {
+        page.path(seams, Pen::line(INK, 0.15));
+    }
+    page.path(
+        outline::boundary_path(field.domain, view),
+        Pen::line(INK, 0.28),
+    );
+    if let Some(direction) = field.direction {
+        let turned: Vec<Vector> = direction.iter().map(|d| Vector::new(d.x, -d.y)).collect();
+        let greatest = levels.edge(levels.bands());
+        arrows::draw(page, &on_page.points, &turned, greatest);
+    }
+}
+
+/// Marks the extremes, with value and place; says them again in the notes.
+fn mark_extremes(
+    page: &mut Page,
+    ground: &mut Ground,
+    field: &Field,
+    view: &View,
+    (low, high): (Extreme, Extreme),
+    notes: &mut Vec<String>,
+) {
+    let place = |p: Point| {
+        let extent = outline::extent(field.domain);
+        let grain = 1e-7 * extent.width().max(extent.height());
+        let tidy = |x: f64| digits::short(if x.abs() < grain { 0.0 } else { x }, 4);
+        format!("({}, {})", tidy(p.x), tidy(p.y))
+    };
+    let value = |v: f64| {
+        let text = digits::short(v, 4);
+        if field.signed && v > 0.0 {
+            format!("+{text}")
+        } else {
+            text
+        }
+    };
+    let mut wanted = vec![("Largest", high)];
+    if field.signed {
+        wanted.push(("Smallest", low));
+    }
+    for (_, extreme) in &wanted {
+        ground
+            .taken
+            .push(Rect::about(view.point(extreme.at), Mark::Extreme.radius()));
+    }
+    let mut said = Vec::new();
+    for (word, extreme) in wanted {
+        let at = view.point(extreme.at);
+        Mark::Extreme.draw(page, at);
+        let (first, second) = (value(extreme.value), place(extreme.at));
+        said.push(format!("{word} {} {} at {second}", first, field.unit));
+        let mut label = Label::new(&first);
+        label.bold = true;
+        label.backed = true;
+        let mut below = Label::small(&second);
+        below.backed = true;
+        let (a, b) = (label.rect(Point::default()), below.rect(Point::default()));
+        let w = a.width().max(b.width());
+        let h = a.height() + b.height();
+        let Some(placed) = ground.place(at, Mark::Extreme.radius(), w, h) else {
+            continue;
+        };
+        if let Some((p, q)) = placed.leader {
+            page.line(p, q, Pen::line("#ffffff", 0.5));
+            page.line(p, q, Pen::line(INK, 0.15));
+        }
+        let r = placed.rect;
+        page.text(Point::new(r.x0, r.y0 - a.y0), &label);
+        page.text(Point::new(r.x0, r.y0 + a.height() - b.y0), &below);
+    }
+    notes.push(format!("{}.", said.join("; ")));
+}
+
+fn excluded_note(field: &Field, open_above: bool, notes: &mut Vec<String>) {
+    let Some(radius) = field.excluded.iter().map(|c| c.radius).reduce(f64::max) else {
+        return;
+    };
+    let mut text = format!(
+        "Dashed rings: sharp re-entrant corners, where linear-elastic stress has no limit; the extreme is \
+         sought farther than {} {} from them.",
+        digits::short(radius, 3),
+        field.units.length
+    );
+    if open_above {
+        text.push_str(" The pointed end of the scale stands for all that is above it.");
+    }
+    notes.push(text);
+}

@@ -1,0 +1,88 @@
+//! The figures of shear stress under a unit torque or a unit shear force, in the file's own units.
+
+use sectile_mesh::domain::Domain;
+use sectile_mesh::outline::side::Circle;
+use sectile_mesh::{Point, Vector};
+use sectile_solver::sample::UnitForce;
+
+use super::field::{self, Field};
+use super::marks::Mark;
+use super::page::Finished;
+use super::surface::Surface;
+use crate::section::Units;
+use crate::write::units::{stress_per_force, stress_per_moment};
+
+/// The file's name.
+#[must_use]
+pub fn file_name(force: UnitForce) -> &'static str {
+    match force {
+        UnitForce::Torque => "shear-torque.svg",
+        UnitForce::ShearX => "shear-vx.svg",
+        UnitForce::ShearY => "shear-vy.svg",
+    }
+}
+
+/// Draws |τ| with arrows along τ. `stress` is per length³ for a torque, per length² for a force.
+#[must_use]
+pub fn draw(
+    force: UnitForce,
+    title: &str,
+    units: &Units,
+    domain: &Domain,
+    surface: &Surface,
+    stress: &[Vector],
+    excluded: &[Circle],
+    shear_centre: Option<Point>,
+    width: f64,
+) -> Finished {
+    let (symbol, action, factor) = match force {
+        UnitForce::Torque => (
+            "T",
+            format!("a torque T of 1 {}", units.moment),
+            stress_per_moment(units),
+        ),
+        UnitForce::ShearX => (
+            "V_x",
+            format!(
+                "a shear force V_x of 1 {} along x through the shear centre",
+                units.force
+            ),
+            stress_per_force(units),
+        ),
+        UnitForce::ShearY => (
+            "V_y",
+            format!(
+                "a shear force V_y of 1 {} along y through the shear centre",
+                units.force
+            ),
+            stress_per_force(units),
+        ),
+    };
+    let values: Vec<f64> = stress.iter().map(|t| factor * t.length()).collect();
+    let vectors: Vec<Vector> = stress.iter().map(|&t| t * factor).collect();
+    let subtitle = format!(
+        "Resultant shear stress |τ| in {} under {action}; proportional to {symbol}.",
+        units.stress
+    );
+    let kind = match force {
+        UnitForce::Torque => "Shear stress of a unit torque",
+        UnitForce::ShearX => "Shear stress of a unit force along x",
+        UnitForce::ShearY => "Shear stress of a unit force along y",
+    };
+    let field = Field {
+        kind,
+        title,
+        subtitle: &subtitle,
+        symbol: "|τ|",
+        unit: units.stress,
+        units,
+        domain,
+        surface,
+        values: &values,
+        signed: false,
+        direction: Some(&vectors),
+        excluded,
+        mark: shear_centre.map(|p| (Mark::ShearCentre, p)),
+    };
+    field::draw(&field, width)
+}

@@ -1,0 +1,342 @@
+//! Whole figures from made-up sections and fields: everything on the page, nothing over anything.
+
+#![allow(clippy::unwrap_used)]
+use sectile_mesh::domain::Domain;
+use sectile_mesh::outline::side::Circle;
+use sectile_mesh::{Point, Vector};
+use sectile_solver::figure::{Figure, Trust};
+use sectile_solver::quantity::Quantity as Q;
+use sectile_solver::sample::{Lattice, UnitForce};
+
+use super::page::Finished;
+use super::surface::{Sharing, Surface};
+use super::*;
+
+fn units() -> Units {
+    Units {
+        length: "mm",
+        force: "kN",
+        moment: "kN m".into(),
+        stress: "MPa",
+    }
+}
+
+fn properties(centres: [(f64, f64); 3], angle: f64) -> Vec<(Q, Figure)> {
+    let f = |value: f64| Figure::around(value, 0.0012, Trust::Bounded);
+    let e = |value: f64| Figure::around(value, 0.0, Trust::Exact);
+    vec![
+        (Q::CentroidX, e(centres[0].0)),
+        (Q::CentroidY, e(centres[0].1)),
+        (Q::PrincipalMoment1, e(2e6)),
+        (Q::PrincipalMoment2, e(1e6)),
+        (Q::PrincipalAngle, e(angle)),
+        (Q::ShearCentreX, f(centres[1].0)),
+        (Q::ShearCentreY, f(centres[1].1)),
+        (Q::FlexureCentreX, f(centres[2].0)),
+        (Q::FlexureCentreY, f(centres[2].1)),
+    ]
+}
+
+/// Well formed, labels on the page and clear of each other, file small.
+fn sound(name: &str, figure: &Finished) {
+    if let Ok(folder) = std::env::var("SECTILE_FIGURES") {
+        std::fs::write(format!("{folder}/{name}.svg"), &figure.svg).unwrap();
+    }
+    assert!(
+        figure.svg.len() <= 400_000,
+        "{name}: {} bytes",
+        figure.svg.len()
+    );
+    let mut content = String::new();
+    let _ = svg::read(&figure.svg).map(|_| content.push('x'));
+    assert!(!content.is_empty());
+    for (i, a) in figure.labels.iter().enumerate() {
+        assert!(
+            figure.page.contains(a),
+            "{name}: {a:?} outside {:?}",
+            figure.page
+        );
+        for b in &figure.labels[..i] {
+            assert!(!a.grown(-1e-6).overlaps(b), "{name}: {a:?} over {b:?}");
+        }
+    }
+    for (x, y) in coordinates(&figure.svg) {
+        let p = Rect::about(Point::new(x, y), 0.0);
+        assert!(figure.page.contains(&p), "{name}: ({x}, {y}) outside");
+    }
+}
+
+use super::rect::Rect;
+
+/// End points of all path data, in mm.
+fn coordinates(text: &str) -> Vec<(f64, f64)> {
+    use svg::node::element::path::{Command, Data, Position};
+    use svg::parser::Event;
+    let mut out = Vec::new();
+    let mut scale = 1.0;
+    for event in svg::read(text).unwrap() {
+        let Event::Tag(name, kind, attributes) = event else {
+            continue;
+        };
+        if name == "g" {
+            scale = match (kind, attributes.get("transform")) {
+                (svg::node::element::tag::Type::Start, Some(t)) => t
+                    .trim_start_matches("scale(")
+                    .trim_end_matches(')')
+                    .parse()
+                    .unwrap(),
+                _ => 1.0,
+            };
+        }
+        let Some(data) = attributes.get("d") else {
+            continue;
+        };
+        let (mut x, mut y) = (0.0_f64, 0.0_f64);
+        let mut start = (0.0, 0.0);
+        for command in Data::parse(data).unwrap().iter() {
+            let (position, parameters, stride, first) = match command {
+                Command::Move(p, v) => (p, v, 2, true),
+                Command::Line(p, v) => (p, v, 2, false),
+                Command::EllipticalArc(p, v) => (p, v, 7, false),
+                Command::Close => {
+                    (x, y) = start;
+                    continue;
+                }
+                other => panic!("{other:?}"),
+            };
+            for chunk in parameters.chunks(stride) {
+                let (a, b) = (f64::from(chunk[stride - 2]), f64::from(chunk[stride - 1]));
+                match position {
+                    Position::Absolute => (x, y) = (a, b),
+                    Position::Relative => (x, y) = (x + a, y + b),
+                }
+                if first {
+                    start = (x, y);
+                }
+                out.push((scale * x, scale * y));
+            }
+        }
+    }
+    assert!(!out.is_empty());
+    out
+}
+
+#[test]
+fn section_figures() {
+    type Case = (&'static str, Domain, [(f64, f64); 3], f64);
+    let cases: Vec<Case> = vec![
+        (
+            "section-channel",
+            samples::channel(),
+            [(22.2, 100.0), (-25.36963, 100.0), (-25.9, 100.0)],
+            0.0,
+        ),
+        (
+            "section-rectangle",
+            samples::rectangle(300.0, 20.0),
+            [(150.0, 10.0); 3],
+            0.0,
+        ),
+        (
+            "section-annulus",
+            samples::annulus(0.0, 0.0, 60.0, 50.0),
+            [(0.0, 0.0); 3],
+            12.0,
+        ),
+        (
+            "section-half-disc",
+            samples::half_disc(50.0),
+            [(0.0, 21.2), (0.0, 25.4), (0.0, 27.1)],
+            -33.0,
+        ),
+        (
+            "section-two-pieces",
+            samples::two_pieces(),
+            [(50.0, 25.0), (51.0, 25.0), (1000.0, 25.0)],
+            45.0,
+        ),
+    ];
+    for (name, domain, centres, angle) in &cases {
+        for width in [80.0, 160.0, 210.0] {
+            let figure = section::draw(
+                "Boatyard hoist runway, an invented scenario",
+                &units(),
+                domain,
+                &properties(*centres, *angle),
+                width,
+            );
+            sound(&format!("{name}-{width}"), &figure);
+        }
+    }
+}
+
+#[test]
+fn mesh_figures() {
+    let annulus = samples::annulus(0.0, 0.0, 2.0, 1.0);
+    let mesh = samples::annulus_mesh(24, 2.0, 1.0);
+    let figure = mesh::draw("Ring", &units(), &annulus, &mesh, "48 triangles", 160.0);
+    sound("mesh-annulus", &figure);
+    assert!(figure.svg.contains("a"), "arcs");
+
+    let rectangle = samples::rectangle(100.0, 60.0);
+    let mesh = samples::rectangle_mesh(30, 20, 100.0, 60.0);
+    let figure = mesh::draw(
+        "Plate",
+        &units(),
+        &rectangle,
+        &mesh,
+        "1200 triangles",
+        160.0,
+    );
+    sound("mesh-rectangle", &figure);
+    assert!(!figure.svg.contains("are not drawn"));
+}
+
+#[test]
+fn every_inner_side_of_a_mesh_is_drawn_once() {
+    let domain = samples::rectangle(100.0, 60.0);
+    let mesh = samples::rectangle_mesh(7, 5, 100.0, 60.0);
+    let figure = mesh::draw("Plate", &units(), &domain, &mesh, "", 160.0);
+    let start = figure.svg.find("d=\"m").unwrap() + 3;
+    let data = &figure.svg[start..start + figure.svg[start..].find('"').unwrap()];
+    let inner = mesh
+        .sides
+        .iter()
+        .filter(|s| s.right != sectile_mesh::mesh::NONE)
+        .count();
+    assert_eq!(data.matches('l').count(), inner);
+}
+
+fn field_on(mesh: &sectile_mesh::mesh::Mesh, divisions: usize) -> (Surface, Vec<Point>) {
+    let lattice = Lattice::new(divisions);
+    let sharing = Sharing::new(mesh, &lattice);
+    let positions = samples::straight_positions(mesh, &lattice);
+    let surface = sharing.surface(&positions);
+    let points = surface.points.clone();
+    (surface, points)
+}
+
+#[test]
+fn warping_figures() {
+    // The rectangle's first terms: antisymmetric in both axes about the middle.
+    for (b, h) in [(100.0, 60.0), (200.0, 15.0), (20.0, 90.0)] {
+        let domain = samples::rectangle(b, h);
+        let mesh = samples::rectangle_mesh(12, 8, b, h);
+        let (surface, points) = field_on(&mesh, 6);
+        let values: Vec<f64> = points
+            .iter()
+            .map(|p| {
+                let (x, y) = (p.x - b / 2.0, p.y - h / 2.0);
+                x * y
+                    - 0.2 * h * h * (3.0 * x / b).sinh() * (std::f64::consts::PI * y / h).sin()
+                        / 2.0
+            })
+            .collect();
+        let figure = warping::draw(
+            "Plate",
+            &units(),
+            &domain,
+            &surface,
+            &values,
+            Some(Point::new(b / 2.0, h / 2.0)),
+            160.0,
+        );
+        sound(&format!("warping-{b}"), &figure);
+    }
+}
+
+#[test]
+fn stress_figures() {
+    let domain = samples::annulus(0.0, 0.0, 2.0, 1.0);
+    let mesh = samples::annulus_mesh(90, 2.0, 1.0);
+    let (surface, points) = field_on(&mesh, 6);
+    let stress: Vec<Vector> = points
+        .iter()
+        .map(|p| Vector::new(-p.y, p.x) * 1e-7)
+        .collect();
+    let figure = stress::draw(
+        UnitForce::Torque,
+        "Ring",
+        &units(),
+        &domain,
+        &surface,
+        &stress,
+        &[],
+        Some(Point::default()),
+        160.0,
+    );
+    sound("stress-annulus", &figure);
+
+    let (b, h) = (200.0, 30.0);
+    let domain = samples::rectangle(b, h);
+    let mesh = samples::rectangle_mesh(20, 6, b, h);
+    let (surface, points) = field_on(&mesh, 6);
+    let peak = Point::new(0.0, h);
+    let stress: Vec<Vector> = points
+        .iter()
+        .map(|p| {
+            let eta = 2.0 * p.y / h - 1.0;
+            Vector::new(
+                0.0,
+                1e-3 * (1.0 - eta * eta) + 2e-3 / (p.distance(peak) + 0.02),
+            )
+        })
+        .collect();
+    let excluded = [Circle {
+        centre: peak,
+        radius: 5.0,
+    }];
+    for width in [90.0, 160.0] {
+        let figure = stress::draw(
+            UnitForce::ShearY,
+            "Plate",
+            &units(),
+            &domain,
+            &surface,
+            &stress,
+            &excluded,
+            Some(Point::new(100.0, 15.0)),
+            width,
+        );
+        sound(&format!("stress-rectangle-{width}"), &figure);
+        assert!(figure.svg.contains("Dashed rings"));
+    }
+}
+
+#[test]
+fn quoted_extreme_keeps_out_of_excluded_circles() {
+    let (surface, points) = field_on(&samples::rectangle_mesh(10, 10, 1.0, 1.0), 1);
+    let values: Vec<f64> = points
+        .iter()
+        .map(|p| 1.0 / (0.01 + p.x.hypot(p.y)))
+        .collect();
+    let corner = Circle {
+        centre: Point::default(),
+        radius: 0.15,
+    };
+    let free = field::extreme(&surface, &values, &[], 1.0).unwrap();
+    assert!((free.value - 100.0).abs() < 1e-9);
+    let kept = field::extreme(&surface, &values, &[corner], 1.0).unwrap();
+    assert!(kept.at.distance(corner.centre) >= 0.15);
+    assert!((kept.value - 1.0 / 0.21).abs() < 1e-9 || kept.value < 1.0 / 0.16);
+    let mirrored = [Circle {
+        centre: Point::new(0.5, 0.5),
+        radius: 9.0,
+    }];
+    assert!(field::extreme(&surface, &values, &mirrored, 1.0).is_none());
+}
+
+#[test]
+fn same_input_same_text() {
+    let draw = || {
+        section::draw(
+            "Twice",
+            &units(),
+            &samples::channel(),
+            &properties([(22.2, 100.0), (-25.0, 100.0), (-26.0, 100.0)], 0.0),
+            160.0,
+        )
+        .svg
+    };
+    assert_eq!(draw(), draw());
+}
