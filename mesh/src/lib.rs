@@ -4,9 +4,16 @@
 //! triangles. `Piece`s become one [`domain::Domain`], a domain becomes a [`mesh::Mesh`].
 
 pub mod arc;
+pub mod bisect;
+pub mod corners;
 pub mod domain;
+pub mod grade;
+pub mod map;
 pub mod mesh;
 pub mod outline;
 pub mod point;
+pub mod quality;
+mod topology;
+pub mod triangulate;
 
 pub use point::{Point, Vector};

@@ -60,3 +60,101 @@ impl Figure {
         }
     }
 }
+
+/// Relative allowance for rounding in a closed form: a few hundred units in the last place.
+pub const ROUNDING: f64 = 1e-13;
+
+/// Arithmetic on enclosures: the result encloses every result of values in the operands.
+impl Figure {
+    /// A closed-form value whose rounding is small against `scale`; what is smaller than its own
+    /// rounding is zero.
+    #[must_use]
+    pub fn exact(value: f64, scale: f64) -> Self {
+        Self::around(value, ROUNDING * scale.abs(), Trust::Exact).snapped()
+    }
+
+    /// The same enclosure with the value set to zero where zero lies in an enclosure too narrow to
+    /// tell it from zero: what vanishes by symmetry is given as 0 with its error.
+    #[must_use]
+    pub fn snapped(self) -> Self {
+        if self.contains(0.0) {
+            Self { value: 0.0, ..self }
+        } else {
+            self
+        }
+    }
+
+    fn with(self, other: Self, value: f64, ends: [f64; 4]) -> Self {
+        let grow = |m: f64, d: f64| if d > 0.0 { m.next_up() } else { m.next_down() };
+        Self {
+            value,
+            low: grow(ends.iter().copied().fold(f64::INFINITY, f64::min), -1.0),
+            high: grow(ends.iter().copied().fold(f64::NEG_INFINITY, f64::max), 1.0),
+            trust: self.trust.max(other.trust),
+        }
+    }
+
+    /// `self + other`.
+    #[must_use]
+    pub fn plus(self, other: Self) -> Self {
+        let (low, high) = (self.low + other.low, self.high + other.high);
+        self.with(other, self.value + other.value, [low, high, low, high])
+    }
+
+    /// `self − other`.
+    #[must_use]
+    pub fn minus(self, other: Self) -> Self {
+        self.plus(other.scaled(-1.0))
+    }
+
+    /// `self · other`.
+    #[must_use]
+    pub fn times(self, other: Self) -> Self {
+        let ends = [
+            self.low * other.low,
+            self.low * other.high,
+            self.high * other.low,
+            self.high * other.high,
+        ];
+        self.with(other, self.value * other.value, ends)
+    }
+
+    /// `self / other`; everything, if zero lies in `other`.
+    #[must_use]
+    pub fn over(self, other: Self) -> Self {
+        if other.contains(0.0) {
+            let value = self.value / other.value;
+            return self.with(
+                other,
+                value,
+                [f64::NEG_INFINITY, f64::INFINITY, value, value],
+            );
+        }
+        let ends = [
+            self.low / other.low,
+            self.low / other.high,
+            self.high / other.low,
+            self.high / other.high,
+        ];
+        self.with(other, self.value / other.value, ends)
+    }
+
+    /// `self²`, never below zero.
+    #[must_use]
+    pub fn squared(self) -> Self {
+        let product = self.times(self);
+        let low = if self.contains(0.0) {
+            0.0
+        } else {
+            (self.low * self.low).min(self.high * self.high).next_down()
+        };
+        Self { low, ..product }
+    }
+
+    /// `√self`; what lies below zero counts as zero.
+    #[must_use]
+    pub fn root(self) -> Self {
+        let (low, high) = (self.low.max(0.0).sqrt(), self.high.max(0.0).sqrt());
+        self.with(self, self.value.max(0.0).sqrt(), [low, high, low, high])
+    }
+}

@@ -4,8 +4,23 @@
 //! This crate knows nothing of section files, figures or the terminal: it takes a
 //! [`sectile_mesh::domain::Domain`] with materials and gives a [`solution::Solution`].
 
+mod adapt;
+mod element;
+mod factor;
 pub mod figure;
+mod geometry;
+mod kernel;
+mod level;
 pub mod material;
+mod ordering;
+mod problem;
+mod property;
 pub mod quantity;
 pub mod sample;
 pub mod solution;
+mod space;
+mod system;
+mod tables;
+#[cfg(test)]
+mod testing;
+mod tree_flux;

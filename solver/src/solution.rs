@@ -1,12 +1,20 @@
 //! The solved section.
 
 use sectile_mesh::Point;
+use sectile_mesh::corners::ReentrantCorner;
 use sectile_mesh::domain::Domain;
 use sectile_mesh::mesh::Mesh;
 
 use crate::figure::Figure;
+use crate::geometry::Frame;
+use crate::level::Fields;
 use crate::material::Material;
+use crate::property::area::AreaMoments;
+use crate::property::shear::ShearProperties;
 use crate::quantity::Quantity;
+use crate::tables::Tables;
+
+pub use crate::adapt::{DEFAULT_ORDER, exclusion_radius};
 
 /// What the adaptive loop aims at.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -73,10 +81,26 @@ pub struct Solution {
     pub reached: bool,
     /// The properties in the order of [`Quantity::ALL`]; those that do not apply are absent.
     pub properties: Vec<(Quantity, Figure)>,
+    /// The sharp re-entrant corners, where the calculated stress has no limit.
+    pub corners: Vec<ReentrantCorner>,
     /// Findings.
     pub notes: Vec<Note>,
     /// Seconds by stage.
     pub timings: Timings,
+    /// The fields; none for a section in separate parts.
+    pub(crate) solved: Option<Solved>,
+}
+
+/// The fields with what is needed to evaluate them.
+#[derive(Clone, Debug)]
+pub(crate) struct Solved {
+    pub frame: Frame,
+    /// In the solver's coordinates.
+    pub moments: AreaMoments,
+    pub poisson: f64,
+    pub shear: ShearProperties,
+    pub fields: Fields,
+    pub tables: Tables,
 }
 
 impl Solution {
@@ -105,15 +129,17 @@ pub enum SolveError {
 }
 
 /// Solves a section: the adaptive loop until every figure meets the tolerance or the unknowns run
-/// out. `materials` are indexed by [`Domain::piece_materials`]; `progress` is called after each level.
+/// out. `materials` are indexed by [`Domain::piece_materials`]; `metres` in the domain's unit of
+/// length serve the mass alone; `progress` is called after each level.
 ///
 /// # Errors
 /// See [`SolveError`].
 pub fn solve(
-    _domain: &Domain,
-    _materials: &[Material],
-    _settings: &Settings,
-    _progress: &mut dyn FnMut(&Level),
+    domain: &Domain,
+    materials: &[Material],
+    metres: f64,
+    settings: &Settings,
+    progress: &mut dyn FnMut(&Level),
 ) -> Result<Solution, SolveError> {
-    Err(SolveError::Mesh("not built yet".into()))
+    crate::adapt::solve(domain, materials, metres, settings, progress)
 }

@@ -1,0 +1,460 @@
+//! The adaptive loop: solve, measure the gaps, refine where they are large, until every figure is
+//! inside its tolerance.
+
+use std::time::Instant;
+
+use sectile_mesh::Point;
+use sectile_mesh::bisect::bisect;
+use sectile_mesh::corners::{ReentrantCorner, reentrant_corners};
+use sectile_mesh::domain::Domain;
+use sectile_mesh::grade::grade_to;
+use sectile_mesh::mesh::Mesh;
+use sectile_mesh::triangulate::{Sizing, triangulate};
+
+use crate::figure::Figure;
+use crate::geometry::Frame;
+use crate::level::{LevelResult, solve_level, unknowns};
+use crate::material::Material;
+use crate::problem::COUNT;
+use crate::property::area::{AreaMoments, area_moments};
+use crate::property::bending::exact_properties;
+use crate::property::shear::{Enclosures, ShearProperties};
+use crate::quantity::Quantity;
+use crate::solution::{Level, Note, Settings, Solution, SolveError, Solved, Timings};
+use crate::tables::Tables;
+
+/// Order of the elements unless stated: the fastest to 1e-4 over the validation set.
+pub const DEFAULT_ORDER: usize = 4;
+
+/// The least tolerance that double precision can honour.
+const LEAST_TOLERANCE: f64 = 1e-10;
+
+/// A figure that the loop drives into its tolerance.
+struct Aim {
+    quantity: Quantity,
+    /// Half-width over its scale.
+    error: f64,
+    /// Weights of the problems' squared gaps in that error.
+    weights: [f64; COUNT],
+}
+
+/// Solves a section. See [`crate::solution::solve`].
+pub(crate) fn solve(
+    domain: &Domain,
+    materials: &[Material],
+    metres: f64,
+    settings: &Settings,
+    progress: &mut dyn FnMut(&Level),
+) -> Result<Solution, SolveError> {
+    let order = check(settings)?;
+    let material = the_material(domain, materials)?;
+    let mut clock = Timings::default();
+    let start = Instant::now();
+    let moments = area_moments(domain);
+    let mut properties = exact_properties(domain, &moments, material, metres);
+    clock.bounds += start.elapsed().as_secs_f64();
+
+    let start = Instant::now();
+    let corners = reentrant_corners(domain);
+    let mut mesh =
+        triangulate(domain, &Sizing::default()).map_err(|e| SolveError::Mesh(e.to_string()))?;
+    clock.mesh += start.elapsed().as_secs_f64();
+    let mut notes: Vec<Note> = corners.iter().map(corner_note).collect();
+
+    let frame = Frame {
+        origin: moments.centroid,
+        scale: ((moments.xx + moments.yy) / moments.area).sqrt(),
+    };
+    if domain.parts > 1 {
+        notes.push(Note {
+            kind: "separate-parts",
+            text: format!(
+                "The section is in {} separate parts. They bend together only if something else holds \
+                 them together; torsion, shear and warping properties of a disconnected section \
+                 depend on that connection and are not given.",
+                domain.parts
+            ),
+            at: None,
+        });
+        return Ok(Solution {
+            mesh,
+            order,
+            levels: Vec::new(),
+            reached: true,
+            properties,
+            corners,
+            notes,
+            timings: clock,
+            solved: None,
+        });
+    }
+
+    let start = Instant::now();
+    mesh = grade(&mesh, &corners, settings.tolerance);
+    clock.mesh += start.elapsed().as_secs_f64();
+
+    let scaled = scaled_moments(&moments, &frame);
+    let start = Instant::now();
+    let tables = Tables::new(order);
+    clock.assemble += start.elapsed().as_secs_f64();
+    let mut levels: Vec<Level> = Vec::new();
+    let mut eigenvalue = f64::NAN;
+    loop {
+        let result = solve_level(
+            &mesh,
+            &frame,
+            &scaled,
+            &tables,
+            levels.is_empty(),
+            &mut clock,
+        )?;
+        if let Some(e) = result.eigenvalue {
+            eigenvalue = e;
+        }
+        let start = Instant::now();
+        let enclosures = Enclosures::new(result.total);
+        let shear = enclosures.properties(&scaled, material.poisson, eigenvalue);
+        let aims = aims(&enclosures, &shear, &scaled, material.poisson, eigenvalue);
+        let worst = aims
+            .iter()
+            .max_by(|a, b| a.error.total_cmp(&b.error))
+            .map_or((Quantity::TorsionConstant, 0.0), |a| (a.quantity, a.error));
+        let level = Level {
+            triangles: mesh.triangles.len(),
+            unknowns: result.unknowns,
+            worst: worst.0,
+            worst_error: worst.1,
+        };
+        progress(&level);
+        levels.push(level);
+        let reached = worst.1 <= settings.tolerance;
+        let next = if reached {
+            None
+        } else {
+            refine(&mesh, &result, &aims, order, settings)
+        };
+        clock.bounds += start.elapsed().as_secs_f64();
+        if let Some((finer, seconds)) = next {
+            clock.mesh += seconds;
+            clock.bounds -= seconds;
+            mesh = finer;
+            continue;
+        }
+        if !reached {
+            notes.push(not_reached(&levels, settings));
+        }
+        properties.extend(outward(&shear, &moments, &scaled, &frame));
+        properties.sort_by_key(|(q, _)| *q);
+        return Ok(Solution {
+            mesh,
+            order,
+            levels,
+            reached,
+            properties,
+            corners,
+            notes,
+            timings: clock,
+            solved: Some(Solved {
+                frame,
+                moments: scaled,
+                poisson: material.poisson,
+                shear,
+                fields: result.fields,
+                tables,
+            }),
+        });
+    }
+}
+
+fn check(settings: &Settings) -> Result<usize, SolveError> {
+    let order = settings.order.unwrap_or(DEFAULT_ORDER);
+    if !(1..=crate::element::lagrange::MAX_ORDER).contains(&order) {
+        return Err(SolveError::Setting(format!(
+            "the order of the elements must be 1 to {}, not {order}",
+            crate::element::lagrange::MAX_ORDER
+        )));
+    }
+    let tolerance = settings.tolerance;
+    if !(LEAST_TOLERANCE..1.0).contains(&tolerance) {
+        return Err(SolveError::Setting(format!(
+            "the tolerance must be at least {LEAST_TOLERANCE:e} (double precision carries no more) and \
+             below 1, not {tolerance:e}"
+        )));
+    }
+    Ok(order)
+}
+
+/// The one material that every piece has.
+fn the_material<'a>(
+    domain: &Domain,
+    materials: &'a [Material],
+) -> Result<&'a Material, SolveError> {
+    let first = domain.piece_materials.first().copied().unwrap_or(0);
+    if domain.piece_materials.iter().any(|&m| m != first) {
+        return Err(SolveError::Setting(
+            "sections of several materials are not solved by this version".into(),
+        ));
+    }
+    materials
+        .get(first)
+        .ok_or_else(|| SolveError::Setting("the section has no material".into()))
+}
+
+fn corner_note(corner: &ReentrantCorner) -> Note {
+    Note {
+        kind: "sharp-corner",
+        text: format!(
+            "Sharp re-entrant corner of {:.0}°: the calculated shear stress grows there without limit, \
+             so points within {:.3} of it are left out of the extremes. Give the corner its real radius \
+             with `round` to obtain the stress in it.",
+            corner.interior_angle.to_degrees(),
+            exclusion_radius(corner),
+        ),
+        at: Some(corner.at),
+    }
+}
+
+/// Distance from a sharp re-entrant corner within which stresses are not quoted: a tenth of the wall.
+#[must_use]
+pub fn exclusion_radius(corner: &ReentrantCorner) -> f64 {
+    0.1 * corner.wall
+}
+
+fn not_reached(levels: &[Level], settings: &Settings) -> Note {
+    let last = levels.last();
+    Note {
+        kind: "tolerance-not-reached",
+        text: format!(
+            "The tolerance of {:e} was not reached with {} unknowns (limit {}): {} stands at {:.1e}. \
+             The bounds given are true all the same; a larger --max-unknowns makes them narrower.",
+            settings.tolerance,
+            last.map_or(0, |l| l.unknowns),
+            settings.max_unknowns,
+            last.map_or("", |l| l.worst.key()),
+            last.map_or(0.0, |l| l.worst_error),
+        ),
+        at: None,
+    }
+}
+
+fn scaled_moments(m: &AreaMoments, frame: &Frame) -> AreaMoments {
+    let s = frame.scale;
+    AreaMoments {
+        area: m.area / (s * s),
+        centroid: Point::default(),
+        xx: m.xx / s.powi(4),
+        yy: m.yy / s.powi(4),
+        xy: m.xy / s.powi(4),
+        third_y: m.third_y / s.powi(5),
+        third_x: m.third_x / s.powi(5),
+        extent: m.extent.map(|e| e / s),
+        reach: m.reach / s,
+    }
+}
+
+/// The first mesh is graded to the re-entrant corners, whose singularity is known: near an interior
+/// angle α the stress grows like `r^(π/α − 1)`, so the energy within r is like `r^(2π/α)`, and what
+/// the smallest triangles hold must be below the tolerance.
+fn grade(mesh: &Mesh, corners: &[ReentrantCorner], tolerance: f64) -> Mesh {
+    let targets: Vec<(u32, f64)> = corners
+        .iter()
+        .map(|c| {
+            let exponent = std::f64::consts::PI / c.interior_angle;
+            let ratio = (10.0 * tolerance).powf(0.5 / exponent).clamp(1e-6, 0.5);
+            (c.point, c.wall * ratio)
+        })
+        .collect();
+    grade_to(mesh, &targets)
+}
+
+/// The figures that the loop drives, with their scales: the value for the torsion constant, the shear
+/// areas and the warping constant (at least a thousandth of J times the polar radius squared: below
+/// that warping plays no part in any member), the polar radius for centres.
+fn aims(
+    enclosures: &Enclosures,
+    shear: &ShearProperties,
+    m: &AreaMoments,
+    poisson: f64,
+    eigenvalue: f64,
+) -> Vec<Aim> {
+    let weights = enclosures.gap_weights(m, poisson, eigenvalue, shear.shear_area.map(|a| a.value));
+    let polar = (m.xx + m.yy) / m.area;
+    let radius = polar_radius(shear, polar).value;
+    let floor = 1e-3 * shear.torsion.value * polar;
+    let list: [(Quantity, Figure, f64); 8] = [
+        (
+            Quantity::TorsionConstant,
+            shear.torsion,
+            shear.torsion.value,
+        ),
+        (
+            Quantity::WarpingConstant,
+            shear.warping,
+            shear.warping.value.max(floor),
+        ),
+        (Quantity::ShearCentreX, shear.centre[0], radius),
+        (Quantity::ShearCentreY, shear.centre[1], radius),
+        (Quantity::FlexureCentreX, shear.flexure_centre[0], radius),
+        (Quantity::FlexureCentreY, shear.flexure_centre[1], radius),
+        (
+            Quantity::ShearAreaX,
+            shear.shear_area[0],
+            shear.shear_area[0].value,
+        ),
+        (
+            Quantity::ShearAreaY,
+            shear.shear_area[1],
+            shear.shear_area[1].value,
+        ),
+    ];
+    list.into_iter()
+        .zip(weights)
+        .map(|((quantity, figure, scale), row)| Aim {
+            quantity,
+            error: figure.half_width() / scale.abs(),
+            weights: row.map(|w| w / scale.abs()),
+        })
+        .collect()
+}
+
+fn polar_radius(shear: &ShearProperties, polar: f64) -> Figure {
+    let [x, y] = shear.centre;
+    Figure::exact(polar, polar)
+        .plus(x.squared())
+        .plus(y.squared())
+        .root()
+}
+
+/// Refines towards the tolerance: each triangle's share of the errors that are still too large says
+/// how often it is bisected, so that the shares become equal and their sum the tolerance. `None` if
+/// that would pass the limit of unknowns, or nothing is left to refine.
+fn refine(
+    mesh: &Mesh,
+    result: &LevelResult,
+    aims: &[Aim],
+    order: usize,
+    settings: &Settings,
+) -> Option<(Mesh, f64)> {
+    let start = Instant::now();
+    let mut combined = [0.0; COUNT];
+    for aim in aims.iter().filter(|a| a.error > settings.tolerance) {
+        for (c, w) in combined.iter_mut().zip(aim.weights) {
+            *c += w / settings.tolerance;
+        }
+    }
+    let shares: Vec<f64> = result
+        .local_gaps()
+        .iter()
+        .map(|g| g.iter().zip(combined).map(|(g, w)| g * w).sum())
+        .collect();
+    // A bisection of a smooth field's triangle leaves each child 2^-(p+1) of the share.
+    let child = 0.5_f64.powi(order as i32 + 1);
+    let bisections = |share: f64, target: f64| {
+        let (mut n, mut s) = (0u8, share);
+        while s > target && n < MOST_BISECTIONS {
+            s *= child;
+            n += 1;
+        }
+        n
+    };
+    // The target share for which the children's shares sum to half the tolerance.
+    let predicted = |target: f64| -> (f64, f64) {
+        shares.iter().fold((0.0, 0.0), |(sum, count), &s| {
+            let n = i32::from(bisections(s, target));
+            (sum + s * (2.0 * child).powi(n), count + 2.0_f64.powi(n))
+        })
+    };
+    let most = shares.iter().fold(0.0_f64, |m, &s| m.max(s));
+    if most <= 0.0 {
+        return None;
+    }
+    let mut target = most;
+    let limit = GROWTH * shares.len() as f64;
+    for _ in 0..200 {
+        let (sum, count) = predicted(target);
+        if sum <= 0.5 || count > limit {
+            break;
+        }
+        target *= 0.7;
+    }
+    let mut wanted: Vec<u8> = shares.iter().map(|&s| bisections(s, target)).collect();
+    if wanted.iter().all(|&n| n == 0) {
+        // Every share is small yet the sum is too large: refine all.
+        wanted.fill(1);
+    }
+    let mut finer: Option<Mesh> = None;
+    while wanted.iter().any(|&n| n > 0) {
+        let old = finer.as_ref().unwrap_or(mesh);
+        let marked: Vec<bool> = wanted.iter().map(|&n| n > 0).collect();
+        let refined = bisect(old, &marked);
+        wanted = refined
+            .parent
+            .iter()
+            .map(|&p| wanted[p as usize].saturating_sub(1))
+            .collect();
+        finer = Some(refined.mesh);
+    }
+    let finer = finer?;
+    (unknowns(&finer, order) <= settings.max_unknowns)
+        .then(|| (finer, start.elapsed().as_secs_f64()))
+}
+
+/// Most bisections of one triangle in one turn.
+const MOST_BISECTIONS: u8 = 4;
+/// Largest predicted growth of the number of triangles in one turn.
+const GROWTH: f64 = 3.0;
+
+/// The shear properties in the units and axes of the domain.
+fn outward(
+    shear: &ShearProperties,
+    m: &AreaMoments,
+    scaled: &AreaMoments,
+    frame: &Frame,
+) -> Vec<(Quantity, Figure)> {
+    let s = frame.scale;
+    let place = |f: Figure, origin: f64| {
+        let f = f.snapped().scaled(s);
+        f.plus(Figure::exact(origin, m.reach))
+    };
+    let polar = (scaled.xx + scaled.yy) / scaled.area;
+    let c = m.centroid;
+    let [sx, sy] = shear.centre;
+    let wagner = |third: f64, second: f64, centre: Figure| {
+        let size = polar.sqrt();
+        Figure::exact(third / second, size)
+            .minus(centre.snapped().scaled(2.0))
+            .snapped()
+            .scaled(s)
+    };
+    let area = Figure::exact(scaled.area, scaled.area);
+    vec![
+        (Quantity::TorsionConstant, shear.torsion.scaled(s.powi(4))),
+        (
+            Quantity::WarpingConstant,
+            shear.warping.snapped().scaled(s.powi(6)),
+        ),
+        (Quantity::ShearCentreX, place(sx, c.x)),
+        (Quantity::ShearCentreY, place(sy, c.y)),
+        (
+            Quantity::FlexureCentreX,
+            place(shear.flexure_centre[0], c.x),
+        ),
+        (
+            Quantity::FlexureCentreY,
+            place(shear.flexure_centre[1], c.y),
+        ),
+        (Quantity::ShearAreaX, shear.shear_area[0].scaled(s * s)),
+        (Quantity::ShearAreaY, shear.shear_area[1].scaled(s * s)),
+        (Quantity::ShearCoefficientX, shear.shear_area[0].over(area)),
+        (Quantity::ShearCoefficientY, shear.shear_area[1].over(area)),
+        (Quantity::PolarRadius, polar_radius(shear, polar).scaled(s)),
+        (
+            Quantity::MonosymmetryX,
+            wagner(scaled.third_y, scaled.xx, sy),
+        ),
+        (
+            Quantity::MonosymmetryY,
+            wagner(scaled.third_x, scaled.yy, sx),
+        ),
+    ]
+}
