@@ -1,3 +1,10 @@
 //! The `sectile` command.
 
-fn main() {}
+use std::process::ExitCode;
+
+use clap::Parser;
+use sectile::command::{Cli, run};
+
+fn main() -> ExitCode {
+    ExitCode::from(run(&Cli::parse()).exit_code())
+}

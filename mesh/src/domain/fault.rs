@@ -73,4 +73,11 @@ pub enum Fault {
         /// The piece.
         piece: usize,
     },
+    /// The piece is not a simple region, for another reason.
+    NotSimple {
+        /// The piece.
+        piece: usize,
+        /// What the check says.
+        reason: String,
+    },
 }

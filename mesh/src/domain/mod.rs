@@ -1,7 +1,11 @@
 //! The valid planar regions that a section consists of: a planar graph of sides, each knowing which
 //! piece lies on either hand.
 
+mod arrange;
+mod contact;
+mod edge;
 pub mod fault;
+mod overlap;
 
 use crate::outline::piece::Piece;
 use crate::outline::side::Arc;
@@ -15,7 +19,7 @@ pub struct DomainSide {
     pub from: u32,
     /// Index of its last point (equal to `from` never: full circles are split).
     pub to: u32,
-    /// The arc that it follows; `None`: it is straight.
+    /// The arc that it follows, less than half a turn; `None`: it is straight.
     pub arc: Option<Arc>,
     /// The piece to the left when going from `from` to `to`; `None`: no material.
     pub left: Option<u32>,
@@ -38,10 +42,16 @@ pub struct Domain {
     pub parts: usize,
 }
 
+/// Points closer than this part of the section's size are one.
+pub const TOLERANCE: f64 = 1e-9;
+
 /// Makes one valid domain of the pieces: shared sides and parts of sides become interfaces.
+///
+/// Sides are compared on their true lines and circles, with a tolerance of [`TOLERANCE`] times the
+/// section's size; points keep the coordinates of the corner that was given first.
 ///
 /// # Errors
 /// Every fault found.
-pub fn build(_pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
-    unreachable!("placeholder")
+pub fn build(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
+    arrange::arrange(pieces)
 }

@@ -1,0 +1,286 @@
+//! `solve`: section files in; a table on the terminal, results and figures in a folder.
+
+use std::io::{IsTerminal, Write, stderr, stdout};
+use std::path::{Path, PathBuf};
+use std::time::Instant;
+
+use clap::Args;
+use sectile_solver::solution::{Level, Settings, Solution, solve};
+
+use super::Outcome;
+use super::progress::LevelProgress;
+use crate::figure;
+use crate::read::{ReadSection, section_from_path, show};
+use crate::write::json::{Results, Run};
+use crate::write::{csv, files, table};
+
+/// Options of `solve`.
+#[derive(Args, Clone, Debug)]
+#[command(after_help = "Examples:\n  \
+    sectile solve rail.section.toml\n  \
+    sectile solve rail.section.toml --tolerance 1e-6 --out rail-results\n  \
+    sectile solve *.section.toml --json --quiet > results.jsonl\n\n\
+    Exit codes: 0 answered; 1 answered with a finding that you must see; 2 could not answer.")]
+pub struct SolveArgs {
+    /// The section files.
+    #[arg(required = true, value_name = "FILE")]
+    pub files: Vec<PathBuf>,
+    /// Half-width of the bounds over the value, for every figure that is not exact (for centres: over
+    /// the polar radius).
+    #[arg(long, default_value = "1e-4", value_name = "T")]
+    pub tolerance: f64,
+    /// Order of the finite elements, 1 to 6.
+    #[arg(long, value_name = "P")]
+    pub order: Option<usize>,
+    /// Stop refining before a system has more unknowns than this; the bounds stay true.
+    #[arg(long, default_value_t = 2_000_000, value_name = "N")]
+    pub max_unknowns: usize,
+    /// Print one JSON object a section on standard output and nothing else there; files are written
+    /// only with --out.
+    #[arg(long)]
+    pub json: bool,
+    /// Print no table and no progress.
+    #[arg(long)]
+    pub quiet: bool,
+    /// Write results and figures here; with several files, in one folder each below it. Default: a
+    /// folder NAME.results beside each file.
+    #[arg(long, value_name = "DIR")]
+    pub out: Option<PathBuf>,
+    /// Print width of the figures, in mm.
+    #[arg(long, default_value = "160mm", value_parser = print_width, value_name = "MM")]
+    pub width: f64,
+    /// Print seconds by stage and the peak memory.
+    #[arg(long)]
+    pub timings: bool,
+}
+
+fn print_width(text: &str) -> Result<f64, String> {
+    let number = text.trim().strip_suffix("mm").unwrap_or(text).trim();
+    match number.parse::<f64>() {
+        Ok(mm) if (60.0..=1000.0).contains(&mm) => Ok(mm),
+        _ => Err("a print width is 60mm to 1000mm, such as 160mm".into()),
+    }
+}
+
+/// Runs the command.
+#[must_use]
+pub fn run(args: &SolveArgs) -> Outcome {
+    args.files
+        .iter()
+        .map(|file| one(args, file))
+        .max()
+        .unwrap_or(Outcome::Answered)
+}
+
+fn one(args: &SolveArgs, file: &Path) -> Outcome {
+    let start = Instant::now();
+    let read = match section_from_path(file) {
+        Ok(read) => read,
+        Err(faults) => {
+            show::print(&faults);
+            return Outcome::NoAnswer;
+        }
+    };
+    let folder = folder(args, file);
+    let source = match &folder {
+        Some(folder) => match files::source_from(folder, file)
+            .and_then(|source| files::check(folder, &source, figure::FILES).map(|()| source))
+        {
+            Ok(source) => source,
+            Err(error) => return fail(file, &error.to_string()),
+        },
+        None => file.to_string_lossy().into_owned(),
+    };
+    let mut run = Run {
+        read: start.elapsed().as_secs_f64(),
+        ..Run::default()
+    };
+
+    let settings = Settings {
+        tolerance: args.tolerance,
+        order: args.order,
+        max_unknowns: args.max_unknowns,
+    };
+    let mut progress = LevelProgress::new(!args.quiet && stderr().is_terminal());
+    let solved = solve(
+        &read.domain,
+        &read.section.materials,
+        read.section.units.metres(),
+        &settings,
+        &mut |level: &Level| progress.show(level),
+    );
+    progress.finish();
+    let solution = match solved {
+        Ok(solution) => solution,
+        Err(error) => return fail(file, &error.to_string()),
+    };
+
+    let write_start = Instant::now();
+    if let Some(folder) = &folder
+        && let Err(error) = write_folder(args, folder, &source, &read, &solution, &run, start)
+    {
+        return fail(file, &error.to_string());
+    }
+    run.write = write_start.elapsed().as_secs_f64();
+    run.total = start.elapsed().as_secs_f64();
+    run.peak_memory = peak_memory();
+    report(args, folder.as_deref(), &source, &read, &solution, &run);
+    if solution.reached && read.domain.parts == 1 {
+        Outcome::Answered
+    } else {
+        Outcome::Finding
+    }
+}
+
+/// Where the results go; nowhere with `--json` alone.
+fn folder(args: &SolveArgs, file: &Path) -> Option<PathBuf> {
+    let stem = stem(file);
+    match &args.out {
+        Some(out) if args.files.len() > 1 => Some(out.join(stem)),
+        Some(out) => Some(out.clone()),
+        None if args.json => None,
+        None => Some(file.with_file_name(format!("{stem}.results"))),
+    }
+}
+
+/// The file's name without `.section.toml` or its extension.
+fn stem(file: &Path) -> String {
+    let name = file.file_name().unwrap_or_default().to_string_lossy();
+    match name.strip_suffix(".section.toml") {
+        Some(stem) if !stem.is_empty() => stem.to_owned(),
+        _ => file
+            .file_stem()
+            .unwrap_or_default()
+            .to_string_lossy()
+            .into_owned(),
+    }
+}
+
+fn write_folder(
+    args: &SolveArgs,
+    folder: &Path,
+    source: &str,
+    read: &ReadSection,
+    solution: &Solution,
+    run: &Run,
+    start: Instant,
+) -> Result<(), files::WriteError> {
+    let write_start = Instant::now();
+    let section = &read.section;
+    let mut written: Vec<(String, String)> = figure::all(
+        &section.title,
+        &section.units,
+        &read.domain,
+        solution,
+        args.width,
+    );
+    written.push((
+        "properties.csv".into(),
+        csv::properties(&section.units, solution),
+    ));
+    let run = Run {
+        write: write_start.elapsed().as_secs_f64(),
+        total: start.elapsed().as_secs_f64(),
+        peak_memory: peak_memory(),
+        ..run.clone()
+    };
+    let results = Results::new(&section.title, source, &section.units, solution, &run);
+    written.push((files::RESULTS.into(), results.pretty()));
+    let named: Vec<(&str, &str)> = written
+        .iter()
+        .map(|(name, text)| (name.as_str(), text.as_str()))
+        .collect();
+    files::write_all(folder, source, &named)
+}
+
+fn report(
+    args: &SolveArgs,
+    folder: Option<&Path>,
+    source: &str,
+    read: &ReadSection,
+    solution: &Solution,
+    run: &Run,
+) {
+    let section = &read.section;
+    let mut text = String::new();
+    if args.json {
+        text = Results::new(&section.title, source, &section.units, solution, run).line();
+        text.push('\n');
+    } else if !args.quiet {
+        let look = table::Look {
+            width: super::terminal_width(),
+            styled: super::styled(&stdout()),
+        };
+        text = table::render(&section.title, &section.units, solution, look);
+        if let Some(folder) = folder {
+            text.push_str(&format!(
+                "Results and figures are in {}\n",
+                folder.display()
+            ));
+        }
+    }
+    // A reader that closed the pipe has all that it wants.
+    let _ = stdout().write_all(text.as_bytes());
+    if args.timings {
+        let _ = stderr().write_all(timings(solution, run).as_bytes());
+    }
+}
+
+fn timings(solution: &Solution, run: &Run) -> String {
+    let t = &solution.timings;
+    let rows = [
+        ("read", run.read),
+        ("mesh", t.mesh),
+        ("order", t.order),
+        ("assemble", t.assemble),
+        ("factor", t.factor),
+        ("solve", t.solve),
+        ("bounds", t.bounds),
+        ("write", run.write),
+        ("total", run.total),
+    ];
+    let mut text = String::from("Seconds by stage\n");
+    for (name, seconds) in rows {
+        text.push_str(&format!("  {name:<10}{seconds:>10.4}\n"));
+    }
+    if let Some(bytes) = run.peak_memory {
+        text.push_str(&format!(
+            "  peak memory {:.1} MB\n",
+            bytes as f64 / 1_048_576.0
+        ));
+    }
+    text
+}
+
+fn fail(file: &Path, message: &str) -> Outcome {
+    let _ = writeln!(stderr(), "{}: {message}", file.display());
+    Outcome::NoAnswer
+}
+
+/// The most memory that the process has held, where the system tells.
+fn peak_memory() -> Option<u64> {
+    let status = std::fs::read_to_string("/proc/self/status").ok()?;
+    let line = status.lines().find(|l| l.starts_with("VmHWM:"))?;
+    let kilobytes: u64 = line.split_whitespace().nth(1)?.parse().ok()?;
+    Some(kilobytes * 1024)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn stems_drop_the_double_ending() {
+        assert_eq!(stem(Path::new("a/rail.section.toml")), "rail");
+        assert_eq!(stem(Path::new("rail.toml")), "rail");
+        assert_eq!(stem(Path::new(".section.toml")), ".section");
+    }
+
+    #[test]
+    fn print_widths_carry_millimetres() {
+        assert_eq!(print_width("160mm"), Ok(160.0));
+        assert_eq!(print_width("90"), Ok(90.0));
+        assert!(print_width("5mm").is_err());
+        assert!(print_width("wide").is_err());
+    }
+}
