@@ -21,6 +21,7 @@ use super::view::View;
 use crate::section::Units;
 use crate::write::{CAUTION, digits};
 
+const RINGS: &str = "Dashed rings:";
 const MOST_HEIGHT: f64 = 120.0;
 /// Width of a standing scale, mm.
 const STANDING: f64 = 30.0;
@@ -159,10 +160,12 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     let view = View::fit(bounds, area);
     let drawn = view.rect(bounds);
     let top_of_drawing = page.cursor;
-    paint(&mut page, field, &levels, &colours, &view, tolerance);
+    let shape = Shape::new(field.domain, &view);
+    paint(
+        &mut page, field, &levels, &colours, &view, &shape, tolerance,
+    );
     let bottom = drawn.y1 + 7.0;
 
-    let shape = Shape::new(field.domain, &view);
     let mut ground = Ground {
         area: Rect::new(MARGIN, top_of_drawing, right, bottom),
         taken: Vec::new(),
@@ -177,14 +180,18 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
             Pen::line(INK, 0.18).dashed("0.7 0.5"),
         );
     }
+    let mut notes = Vec::new();
     if let Some((mark, p)) = field.mark {
         let p = view.point(p);
         if drawn.grown(0.01).contains(&Rect::about(p, 0.0)) {
+            mark.draw_edge(&mut page, p);
             mark.draw(&mut page, p);
-            ground.taken.push(Rect::about(p, mark.radius() + 0.3));
+            notes.push("Diamond: shear centre.".to_string());
         }
     }
-    let mut notes = Vec::new();
+    if field.signed {
+        notes.push("Heavy line: zero; dashed lines: negative.".to_string());
+    }
     mark_extremes(
         &mut page,
         &mut ground,
@@ -213,6 +220,11 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     marks::scale_bar(&mut page, at, view.scale, field.units.length);
     page.cursor += 0.5;
     excluded_note(field, open_above, &mut notes);
+    // The short ones share a line.
+    let (long, short): (Vec<String>, Vec<String>) =
+        notes.into_iter().partition(|n| n.starts_with(RINGS));
+    let mut notes = vec![short.join(" ")];
+    notes.extend(long);
     page.finish(&notes, CAUTION)
 }
 
@@ -238,6 +250,7 @@ fn paint(
     levels: &Levels,
     colours: &[Rgb],
     view: &View,
+    shape: &Shape,
     tolerance: f64,
 ) {
     let quantum = 0.01_f64.max(0.5 * tolerance);
@@ -297,7 +310,7 @@ fn paint(
     if let Some(direction) = field.direction {
         let turned: Vec<Vector> = direction.iter().map(|d| Vector::new(d.x, -d.y)).collect();
         let greatest = levels.edge(levels.bands());
-        arrows::draw(page, &on_page.points, &turned, greatest);
+        arrows::draw(page, &on_page, &turned, greatest, shape);
     }
 }
 
@@ -324,9 +337,9 @@ fn mark_extremes(
             text
         }
     };
-    let mut wanted = vec![("Largest", high)];
+    let mut wanted = vec![(format!("Largest {}", field.symbol), high)];
     if field.signed {
-        wanted.push(("Smallest", low));
+        wanted.push((format!("smallest {}", field.symbol), low));
     }
     for (_, extreme) in &wanted {
         ground
@@ -336,9 +349,10 @@ fn mark_extremes(
     let mut said = Vec::new();
     for (word, extreme) in wanted {
         let at = view.point(extreme.at);
+        Mark::Extreme.draw_edge(page, at);
         Mark::Extreme.draw(page, at);
         let (first, second) = (value(extreme.value), place(extreme.at));
-        said.push(format!("{word} {} {} at {second}", first, field.unit));
+        said.push(format!("{word}: {first} {} at {second}", field.unit));
         let mut label = Label::new(&first);
         label.bold = true;
         label.backed = true;
@@ -366,7 +380,7 @@ fn excluded_note(field: &Field, open_above: bool, notes: &mut Vec<String>) {
         return;
     };
     let mut text = format!(
-        "Dashed rings: sharp re-entrant corners, where linear-elastic stress has no limit; the extreme is \
+        "{RINGS} sharp re-entrant corners, where linear-elastic stress has no limit; the extreme is \
          sought farther than {} {} from them.",
         digits::short(radius, 3),
         field.units.length

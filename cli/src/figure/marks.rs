@@ -2,11 +2,13 @@
 
 use sectile_mesh::{Point, Vector};
 
-use super::page::{Anchor, FAINT, INK, Label, Page, Pen, number};
+use super::page::{Anchor, INK, Label, Page, Pen, number};
 use super::rect::Rect;
 
 /// The colour of the shear centre.
 pub const SHEAR: &str = "#a63a12";
+/// The colour of the axes of the section file.
+pub const AXES: &str = "#0b6b62";
 /// The colour of the flexure centre.
 pub const FLEXURE: &str = "#1f5f99";
 
@@ -35,6 +37,25 @@ impl Mark {
         }
     }
 
+    /// Draws the white edge that keeps it legible on any ground. Where marks coincide, draw all edges
+    /// before the first mark.
+    pub fn draw_edge(self, page: &mut Page, at: Point) {
+        let r = self.radius();
+        let p = |dx: f64, dy: f64| Point::new(at.x + dx, at.y + dy);
+        let pen = Pen::line("#ffffff", 0.9);
+        match self {
+            Self::Centroid => {}
+            Self::ShearCentre => {
+                page.polygon(&[p(r, 0.0), p(0.0, -r), p(-r, 0.0), p(0.0, r)], pen);
+            }
+            Self::FlexureCentre => {
+                page.line(p(-r, -r), p(r, r), pen);
+                page.line(p(-r, r), p(r, -r), pen);
+            }
+            Self::Extreme => page.circle(at, r, Pen::line("#ffffff", 0.7)),
+        }
+    }
+
     /// Draws it.
     pub fn draw(self, page: &mut Page, at: Point) {
         let r = self.radius();
@@ -51,17 +72,13 @@ impl Mark {
             }
             Self::ShearCentre => {
                 let corners = [p(r, 0.0), p(0.0, -r), p(-r, 0.0), p(0.0, r)];
-                page.polygon(&corners, Pen::line("#ffffff", 0.9));
                 page.polygon(&corners, Pen::line(SHEAR, 0.4));
             }
             Self::FlexureCentre => {
-                for pen in [Pen::line("#ffffff", 0.9), Pen::line(FLEXURE, 0.4)] {
-                    page.line(p(-r, -r), p(r, r), pen);
-                    page.line(p(-r, r), p(r, -r), pen);
-                }
+                page.line(p(-r, -r), p(r, r), Pen::line(FLEXURE, 0.4));
+                page.line(p(-r, r), p(r, -r), Pen::line(FLEXURE, 0.4));
             }
             Self::Extreme => {
-                page.circle(at, r, Pen::line("#ffffff", 0.7));
                 page.circle(at, r, Pen::line(INK, 0.25));
                 page.circle(at, 0.3, Pen::fill(INK));
             }
@@ -91,15 +108,20 @@ pub fn arrowhead(page: &mut Page, tip: Point, u: Vector, head: f64, colour: &str
 
 /// Small arrows x and y at `at`; returns what they cover.
 pub fn axes(page: &mut Page, at: Point) -> Vec<Rect> {
-    let pen = Pen::line(FAINT, 0.22);
     let (right, up) = (Point::new(at.x + 7.0, at.y), Point::new(at.x, at.y - 7.0));
-    arrow(page, at, right, 1.6, pen);
-    arrow(page, at, up, 1.6, pen);
+    for tip in [right, up] {
+        page.line(at, tip, Pen::line("#ffffff", 0.9));
+    }
+    for tip in [right, up] {
+        arrow(page, at, tip, 1.8, Pen::line(AXES, 0.3));
+    }
+    page.circle(at, 0.55, Pen::line(AXES, 0.25).filled("#ffffff"));
     let mut label = Label::small("x");
-    label.colour = FAINT;
-    let x = page.text(Point::new(right.x + 0.5, at.y + 0.8), &label);
+    label.colour = AXES;
+    label.backed = true;
+    let x = page.text(Point::new(right.x + 0.7, at.y + 0.7), &label);
     label.text = "y";
-    let y = page.text(Point::new(at.x - 0.7, up.y - 0.9), &label);
+    let y = page.text(Point::new(at.x - 0.7, up.y - 1.0), &label);
     vec![x, y]
 }
 

@@ -14,7 +14,7 @@ const DISTANCES: [f64; 9] = [0.0, 1.5, 3.0, 5.0, 8.0, 12.0, 17.0, 24.0, 32.0];
 /// Air around a placed label, mm.
 const AIR: f64 = 0.5;
 /// What a label wholly on material costs, in mm of distance.
-const ON_MATERIAL: f64 = 9.0;
+const ON_MATERIAL: f64 = 12.0;
 /// A leader is drawn from here on, mm.
 const LEADER_FROM: f64 = 2.5;
 

@@ -11,7 +11,7 @@ use super::outline::{self, Shape};
 use super::page::{FAINT, Finished, INK, Label, MARGIN, Page, Pen};
 use super::place::Ground;
 use super::rect::Rect;
-use super::text::{LABEL, SMALL};
+use super::text::{self, LABEL, SMALL};
 use super::view::View;
 use crate::section::Units;
 use crate::write::{CAUTION, digits, units as unit_names};
@@ -78,11 +78,19 @@ pub fn draw(
     let tall = bounds.height() > 0.75 * bounds.width();
     let beside = tall && width >= 2.0 * BLOCK + 30.0;
     let right = width - MARGIN - if beside { BLOCK + 4.0 } else { 3.0 };
+    // Dimension lines keep off a centre that stands beside the outline, where the other side is free.
+    let margin = 1e-6 * size;
+    let turned = Turned {
+        height_right: bounds.x0 < extent.x0 - margin && bounds.x1 <= extent.x1 + margin,
+        width_above: bounds.y0 < extent.y0 - margin && bounds.y1 <= extent.y1 + margin,
+    };
+    let side = turned.room();
+    let upper = page.cursor + side.y0;
     let area = Rect::new(
-        MARGIN + DIMENSION_ROOM,
-        page.cursor + 4.0,
-        right,
-        page.cursor + 4.0 + MOST_HEIGHT,
+        MARGIN + side.x0,
+        upper,
+        right - side.x1,
+        upper + MOST_HEIGHT,
     );
     let mut view = View::fit(bounds, area);
     if beside {
@@ -110,7 +118,7 @@ pub fn draw(
             MARGIN,
             top,
             if beside { right + 2.0 } else { width - MARGIN },
-            drawn.y1 + DIMENSION_ROOM,
+            drawn.y1 + side.y1,
         ),
         taken: centres
             .iter()
@@ -119,7 +127,7 @@ pub fn draw(
         leaders: Vec::new(),
         shape: Some(&shape),
     };
-    dimensions(&mut page, &mut ground, extent, solid);
+    dimensions(&mut page, &mut ground, extent, solid, turned);
     origin(&mut page, &mut ground, &view, drawn);
     let principal = principal(&get);
     if let (Some(Principal::Axes(angle)), Some(c)) = (
@@ -128,6 +136,9 @@ pub fn draw(
     ) {
         let at = view.point(c.at());
         axes(&mut page, &mut ground, at, angle.value, solid);
+    }
+    for centre in &centres {
+        centre.mark.draw_edge(&mut page, view.point(centre.at()));
     }
     for centre in &centres {
         centre.mark.draw(&mut page, view.point(centre.at()));
@@ -140,7 +151,7 @@ pub fn draw(
         .map(|c| centre_block(c, units))
         .collect();
     blocks.extend(principal.map(|p| principal_block(&p)));
-    let bottom = drawn.y1 + DIMENSION_ROOM + 1.0;
+    let bottom = drawn.y1 + side.y1 + 1.0;
     if beside {
         let mut y = top + 2.0;
         for block in &blocks {
@@ -186,7 +197,7 @@ fn centres(get: &dyn Fn(Quantity) -> Option<Figure>) -> Vec<Centre> {
             Mark::ShearCentre,
             "S",
             "shear centre",
-            "independent of ν; loads refer to it",
+            "independent of Poisson's ratio; loads refer to it",
             Q::ShearCentreX,
             Q::ShearCentreY,
         ),
@@ -194,7 +205,7 @@ fn centres(get: &dyn Fn(Quantity) -> Option<Figure>) -> Vec<Centre> {
             Mark::FlexureCentre,
             "F",
             "flexure centre",
-            "no mean rotation; depends on ν",
+            "no mean rotation under flexure; depends on Poisson's ratio",
             Q::FlexureCentreX,
             Q::FlexureCentreY,
         ),
@@ -235,39 +246,72 @@ fn principal(get: &dyn Fn(Quantity) -> Option<Figure>) -> Option<Principal> {
     })
 }
 
-fn dimensions(page: &mut Page, ground: &mut Ground, extent: Rect, solid: Rect) {
-    let thin = Pen::line(FAINT, 0.12);
-    let y = solid.y1 + DIMENSION_AT;
-    for x in [solid.x0, solid.x1] {
-        page.line(Point::new(x, solid.y1 + 1.0), Point::new(x, y + 1.0), thin);
+/// On which sides the dimension lines stand.
+#[derive(Clone, Copy)]
+struct Turned {
+    /// The height is given on the right instead of on the left.
+    height_right: bool,
+    /// The width is given above instead of below.
+    width_above: bool,
+}
+
+impl Turned {
+    /// Room around the drawing, mm, as left, top, right, bottom.
+    fn room(self) -> Rect {
+        let pick = |dimension: bool, bare: f64| if dimension { DIMENSION_ROOM } else { bare };
+        Rect::new(
+            pick(!self.height_right, 8.0),
+            pick(self.width_above, 6.0),
+            pick(self.height_right, 3.0),
+            pick(!self.width_above, 5.0),
+        )
     }
-    let x = solid.x0 - DIMENSION_AT;
-    for y in [solid.y0, solid.y1] {
-        page.line(Point::new(solid.x0 - 1.0, y), Point::new(x - 1.0, y), thin);
+}
+
+fn dimensions(page: &mut Page, ground: &mut Ground, extent: Rect, solid: Rect, turned: Turned) {
+    let thin = Pen::line(FAINT, 0.12);
+    let (near, far, y) = if turned.width_above {
+        (
+            solid.y0 - 1.0,
+            solid.y0 - DIMENSION_AT - 1.0,
+            solid.y0 - DIMENSION_AT,
+        )
+    } else {
+        (
+            solid.y1 + 1.0,
+            solid.y1 + DIMENSION_AT + 1.0,
+            solid.y1 + DIMENSION_AT,
+        )
+    };
+    for x in [solid.x0, solid.x1] {
+        page.line(Point::new(x, near), Point::new(x, far), thin);
     }
     let text = digits::short(extent.width(), 6);
-    let rect = marks::dimension(
-        page,
-        Point::new(solid.x0, y),
-        Point::new(solid.x1, y),
-        &text,
-    );
-    ground.taken.push(rect);
-    let text = digits::short(extent.height(), 6);
-    let rect = marks::dimension(
-        page,
-        Point::new(x, solid.y1),
-        Point::new(x, solid.y0),
-        &text,
-    );
-    ground.taken.push(rect);
+    let (a, b) = (Point::new(solid.x0, y), Point::new(solid.x1, y));
+    ground.taken.push(marks::dimension(page, a, b, &text));
     // Labels keep off the dimension lines too.
-    ground
-        .leaders
-        .push((Point::new(solid.x0, y), Point::new(solid.x1, y)));
-    ground
-        .leaders
-        .push((Point::new(x, solid.y0), Point::new(x, solid.y1)));
+    ground.leaders.push((a, b));
+
+    let (near, far, x) = if turned.height_right {
+        (
+            solid.x1 + 1.0,
+            solid.x1 + DIMENSION_AT + 1.0,
+            solid.x1 + DIMENSION_AT,
+        )
+    } else {
+        (
+            solid.x0 - 1.0,
+            solid.x0 - DIMENSION_AT - 1.0,
+            solid.x0 - DIMENSION_AT,
+        )
+    };
+    for y in [solid.y0, solid.y1] {
+        page.line(Point::new(near, y), Point::new(far, y), thin);
+    }
+    let text = digits::short(extent.height(), 6);
+    let (a, b) = (Point::new(x, solid.y1), Point::new(x, solid.y0));
+    ground.taken.push(marks::dimension(page, a, b, &text));
+    ground.leaders.push((a, b));
 }
 
 /// The axes of the section file: at their origin if that is in sight.
@@ -299,19 +343,21 @@ fn axes(page: &mut Page, ground: &mut Ground, at: Point, degrees: f64, solid: Re
         page.line(a, b, Pen::line(INK, 0.15).dashed("4 0.8 0.6 0.8"));
         ground.leaders.push((a, b));
         let label = Label::small(number);
-        // At the end that points right or up.
-        let (tip, out) = if d.x > 0.5 || (d.x > -0.5 && d.y < 0.0) {
-            (b, d)
+        // At the end that points right or up, if that is free.
+        let ends = if d.x > 0.5 || (d.x > -0.5 && d.y < 0.0) {
+            [(b, d), (a, -d)]
         } else {
-            (a, -d)
+            [(a, -d), (b, d)]
         };
-        let m = tip + out * 1.6;
-        let w = label.width();
-        let base = Point::new(m.x - 0.5 * w, m.y + 0.36 * SMALL);
-        let rect = label.rect(base);
-        if ground.area.contains(&rect) && !ground.taken.iter().any(|t| t.overlaps(&rect)) {
-            page.text(base, &label);
-            ground.taken.push(rect);
+        for (tip, out) in ends {
+            let m = tip + out * 1.6;
+            let base = Point::new(m.x - 0.5 * label.width(), m.y + 0.36 * SMALL);
+            let rect = label.rect(base);
+            if ground.area.contains(&rect) && !ground.taken.iter().any(|t| t.overlaps(&rect)) {
+                page.text(base, &label);
+                ground.taken.push(rect);
+                break;
+            }
         }
     }
 }
@@ -365,6 +411,19 @@ fn letters(page: &mut Page, ground: &mut Ground, centres: &[Centre], view: &View
     }
 }
 
+/// A figure with its ±; exact ones without trailing zeros.
+fn printed(figure: &Figure) -> String {
+    let mut text = digits::print(figure);
+    if text.half_width.is_none() && text.value.contains('.') {
+        text.value = text
+            .value
+            .trim_end_matches('0')
+            .trim_end_matches('.')
+            .into();
+    }
+    digits::minus_sign(&text.line())
+}
+
 /// A mark, a heading and lines below it.
 struct Block {
     mark: Option<Mark>,
@@ -375,7 +434,7 @@ struct Block {
 
 fn centre_block(centre: &Centre, units: &Units) -> Block {
     let line = |(q, f): &(Quantity, Figure)| {
-        let text = digits::minus_sign(&digits::print(f).line());
+        let text = printed(f);
         let unit = unit_names::pretty(q.dimension(), units);
         format!("{} = {text} {unit}", q.symbol())
     };
@@ -393,10 +452,7 @@ fn principal_block(principal: &Principal) -> Block {
         heading: "1, 2  principal axes".into(),
         remark: String::new(),
         lines: vec![match principal {
-            Principal::Axes(angle) => format!(
-                "axis 1 at α = {}° from x",
-                digits::minus_sign(&digits::print(angle).line())
-            ),
+            Principal::Axes(angle) => format!("axis 1 at α = {}° from x", printed(angle)),
             Principal::Any => "every axis through C is one".into(),
         }],
     }
@@ -417,9 +473,9 @@ fn draw_block(page: &mut Page, at: Point, block: &Block) -> f64 {
     let mut label = Label::new(&block.heading);
     label.bold = true;
     page.text(Point::new(at.x + indent, y), &label);
-    if !block.remark.is_empty() {
-        y += 1.25 * SMALL;
-        let mut label = Label::small(&block.remark);
+    for line in text::wrap(&block.remark, SMALL, BLOCK - indent) {
+        y += 1.2 * SMALL;
+        let mut label = Label::small(&line);
         label.colour = FAINT;
         page.text(Point::new(at.x + indent, y), &label);
     }

@@ -159,11 +159,20 @@ pub fn markup(runs: &[Run], size: f64) -> String {
     let mut out = String::new();
     let mut low = false;
     for run in runs {
-        let text = escape(&run.text);
+        let text = escape(&run.text).replace("  ", "\u{a0} ");
         let down = 0.25 * size;
         match (low, run.sub) {
             (false, false) => out.push_str(&text),
-            (true, false) => out.push_str(&format!(r#"<tspan dy="{:.2}">{text}</tspan>"#, -down)),
+            (true, false) => {
+                // Readers drop the space that begins an element: it is made by moving on.
+                let bare = text.trim_start_matches(' ');
+                let shift = if bare == text { 0.05 } else { 0.32 };
+                out.push_str(&format!(
+                    r#"<tspan dx="{:.2}" dy="{:.2}">{bare}</tspan>"#,
+                    shift * size,
+                    -down
+                ));
+            }
             (_, true) => out.push_str(&format!(
                 r#"<tspan dy="{:.2}" font-size="{:.2}">{text}</tspan>"#,
                 if low { 0.0 } else { down },
@@ -194,7 +203,7 @@ mod tests {
         let text = markup(&runs("x_s <"), 2.0);
         assert_eq!(
             text,
-            r#"x<tspan dy="0.50" font-size="1.50">s</tspan><tspan dy="-0.50"> &lt;</tspan>"#
+            r#"x<tspan dy="0.50" font-size="1.50">s</tspan><tspan dx="0.64" dy="-0.50">&lt;</tspan>"#
         );
     }
 

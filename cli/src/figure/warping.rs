@@ -23,8 +23,7 @@ pub fn draw(
 ) -> Finished {
     let unit = format!("{}{}", units.length, superscript(2));
     let subtitle = format!(
-        "Axial displacement under unit twist, u_z = ω θ′, about the shear centre, zero mean; ω in {unit}. \
-         Heavy line: ω = 0; dashed lines: ω < 0."
+        "Axial displacement under unit twist, u_z = ω θ′, about the shear centre, zero mean; ω in {unit}."
     );
     let field = Field {
         kind: "Warping ω",
