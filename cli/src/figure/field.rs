@@ -376,13 +376,20 @@ fn mark_extremes(
 }
 
 fn excluded_note(field: &Field, open_above: bool, notes: &mut Vec<String>) {
-    let Some(radius) = field.excluded.iter().map(|c| c.radius).reduce(f64::max) else {
+    if field.excluded.is_empty() {
         return;
+    }
+    let radii = || field.excluded.iter().map(|c| c.radius);
+    let least = digits::short(radii().fold(f64::INFINITY, f64::min), 3);
+    let most = digits::short(radii().fold(0.0, f64::max), 3);
+    let distance = if least == most {
+        most
+    } else {
+        format!("{least} to {most}")
     };
     let mut text = format!(
         "{RINGS} sharp re-entrant corners, where linear-elastic stress has no limit; the extreme is \
-         sought farther than {} {} from them.",
-        digits::short(radius, 3),
+         sought farther than {distance} {} from them.",
         field.units.length
     );
     if open_above {

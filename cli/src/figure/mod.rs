@@ -24,16 +24,18 @@ pub mod view;
 pub mod warping;
 
 #[cfg(test)]
-mod samples;
+pub(crate) mod samples;
 #[cfg(test)]
 mod tests;
 
+use page::Finished;
 use sectile_mesh::Point;
 use sectile_mesh::domain::Domain;
 use sectile_mesh::outline::side::Circle;
 use sectile_solver::quantity::Quantity;
 use sectile_solver::sample::{self, Lattice, UnitForce};
 use sectile_solver::solution::Solution;
+use sectile_solver::solution::exclusion_radius;
 
 use crate::section::Units;
 use surface::Sharing;
@@ -41,15 +43,25 @@ use surface::Sharing;
 /// Print width where none is asked for, mm.
 pub const PRINT_WIDTH: f64 = 160.0;
 /// The narrowest page, mm.
-pub const NARROWEST: f64 = 80.0;
+pub const NARROWEST: f64 = 60.0;
 /// No file is larger than this, bytes, unless even the coarsest drawing is.
 pub const SIZE_LIMIT: usize = 390_000;
 
 /// Small triangles that a field is drawn with, about.
 const CELLS: f64 = 60_000.0;
 
+/// The names of all figures.
+pub const FILES: &[&str] = &[
+    "section.svg",
+    "mesh.svg",
+    "warping.svg",
+    "shear-torque.svg",
+    "shear-vx.svg",
+    "shear-vy.svg",
+];
+
 /// All figures of a solved section: file name and SVG text. Fields that the solution does not have
-/// (torsion of separate parts) are left out. `width_mm` is raised to [`NARROWEST`].
+/// (those of a section in separate parts) are left out. `width_mm` is raised to [`NARROWEST`].
 #[must_use]
 pub fn all(
     title: &str,
@@ -58,6 +70,19 @@ pub fn all(
     solution: &Solution,
     width_mm: f64,
 ) -> Vec<(String, String)> {
+    finished(title, units, domain, solution, width_mm)
+        .into_iter()
+        .map(|(name, figure)| (name.to_string(), figure.svg))
+        .collect()
+}
+
+fn finished(
+    title: &str,
+    units: &Units,
+    domain: &Domain,
+    solution: &Solution,
+    width_mm: f64,
+) -> Vec<(&'static str, Finished)> {
     let width = if width_mm.is_finite() {
         width_mm.max(NARROWEST)
     } else {
@@ -65,11 +90,11 @@ pub fn all(
     };
     let mut files = vec![
         (
-            "section.svg".to_string(),
-            section::draw(title, units, domain, &solution.properties, width).svg,
+            FILES[0],
+            section::draw(title, units, domain, &solution.properties, width),
         ),
         (
-            "mesh.svg".to_string(),
+            FILES[1],
             mesh::draw(
                 title,
                 units,
@@ -77,8 +102,7 @@ pub fn all(
                 &solution.mesh,
                 &mesh_size(solution),
                 width,
-            )
-            .svg,
+            ),
         ),
     ];
     let lattice = Lattice::new(divisions(solution));
@@ -96,10 +120,18 @@ pub fn all(
     if warping.len() == positions.len() {
         let values = sharing.mean(&warping);
         let figure = warping::draw(title, units, domain, &surface, &values, centre, width);
-        files.push(("warping.svg".to_string(), figure.svg));
+        files.push((FILES[2], figure));
     }
-    let excluded = excluded(solution);
-    for force in [UnitForce::Torque, UnitForce::ShearX, UnitForce::ShearY] {
+    let excluded: Vec<Circle> = solution
+        .corners
+        .iter()
+        .map(|corner| Circle {
+            centre: corner.at,
+            radius: exclusion_radius(corner),
+        })
+        .collect();
+    let forces = [UnitForce::Torque, UnitForce::ShearX, UnitForce::ShearY];
+    for (force, name) in forces.into_iter().zip(&FILES[3..]) {
         let stress = sample::shear_stress(solution, force, &lattice);
         if stress.len() != positions.len() {
             continue;
@@ -108,7 +140,7 @@ pub fn all(
         let figure = stress::draw(
             force, title, units, domain, &surface, &mean, &excluded, centre, width,
         );
-        files.push((stress::file_name(force).to_string(), figure.svg));
+        files.push((name, figure));
     }
     files
 }
@@ -129,23 +161,4 @@ fn mesh_size(solution: &Solution) -> String {
         solution.order,
         if levels == 1 { "level" } else { "levels" },
     )
-}
-
-/// Circles about the sharp re-entrant corners that the solution names: a quarter of the mean wall
-/// thickness 2A/u in radius, rounded down to 1, 2 or 5.
-fn excluded(solution: &Solution) -> Vec<Circle> {
-    let value = |q: Quantity| solution.get(q).map_or(0.0, |f| f.value);
-    let edge = value(Quantity::Perimeter) + value(Quantity::HolePerimeter);
-    let thickness = 2.0 * value(Quantity::Area) / edge;
-    if !thickness.is_finite() || thickness <= 0.0 {
-        return Vec::new();
-    }
-    let radius = marks::round_length(1.0, 0.25 * thickness);
-    solution
-        .notes
-        .iter()
-        .filter(|note| note.kind == "sharp-corner")
-        .filter_map(|note| note.at)
-        .map(|centre| Circle { centre, radius })
-        .collect()
 }

@@ -6,7 +6,9 @@ use sectile_mesh::domain::{Domain, DomainSide};
 use sectile_mesh::mesh::{Mesh, MeshSide, NONE};
 use sectile_mesh::outline::side::{Arc, Circle};
 use sectile_mesh::{Point, Vector};
+use sectile_solver::material::Material;
 use sectile_solver::sample::Lattice;
+use sectile_solver::solution::{Settings, Solution, solve};
 
 use super::surface::Surface;
 
@@ -78,6 +80,18 @@ pub fn channel() -> Domain {
         (80.0, 188.0),
         (80.0, 200.0),
         (0.0, 200.0),
+    ])])
+}
+
+/// An unequal angle with sharp corners.
+pub fn angle() -> Domain {
+    domain(&[polygon(&[
+        (0.0, 0.0),
+        (75.0, 0.0),
+        (75.0, 9.0),
+        (9.0, 9.0),
+        (9.0, 150.0),
+        (0.0, 150.0),
     ])])
 }
 
@@ -171,6 +185,24 @@ pub fn mesh(
         circles,
         loop_is_outer: vec![true],
     }
+}
+
+/// Solved with one material, ν = 0.3, to a tolerance of 1e-3.
+pub fn solved(domain: &Domain) -> Solution {
+    let material = Material {
+        name: "steel".into(),
+        young: 210_000.0,
+        poisson: 0.3,
+        shear: 210_000.0 / 2.6,
+        yield_stress: None,
+        density: Some(7850.0),
+    };
+    let settings = Settings {
+        tolerance: 1e-3,
+        order: None,
+        max_unknowns: 100_000,
+    };
+    solve(domain, &[material], 1e-3, &settings, &mut |_| {}).expect("a sound section")
 }
 
 /// `nx × ny` cells of two triangles on `b × h`.

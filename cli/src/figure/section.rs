@@ -155,18 +155,24 @@ pub fn draw(
     if beside {
         let mut y = top + 2.0;
         for block in &blocks {
-            y = draw_block(&mut page, Point::new(width - MARGIN - BLOCK, y), block) + 2.5;
+            y = draw_block(
+                &mut page,
+                Point::new(width - MARGIN - BLOCK, y),
+                block,
+                BLOCK,
+            ) + 2.5;
         }
         page.cursor = bottom.max(y);
     } else {
         let columns = (((width - 2.0 * MARGIN) / BLOCK).floor() as usize).max(1);
         page.cursor = bottom + 1.0;
+        let column = (width - 2.0 * MARGIN) / columns as f64;
         for row in blocks.chunks(columns) {
             let upper = page.cursor;
             let mut low = upper;
             for (i, block) in row.iter().enumerate() {
-                let x = MARGIN + i as f64 * (width - 2.0 * MARGIN) / columns as f64;
-                low = low.max(draw_block(&mut page, Point::new(x, upper), block));
+                let x = MARGIN + i as f64 * column;
+                low = low.max(draw_block(&mut page, Point::new(x, upper), block, column));
             }
             page.cursor = low + 2.0;
         }
@@ -458,9 +464,10 @@ fn principal_block(principal: &Principal) -> Block {
     }
 }
 
-/// Draws a block with its upper left corner at `at`; returns its lower edge.
-fn draw_block(page: &mut Page, at: Point, block: &Block) -> f64 {
+/// Draws a block with its upper left corner at `at`, within `width`; returns its lower edge.
+fn draw_block(page: &mut Page, at: Point, block: &Block, width: f64) -> f64 {
     let indent = 6.0;
+    let limit = width - indent;
     let mut y = at.y + 0.78 * LABEL;
     match block.mark {
         Some(mark) => mark.draw(page, Point::new(at.x + 2.4, y - 0.36 * LABEL)),
@@ -473,7 +480,7 @@ fn draw_block(page: &mut Page, at: Point, block: &Block) -> f64 {
     let mut label = Label::new(&block.heading);
     label.bold = true;
     page.text(Point::new(at.x + indent, y), &label);
-    for line in text::wrap(&block.remark, SMALL, BLOCK - indent) {
+    for line in text::wrap(&block.remark, SMALL, limit) {
         y += 1.2 * SMALL;
         let mut label = Label::small(&line);
         label.colour = FAINT;
@@ -481,7 +488,9 @@ fn draw_block(page: &mut Page, at: Point, block: &Block) -> f64 {
     }
     for line in &block.lines {
         y += 1.3 * LABEL;
-        page.text(Point::new(at.x + indent, y), &Label::new(line));
+        let mut label = Label::new(line);
+        label.size *= (limit / label.width()).min(1.0);
+        page.text(Point::new(at.x + indent, y), &label);
     }
     y + 0.26 * LABEL
 }

@@ -12,16 +12,6 @@ use super::surface::Surface;
 use crate::section::Units;
 use crate::write::units::{stress_per_force, stress_per_moment};
 
-/// The file's name.
-#[must_use]
-pub fn file_name(force: UnitForce) -> &'static str {
-    match force {
-        UnitForce::Torque => "shear-torque.svg",
-        UnitForce::ShearX => "shear-vx.svg",
-        UnitForce::ShearY => "shear-vy.svg",
-    }
-}
-
 /// Draws |τ| with arrows along τ. `stress` is per length³ for a torque, per length² for a force.
 #[must_use]
 pub fn draw(

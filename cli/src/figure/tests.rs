@@ -157,7 +157,7 @@ fn section_figures() {
         ),
     ];
     for (name, domain, centres, angle) in &cases {
-        for width in [80.0, 160.0, 210.0] {
+        for width in [60.0, 80.0, 160.0, 210.0] {
             let figure = section::draw(
                 "Boatyard hoist runway, an invented scenario",
                 &units(),
@@ -324,6 +324,29 @@ fn quoted_extreme_keeps_out_of_excluded_circles() {
         radius: 9.0,
     }];
     assert!(field::extreme(&surface, &values, &mirrored, 1.0).is_none());
+}
+
+#[test]
+fn solved_sections() {
+    for (name, domain) in [
+        ("channel", samples::channel()),
+        ("ring", samples::annulus(50.0, 60.0, 60.0, 45.0)),
+        ("half-disc", samples::half_disc(50.0)),
+        ("flat", samples::rectangle(200.0, 12.0)),
+        ("angle", samples::angle()),
+    ] {
+        let solution = samples::solved(&domain);
+        for width in [60.0, 160.0] {
+            let figures = finished("An invented bar", &units(), &domain, &solution, width);
+            assert_eq!(figures.len(), FILES.len());
+            for (file, figure) in &figures {
+                sound(
+                    &format!("{name}-{width}-{}", file.trim_end_matches(".svg")),
+                    figure,
+                );
+            }
+        }
+    }
 }
 
 #[test]

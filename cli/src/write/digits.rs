@@ -12,6 +12,8 @@ const MOST_DIGITS: i32 = 10;
 /// From here on, and below `SMALL`, a power of ten is split off.
 const LARGE: f64 = 1e6;
 const SMALL: f64 = 1e-3;
+/// The half-width of a nought has plain decimals down to this.
+const SMALLEST: f64 = 1e-6;
 
 /// A figure in print: `(value ± half_width) × 10^power`.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -49,7 +51,7 @@ impl Printed {
 /// - Otherwise the half-width has two significant digits up to 29, one above, rounded up; the value
 ///   ends at the same decimal.
 /// - What rounds to nothing at that decimal prints as `0`.
-/// - From 10⁶ on and below 10⁻³ a power of ten that is a multiple of three is split off.
+/// - From 10⁶ on and below 10⁻³ (for the half-width of a nought, 10⁻⁶) a power of ten that is a multiple of three is split off.
 /// - A value that is not a number prints as `–`, an enclosure without end as `± ∞`.
 #[must_use]
 pub fn print(figure: &Figure) -> Printed {
@@ -90,7 +92,12 @@ pub fn print(figure: &Figure) -> Printed {
     let rounded = round_at(figure.value, last);
     let reach = half + (rounded - figure.value).abs();
     let steps = steps_up(reach, magnitude, last);
-    let power = split(rounded.abs().max(steps * ten(last)));
+    let power = if rounded == 0.0 && (SMALLEST..LARGE).contains(&half) {
+        // Beside a nought, plain decimals read more easily than a power of ten.
+        0
+    } else {
+        split(rounded.abs().max(steps * ten(last)))
+    };
     // A power that is larger than the last decade needs decimals; a smaller one needs none.
     let decimals = (power - last).max(0) as usize;
     let half_width = format!("{:.*}", decimals, steps * ten(last - power));

@@ -8,7 +8,7 @@ use std::io::{self, Write};
 use std::path::{Component, Path, PathBuf};
 
 /// The file that tells whose folder it is.
-const RESULTS: &str = "results.json";
+pub const RESULTS: &str = "results.json";
 
 /// Why an output folder was not written.
 #[derive(Debug, thiserror::Error)]

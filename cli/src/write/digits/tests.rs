@@ -65,7 +65,8 @@ fn printed_interval_contains_the_enclosure() {
 
 #[test]
 fn zero_by_symmetry_is_nought_with_its_error() {
-    assert_eq!(bounded(1e-17, 2.3e-4), "(0 ± 230)×10⁻⁶");
+    assert_eq!(bounded(1e-17, 2.3e-4), "0 ± 0.00023");
+    assert_eq!(bounded(1e-24, 2.3e-8), "(0 ± 23)×10⁻⁹");
     assert_eq!(bounded(-1e-17, 0.0023), "0 ± 0.0023");
     assert_eq!(bounded(-0.0, 0.5), "0 ± 0.5");
     assert_eq!(exact(-1e-17, 1e-15), "0");

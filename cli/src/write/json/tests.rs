@@ -1,7 +1,6 @@
 #![allow(clippy::unwrap_used)]
 use super::*;
 use sectile_mesh::Point;
-use sectile_mesh::mesh::Mesh;
 use sectile_solver::figure::{Figure, Trust};
 use sectile_solver::quantity::Quantity;
 use sectile_solver::solution::{Level, Note as Finding};
@@ -15,21 +14,8 @@ pub(crate) fn sample_units() -> Units {
     }
 }
 
-/// A made-up solution with awkward numbers; its mesh is one triangle.
+/// A solution of a rectangle, its numbers replaced by awkward ones.
 pub(crate) fn sample_solution() -> Solution {
-    let mesh = Mesh {
-        vertices: vec![
-            Point::new(0.0, 0.0),
-            Point::new(1.0, 0.0),
-            Point::new(0.0, 1.0),
-        ],
-        triangles: vec![[0, 1, 2]],
-        piece: vec![0],
-        sides: Vec::new(),
-        triangle_sides: vec![[0, 1, 2]],
-        circles: Vec::new(),
-        loop_is_outer: vec![true],
-    };
     let awkward = [
         (0.1 + 0.2, 1e-3, Trust::Bounded),
         (-0.0, 0.0, Trust::Exact),
@@ -38,7 +24,7 @@ pub(crate) fn sample_solution() -> Solution {
         (6.022e23, 1e18, Trust::Estimated),
         (-1.0 / 3.0, 1e-12, Trust::Exact),
     ];
-    let mut solution = fields_left_out(mesh);
+    let mut solution = crate::figure::samples::solved(&crate::figure::samples::rectangle(2.0, 1.0));
     solution.properties = Quantity::ALL
         .iter()
         .enumerate()
@@ -67,18 +53,6 @@ pub(crate) fn sample_solution() -> Solution {
         at: Some(Point::new(8.0, -0.0)),
     }];
     solution
-}
-
-fn fields_left_out(mesh: Mesh) -> Solution {
-    Solution {
-        mesh,
-        order: 4,
-        levels: Vec::new(),
-        reached: true,
-        properties: Vec::new(),
-        notes: Vec::new(),
-        timings: Default::default(),
-    }
 }
 
 fn results() -> Results {
