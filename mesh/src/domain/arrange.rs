@@ -62,7 +62,9 @@ pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
 
     let (points, parts) = cut(&edges, &cuts, tolerance);
     let (sides, stacked) = join(&parts);
-    faults.extend(overlaps(pieces, &edges, &points, &parts, &sides, &stacked, tolerance));
+    faults.extend(overlaps(
+        pieces, &edges, &points, &parts, &sides, &stacked, tolerance,
+    ));
     if faults.is_empty() {
         faults.extend(pinches(&points, &sides, pieces.len()));
     }
@@ -80,10 +82,20 @@ pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
 }
 
 fn section_size(edges: &[Edge]) -> f64 {
-    let mut e = [f64::INFINITY, f64::NEG_INFINITY, f64::INFINITY, f64::NEG_INFINITY];
+    let mut e = [
+        f64::INFINITY,
+        f64::NEG_INFINITY,
+        f64::INFINITY,
+        f64::NEG_INFINITY,
+    ];
     for edge in edges {
         let b = extent(&edge.side, 0.0);
-        e = [e[0].min(b[0]), e[1].max(b[1]), e[2].min(b[2]), e[3].max(b[3])];
+        e = [
+            e[0].min(b[0]),
+            e[1].max(b[1]),
+            e[2].min(b[2]),
+            e[3].max(b[3]),
+        ];
     }
     (e[1] - e[0]).max(e[3] - e[2]).max(f64::MIN_POSITIVE)
 }
@@ -131,10 +143,9 @@ impl Meeting {
             .filter(|(u, v)| u == v)
             .map(|(u, _)| u)
             .collect();
-        let at = *self
-            .at
-            .iter()
-            .find(|c| a.ring != b.ring || common.iter().all(|e| e.distance(**c) > 4.0 * tolerance))?;
+        let at = *self.at.iter().find(|c| {
+            a.ring != b.ring || common.iter().all(|e| e.distance(**c) > 4.0 * tolerance)
+        })?;
         Some(match (a.ring, b.ring) {
             (r, s) if r == s => Fault::SelfCrossing { a, b, at },
             (0, _) => Fault::HoleCrossesEdge {
@@ -367,8 +378,20 @@ fn overlaps(
         .map(|i| {
             let own = edges.iter().filter(|e| e.place.piece == i);
             own.map(|e| extent(&e.side, 0.0)).fold(
-                [f64::INFINITY, f64::NEG_INFINITY, f64::INFINITY, f64::NEG_INFINITY],
-                |m, e| [m[0].min(e[0]), m[1].max(e[1]), m[2].min(e[2]), m[3].max(e[3])],
+                [
+                    f64::INFINITY,
+                    f64::NEG_INFINITY,
+                    f64::INFINITY,
+                    f64::NEG_INFINITY,
+                ],
+                |m, e| {
+                    [
+                        m[0].min(e[0]),
+                        m[1].max(e[1]),
+                        m[2].min(e[2]),
+                        m[3].max(e[3]),
+                    ]
+                },
             )
         })
         .collect();
@@ -468,10 +491,7 @@ fn connected_parts(pieces: usize, sides: &[DomainSide]) -> usize {
     }
     for side in sides {
         if let (Some(a), Some(b)) = (side.left, side.right) {
-            let (a, b) = (
-                find(&mut leader, a as usize),
-                find(&mut leader, b as usize),
-            );
+            let (a, b) = (find(&mut leader, a as usize), find(&mut leader, b as usize));
             leader[a.max(b)] = a.min(b);
         }
     }

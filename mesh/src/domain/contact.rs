@@ -54,7 +54,13 @@ fn line_and_circle(line: &Side, circle: &Circle, tolerance: f64) -> Vec<Point> {
     let d = line.to - line.from;
     let u = d * (1.0 / d.length());
     let foot = line.from + u * (circle.centre - line.from).dot(u);
-    along(foot, u, circle.centre.distance(foot), circle.radius, tolerance)
+    along(
+        foot,
+        u,
+        circle.centre.distance(foot),
+        circle.radius,
+        tolerance,
+    )
 }
 
 fn two_circles(p: &Circle, q: &Circle, tolerance: f64) -> Vec<Point> {
@@ -127,9 +133,21 @@ mod tests {
         assert_eq!(contacts(&a, &line([1.0, 0.5], [1.0, 1.0]), t).len(), 0);
         assert_eq!(contacts(&a, &line([1.0, 0.0], [3.0, 0.0]), t).len(), 2);
         assert_eq!(contacts(&a, &line([2.0, 0.0], [3.0, 0.0]), t).len(), 1);
-        assert_eq!(contacts(&dome(), &line([-2.0, 0.5], [2.0, 0.5]), t).len(), 2);
-        assert_eq!(contacts(&dome(), &line([-2.0, 1.0], [2.0, 1.0]), t).len(), 1);
-        assert_eq!(contacts(&dome(), &line([-2.0, 1.1], [2.0, 1.1]), t).len(), 0);
-        assert_eq!(contacts(&dome(), &line([-2.0, -0.5], [2.0, -0.5]), t).len(), 0);
+        assert_eq!(
+            contacts(&dome(), &line([-2.0, 0.5], [2.0, 0.5]), t).len(),
+            2
+        );
+        assert_eq!(
+            contacts(&dome(), &line([-2.0, 1.0], [2.0, 1.0]), t).len(),
+            1
+        );
+        assert_eq!(
+            contacts(&dome(), &line([-2.0, 1.1], [2.0, 1.1]), t).len(),
+            0
+        );
+        assert_eq!(
+            contacts(&dome(), &line([-2.0, -0.5], [2.0, -0.5]), t).len(),
+            0
+        );
     }
 }

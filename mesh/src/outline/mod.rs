@@ -2,4 +2,7 @@
 
 pub mod corner;
 pub mod piece;
+pub mod place;
+pub mod profile;
+pub mod shape;
 pub mod side;
