@@ -199,7 +199,7 @@ impl<'a> Kernel<'a> {
         for (((o, p), q), r) in out.iter_mut().zip(kxx).zip(kxy).zip(kyy) {
             *o = xx * p + xy * q + yy * r;
         }
-        balance(out, self.space.local_len());
+        balance(out, self.space.local_nodes());
     }
 
     /// Values of a source at the points of a triangle, times the determinant.
@@ -320,7 +320,7 @@ impl<'a> Kernel<'a> {
         source: Option<(Source, &[[f64; 3]])>,
         torsion: Option<&[f64]>,
     ) -> Loads {
-        let n = self.space.local_len();
+        let n = self.space.local_nodes();
         let mut loads = Loads {
             primal: vec![0.0; n * self.triangles()],
             dual: vec![0.0; n * self.triangles()],

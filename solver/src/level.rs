@@ -51,7 +51,7 @@ pub struct LevelResult {
 /// Unknowns that the larger of the two systems has on a mesh.
 #[must_use]
 pub fn unknowns(mesh: &Mesh, order: usize) -> usize {
-    Space::new(mesh, order).len().saturating_sub(1)
+    Space::new(mesh, order).nodes().saturating_sub(1)
 }
 
 /// Runs `f` and adds its seconds to `clock`.
@@ -130,8 +130,8 @@ pub fn solve_level(
         a.and(b)
     })?;
 
-    let mut primal = vec![[0.0; 8]; space.len()];
-    let mut dual = vec![[0.0; 8]; space.len()];
+    let mut primal = vec![[0.0; 8]; space.nodes()];
+    let mut dual = vec![[0.0; 8]; space.nodes()];
     let store = |to: &mut [NodeValues], problem: usize, system: &System, x: &[f64]| {
         for (row, value) in to.iter_mut().zip(system.expand(x)) {
             row[problem] = value;
@@ -223,7 +223,7 @@ fn least_eigenvalue(
     area: f64,
 ) -> Result<f64, SolveError> {
     // A fixed sequence without structure: the multiples of the golden ratio, modulo 1.
-    let mut field: Vec<f64> = (0..kernel.space.len())
+    let mut field: Vec<f64> = (0..kernel.space.nodes())
         .map(|i| (i as f64 * 0.618_033_988_749_894_9).fract() - 0.5)
         .collect();
     let mut quotient = 0.0;

@@ -40,19 +40,13 @@ impl<'a> Space<'a> {
 
     /// Number of nodes.
     #[must_use]
-    pub fn len(&self) -> usize {
+    pub fn nodes(&self) -> usize {
         self.first(Entity::Triangle(self.mesh.triangles.len()))
-    }
-
-    /// Whether there is no node.
-    #[must_use]
-    pub fn is_empty(&self) -> bool {
-        self.mesh.vertices.is_empty()
     }
 
     /// Number of nodes of one triangle with its sides and vertices.
     #[must_use]
-    pub fn local_len(&self) -> usize {
+    pub fn local_nodes(&self) -> usize {
         3 + 3 * self.per_side + self.per_triangle
     }
 

@@ -69,7 +69,7 @@ impl System {
             Condition::ConstantOnLoops => None,
         };
 
-        let mut unknown = vec![NONE; space.len()];
+        let mut unknown = vec![NONE; space.nodes()];
         let mut blocks = Vec::with_capacity(order.len() + loops);
         let mut next = 0u32;
         for &entity in order {
@@ -154,7 +154,7 @@ impl System {
         space: &Space,
         mut element: impl FnMut(usize, &mut [f64]),
     ) -> CsMat<f64> {
-        let n = space.local_len();
+        let n = space.local_nodes();
         let mut values = vec![0.0; self.rows.len()];
         let mut matrix = vec![0.0; n * n];
         let mut nodes = Vec::with_capacity(n);
@@ -223,7 +223,7 @@ impl System {
     /// `[columns]` vectors over the unknowns.
     #[must_use]
     pub fn gather(&self, space: &Space, local: &[f64], columns: usize) -> Vec<Vec<f64>> {
-        let n = space.local_len();
+        let n = space.local_nodes();
         let mut out = vec![vec![0.0; self.len]; columns];
         let mut nodes = Vec::with_capacity(n);
         for (t, values) in local.chunks_exact(n * columns).enumerate() {

@@ -2,7 +2,6 @@
 
 use crate::element::divergence::DivergenceFields;
 use crate::element::lagrange::Lagrange;
-use crate::element::orthonormal;
 use crate::element::table::Table;
 
 /// A table with the fields of given divergence at its points.
@@ -118,10 +117,4 @@ pub fn source_modes(table: &Table, source: &[f64], out: &mut Vec<f64>) {
 #[must_use]
 pub fn source_total(modes: &[f64]) -> f64 {
     modes[0] * std::f64::consts::FRAC_1_SQRT_2
-}
-
-/// Number of orthonormal polynomials up to a degree, for callers outside of the element module.
-#[must_use]
-pub const fn mode_count(degree: usize) -> usize {
-    orthonormal::count(degree)
 }

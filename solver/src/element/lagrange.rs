@@ -62,21 +62,15 @@ impl Lagrange {
 
     /// Number of nodes, `(p+1)(p+2)/2`.
     #[must_use]
-    pub fn len(&self) -> usize {
+    pub fn count(&self) -> usize {
         self.nodes.len()
-    }
-
-    /// Never: a basis has at least three nodes.
-    #[must_use]
-    pub fn is_empty(&self) -> bool {
-        self.nodes.is_empty()
     }
 
     /// `[N, ∂N/∂ξ, ∂N/∂η]` of every node function at (ξ, η).
     #[must_use]
     pub fn evaluate(&self, xi: f64, eta: f64) -> Vec<[f64; 3]> {
         let jets = orthonormal::evaluate(self.order, xi, eta);
-        (0..self.len())
+        (0..self.count())
             .map(|i| {
                 let mut out = [0.0; 3];
                 for (m, jet) in jets.iter().enumerate() {
@@ -99,7 +93,7 @@ mod tests {
     fn node_functions_are_one_at_their_node_and_sum_to_one() {
         for order in 1..=MAX_ORDER {
             let basis = Lagrange::new(order);
-            assert_eq!(basis.len(), orthonormal::count(order));
+            assert_eq!(basis.count(), orthonormal::count(order));
             for (i, node) in basis.nodes.iter().enumerate() {
                 for (j, jet) in basis.evaluate(node[0], node[1]).iter().enumerate() {
                     let delta = f64::from(u8::from(i == j));

@@ -29,7 +29,7 @@ impl Table {
     #[must_use]
     pub fn new(basis: &Lagrange, degree: usize, mode_degree: usize) -> Self {
         let rule = triangle_rule(degree);
-        let functions = basis.len();
+        let functions = basis.count();
         let modes = orthonormal::count(mode_degree);
         let n = rule.points.len();
         let mut table = Self {
@@ -53,17 +53,5 @@ impl Table {
             }
         }
         table
-    }
-
-    /// Number of points.
-    #[must_use]
-    pub fn len(&self) -> usize {
-        self.rule.points.len()
-    }
-
-    /// Never: a rule has at least one point.
-    #[must_use]
-    pub fn is_empty(&self) -> bool {
-        self.rule.points.is_empty()
     }
 }

@@ -19,10 +19,10 @@ fn moments_of(mesh: &Mesh) -> (Frame, AreaMoments) {
             space,
             tables: &tables,
         };
-        let ones = vec![1.0; space.len()];
+        let ones = vec![1.0; space.nodes()];
         let [a, x, y, _] = kernel.moments(&ones);
-        let mut xs = vec![0.0; space.len()];
-        let mut ys = vec![0.0; space.len()];
+        let mut xs = vec![0.0; space.nodes()];
+        let mut ys = vec![0.0; space.nodes()];
         let mut nodes = Vec::new();
         for t in 0..mesh.triangles.len() {
             space.fill_nodes(t, &mut nodes);
