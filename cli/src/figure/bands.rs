@@ -12,79 +12,88 @@ use super::surface::Surface;
 /// where an edge between two of them is crossed (lower index first).
 type Node = (u32, u32);
 
-/// The region `value ≥ level` as closed loops, the region on the same hand of each as cells are
-/// oriented; its area is the sum of the loops' signed areas.
-#[must_use]
-pub fn region(surface: &Surface, values: &[f64], level: f64) -> Vec<Vec<Point>> {
-    let inside = |v: u32| values[v as usize] >= level;
-    let mut segments: Vec<(Node, Node)> = cell_lines(surface, values, level);
-    for &[a, b] in &surface.rim {
-        match (inside(a), inside(b)) {
-            (true, true) => segments.push(((a, a), (b, b))),
-            (true, false) => segments.push(((a, a), crossing(a, b))),
-            (false, true) => segments.push((crossing(a, b), (b, b))),
-            (false, false) => {}
+/// A surface cut at a level.
+pub struct Cut<'a> {
+    surface: &'a Surface,
+    values: &'a [f64],
+    level: f64,
+    /// In each cell that the level crosses, the segment that has `value ≥ level` on the inner hand.
+    segments: Vec<(Node, Node)>,
+}
+
+impl<'a> Cut<'a> {
+    /// Cuts `surface`, whose points have `values`, at `level`.
+    #[must_use]
+    pub fn new(surface: &'a Surface, values: &'a [f64], level: f64) -> Self {
+        let mut segments = Vec::new();
+        for cell in &surface.cells {
+            let inside = cell.map(|v| values[v as usize] >= level);
+            if inside == [true; 3] || inside == [false; 3] {
+                continue;
+            }
+            let (mut leave, mut enter) = ((0, 0), (0, 0));
+            for k in 0..3 {
+                let l = (k + 1) % 3;
+                match (inside[k], inside[l]) {
+                    (true, false) => leave = crossing(cell[k], cell[l]),
+                    (false, true) => enter = crossing(cell[k], cell[l]),
+                    _ => {}
+                }
+            }
+            segments.push((leave, enter));
+        }
+        Self {
+            surface,
+            values,
+            level,
+            segments,
         }
     }
-    chain(&segments)
-        .into_iter()
-        .map(|nodes| {
-            // A closed chain ends in the node that it starts with.
-            let open = &nodes[..nodes.len() - 1];
-            open.iter()
-                .map(|&n| place(surface, values, level, n))
-                .collect()
-        })
-        .collect()
-}
 
-/// The lines `value = level` inside the surface, as open or closed (first point repeated) polylines.
-#[must_use]
-pub fn lines(surface: &Surface, values: &[f64], level: f64) -> Vec<Vec<Point>> {
-    chain(&cell_lines(surface, values, level))
-        .into_iter()
-        .map(|nodes| {
-            nodes
-                .iter()
-                .map(|&n| place(surface, values, level, n))
-                .collect()
-        })
-        .collect()
-}
-
-/// In each cell that the level crosses, the segment that has `value ≥ level` on the cell's inner hand.
-fn cell_lines(surface: &Surface, values: &[f64], level: f64) -> Vec<(Node, Node)> {
-    let mut segments = Vec::new();
-    for cell in &surface.cells {
-        let inside = cell.map(|v| values[v as usize] >= level);
-        if inside == [true; 3] || inside == [false; 3] {
-            continue;
-        }
-        let (mut leave, mut enter) = ((0, 0), (0, 0));
-        for k in 0..3 {
-            let l = (k + 1) % 3;
-            match (inside[k], inside[l]) {
-                (true, false) => leave = crossing(cell[k], cell[l]),
-                (false, true) => enter = crossing(cell[k], cell[l]),
-                _ => {}
+    /// The region `value ≥ level` as closed loops, the region on the same hand of each as cells are
+    /// oriented; its area is the sum of the loops' signed areas.
+    #[must_use]
+    pub fn region(&self) -> Vec<Vec<Point>> {
+        let inside = |v: u32| self.values[v as usize] >= self.level;
+        let mut segments = self.segments.clone();
+        for &[a, b] in &self.surface.rim {
+            match (inside(a), inside(b)) {
+                (true, true) => segments.push(((a, a), (b, b))),
+                (true, false) => segments.push(((a, a), crossing(a, b))),
+                (false, true) => segments.push((crossing(a, b), (b, b))),
+                (false, false) => {}
             }
         }
-        segments.push((leave, enter));
+        // A closed chain ends in the node that it starts with.
+        let places = |nodes: Vec<Node>| {
+            let open = &nodes[..nodes.len() - 1];
+            open.iter().map(|&n| self.place(n)).collect()
+        };
+        chain(&segments).into_iter().map(places).collect()
     }
-    segments
+
+    /// The lines `value = level` inside the surface, open or closed (first point repeated).
+    #[must_use]
+    pub fn lines(&self) -> Vec<Vec<Point>> {
+        let places = |nodes: Vec<Node>| nodes.iter().map(|&n| self.place(n)).collect();
+        chain(&self.segments).into_iter().map(places).collect()
+    }
+
+    fn place(&self, (a, b): Node) -> Point {
+        let (p, q) = (
+            self.surface.points[a as usize],
+            self.surface.points[b as usize],
+        );
+        if a == b {
+            return p;
+        }
+        let (u, v) = (self.values[a as usize], self.values[b as usize]);
+        p.lerp(q, ((self.level - u) / (v - u)).clamp(0.0, 1.0))
+    }
 }
 
 fn crossing(a: u32, b: u32) -> Node {
     (a.min(b), a.max(b))
-}
-
-fn place(surface: &Surface, values: &[f64], level: f64, (a, b): Node) -> Point {
-    let (p, q) = (surface.points[a as usize], surface.points[b as usize]);
-    if a == b {
-        return p;
-    }
-    let (u, v) = (values[a as usize], values[b as usize]);
-    p.lerp(q, ((level - u) / (v - u)).clamp(0.0, 1.0))
 }
 
 /// Joins directed segments end to start. Chains that begin where none arrives come first, then loops.
@@ -174,7 +183,8 @@ mod tests {
                     } else {
                         levels.edge(i)
                     };
-                    region(&surface, &values, level)
+                    Cut::new(&surface, &values, level)
+                        .region()
                         .iter()
                         .map(|l| area(l))
                         .sum()
@@ -213,7 +223,8 @@ mod tests {
         let values: Vec<f64> = surface.points.iter().map(|p| (8.0 * p.x).round()).collect();
         let whole = cells_area(&surface);
         for level in 0..=8 {
-            let found: f64 = region(&surface, &values, f64::from(level))
+            let found: f64 = Cut::new(&surface, &values, f64::from(level))
+                .region()
                 .iter()
                 .map(|l| area(l))
                 .sum();
@@ -225,7 +236,7 @@ mod tests {
     fn lines_of_a_plane_are_straight_and_span_the_rectangle() {
         let (surface, _) = samples::wavy_rectangle();
         let values: Vec<f64> = surface.points.iter().map(|p| p.x).collect();
-        let found = lines(&surface, &values, 0.333);
+        let found = Cut::new(&surface, &values, 0.333).lines();
         assert_eq!(found.len(), 1);
         assert!(found[0].iter().all(|p| (p.x - 0.333).abs() < 1e-12));
         let (a, b) = (found[0][0], found[0][found[0].len() - 1]);

@@ -6,7 +6,7 @@ use sectile_mesh::{Point, Vector};
 
 use super::SIZE_LIMIT;
 use super::arrows;
-use super::bands;
+use super::bands::Cut;
 use super::colour::{self, Rgb};
 use super::legend::Scale;
 use super::levels::Levels;
@@ -47,6 +47,8 @@ pub struct Field<'a> {
     pub surface: &'a Surface,
     /// Values at the surface's points.
     pub values: &'a [f64],
+    /// Values up to this size are nought, and how to say so where all are.
+    pub nought: Option<(f64, &'a str)>,
     /// Whether negative values are as good as positive ones.
     pub signed: bool,
     /// Directions to be shown by arrows, section axes.
@@ -66,8 +68,9 @@ pub struct Extreme {
     pub at: Point,
 }
 
-/// The largest of `sign · value` outside the excluded circles; of places that are equal within
-/// rounding the highest, then the leftmost.
+/// The largest of `sign · value` outside the excluded circles. Of the places that reach it within
+/// 2·10⁻⁴, the accuracy of the field, the one nearest to the middle of the section is given (a plateau
+/// has its extreme there), then the highest, then the leftmost.
 #[must_use]
 pub fn extreme(
     surface: &Surface,
@@ -82,21 +85,26 @@ pub fn extreme(
             .zip(&surface.points)
             .filter(|(v, p)| v.is_finite() && allowed(**p))
     };
-    let most = found()
+    let value = found()
         .map(|(v, _)| sign * v)
         .fold(f64::NEG_INFINITY, f64::max);
-    let near = most - 1e-6 * most.abs();
+    let near = value - 2e-4 * value.abs();
     let extent = surface.points.iter().fold(Rect::EMPTY, |r, &p| r.with(p));
     // Rounding of coordinates must not decide which of two mirrored places is taken.
-    let grain = 1e-9 * extent.width().max(extent.height()).max(f64::MIN_POSITIVE);
-    let rank = |p: Point| ((-p.y / grain).round(), (p.x / grain).round());
+    let grain = 1e-6 * extent.width().max(extent.height()).max(f64::MIN_POSITIVE);
+    let rank = |p: Point| [p.distance(extent.centre()), -p.y, p.x].map(|x| (x / grain).round());
     found()
         .filter(|(v, _)| sign * **v >= near)
         .min_by(|(_, p), (_, q)| {
             let (a, b) = (rank(**p), rank(**q));
-            a.0.total_cmp(&b.0).then(a.1.total_cmp(&b.1))
+            (0..3).fold(std::cmp::Ordering::Equal, |o, k| {
+                o.then(a[k].total_cmp(&b[k]))
+            })
         })
-        .map(|(v, p)| Extreme { value: *v, at: *p })
+        .map(|(_, p)| Extreme {
+            value: sign * value,
+            at: *p,
+        })
 }
 
 /// Draws the field.
@@ -132,6 +140,11 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
         let note = "The field has no value outside the excluded places.".to_string();
         return page.finish(&[note], CAUTION);
     };
+    if let Some((floor, words)) = field.nought
+        && high.value.abs().max(low.value.abs()) <= floor
+    {
+        return nothing(page, field, words);
+    }
     let levels = if field.signed {
         Levels::between(low.value.min(0.0), high.value.max(0.0))
     } else {
@@ -228,6 +241,30 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     page.finish(&notes, CAUTION)
 }
 
+/// The outline alone, with the words that say why.
+fn nothing(mut page: Page, field: &Field, words: &str) -> Finished {
+    let extent = outline::extent(field.domain);
+    let (width, upper) = (page.width(), page.cursor + 4.0);
+    let view = View::fit(
+        extent,
+        Rect::new(
+            MARGIN + 4.0,
+            upper,
+            width - MARGIN - 4.0,
+            upper + MOST_HEIGHT,
+        ),
+    );
+    page.path(
+        outline::boundary_path(field.domain, &view),
+        Pen::line(INK, 0.28).filled(&colour::diverging(0.0).hex()),
+    );
+    page.cursor = view.rect(extent).y1 + 6.0;
+    let at = Point::new(MARGIN, page.cursor);
+    marks::scale_bar(&mut page, at, view.scale, field.units.length);
+    page.cursor += 0.5;
+    page.finish(&[words.to_string()], CAUTION)
+}
+
 fn colours(levels: &Levels, signed: bool) -> Vec<Rgb> {
     let n = levels.bands();
     let reach = levels.edge(0).abs().max(levels.edge(n).abs());
@@ -267,25 +304,23 @@ fn paint(
     // Under everything the true outline in the lowest colour: chords of the bands leave no paper.
     let base = colours[0].hex();
     page.path(outline::boundary_path(field.domain, view), Pen::fill(&base));
-    for i in 1..levels.bands() {
-        let mut path = FinePath::new(quantum);
-        for points in bands::region(&on_page, field.values, levels.edge(i)) {
-            path.closed(&simplified_loop(&points, tolerance));
-        }
-        let data = path.finish();
-        if !data.is_empty() {
-            page.fine_path(data, quantum, Pen::fill(&colours[i].hex()));
-        }
-    }
     let (mut solid, mut dashed) = (FinePath::new(quantum), FinePath::new(quantum));
     let mut nought = FinePath::new(quantum);
     for i in 1..levels.bands() {
+        let cut = Cut::new(&on_page, field.values, levels.edge(i));
+        let mut path = FinePath::new(quantum);
+        for points in cut.region() {
+            path.closed(&simplified_loop(&points, tolerance));
+        }
+        if !path.is_empty() {
+            page.fine_path(path.finish(), quantum, Pen::fill(&colours[i].hex()));
+        }
         let path = match levels.first + i as i64 {
             0 => &mut nought,
             k if k < 0 => &mut dashed,
             _ => &mut solid,
         };
-        for points in bands::lines(&on_page, field.values, levels.edge(i)) {
+        for points in cut.lines() {
             path.open(&simplified(&points, tolerance));
         }
     }

@@ -106,8 +106,8 @@ pub fn arrowhead(page: &mut Page, tip: Point, u: Vector, head: f64, colour: &str
     page.polygon(&[tip, foot + w, foot - w], Pen::fill(colour));
 }
 
-/// Small arrows x and y at `at`; returns what they cover.
-pub fn axes(page: &mut Page, at: Point) -> Vec<Rect> {
+/// Small arrows x and y at `at`, their letters only where nothing else is; returns what these cover.
+pub fn axes(page: &mut Page, at: Point, taken: &[Rect]) -> Vec<Rect> {
     let (right, up) = (Point::new(at.x + 7.0, at.y), Point::new(at.x, at.y - 7.0));
     for tip in [right, up] {
         page.line(at, tip, Pen::line("#ffffff", 0.9));
@@ -116,13 +116,19 @@ pub fn axes(page: &mut Page, at: Point) -> Vec<Rect> {
         arrow(page, at, tip, 1.8, Pen::line(AXES, 0.3));
     }
     page.circle(at, 0.55, Pen::line(AXES, 0.25).filled("#ffffff"));
-    let mut label = Label::small("x");
-    label.colour = AXES;
-    label.backed = true;
-    let x = page.text(Point::new(right.x + 0.7, at.y + 0.7), &label);
-    label.text = "y";
-    let y = page.text(Point::new(at.x - 0.7, up.y - 1.0), &label);
-    vec![x, y]
+    let mut covered = Vec::new();
+    for (letter, place) in [
+        ("x", Point::new(right.x + 0.7, at.y + 0.7)),
+        ("y", Point::new(at.x - 0.7, up.y - 1.0)),
+    ] {
+        let mut label = Label::small(letter);
+        label.colour = AXES;
+        label.backed = true;
+        if !taken.iter().any(|t| t.overlaps(&label.rect(place))) {
+            covered.push(page.text(place, &label));
+        }
+    }
+    covered
 }
 
 /// The round length, in units of the section, whose bar is nearest below `limit` mm.

@@ -29,6 +29,7 @@ pub(crate) mod samples;
 mod tests;
 
 use page::Finished;
+use rayon::prelude::*;
 use sectile_mesh::Point;
 use sectile_mesh::domain::Domain;
 use sectile_mesh::outline::side::Circle;
@@ -48,7 +49,7 @@ pub const NARROWEST: f64 = 60.0;
 pub const SIZE_LIMIT: usize = 390_000;
 
 /// Small triangles that a field is drawn with, about.
-const CELLS: f64 = 60_000.0;
+const CELLS: f64 = 20_000.0;
 
 /// The names of all figures.
 pub const FILES: &[&str] = &[
@@ -88,40 +89,14 @@ fn finished(
     } else {
         PRINT_WIDTH
     };
-    let mut files = vec![
-        (
-            FILES[0],
-            section::draw(title, units, domain, &solution.properties, width),
-        ),
-        (
-            FILES[1],
-            mesh::draw(
-                title,
-                units,
-                domain,
-                &solution.mesh,
-                &mesh_size(solution),
-                width,
-            ),
-        ),
-    ];
     let lattice = Lattice::new(divisions(solution));
     let positions = sample::positions(solution, &lattice);
-    if positions.is_empty() {
-        return files;
-    }
     let sharing = Sharing::new(&solution.mesh, &lattice);
     let surface = sharing.surface(&positions);
     let centre = solution
         .get(Quantity::ShearCentreX)
         .zip(solution.get(Quantity::ShearCentreY))
         .map(|(x, y)| Point::new(x.value, y.value));
-    let warping = sample::warping(solution, &lattice);
-    if warping.len() == positions.len() {
-        let values = sharing.mean(&warping);
-        let figure = warping::draw(title, units, domain, &surface, &values, centre, width);
-        files.push((FILES[2], figure));
-    }
     let excluded: Vec<Circle> = solution
         .corners
         .iter()
@@ -130,26 +105,60 @@ fn finished(
             radius: exclusion_radius(corner),
         })
         .collect();
-    let forces = [UnitForce::Torque, UnitForce::ShearX, UnitForce::ShearY];
-    for (force, name) in forces.into_iter().zip(&FILES[3..]) {
+    let known = |count: usize| count > 0 && count == positions.len();
+    let stress = |force: UnitForce| {
         let stress = sample::shear_stress(solution, force, &lattice);
-        if stress.len() != positions.len() {
-            continue;
+        known(stress.len()).then(|| {
+            let mean = sharing.mean_vectors(&stress);
+            stress::draw(
+                force, title, units, domain, &surface, &mean, &excluded, centre, width,
+            )
+        })
+    };
+    let draw = |name: &str| match name {
+        "section.svg" => Some(section::draw(
+            title,
+            units,
+            domain,
+            &solution.properties,
+            width,
+        )),
+        "mesh.svg" => {
+            let size = mesh_size(solution);
+            Some(mesh::draw(
+                title,
+                units,
+                domain,
+                &solution.mesh,
+                &size,
+                width,
+            ))
         }
-        let mean = sharing.mean_vectors(&stress);
-        let figure = stress::draw(
-            force, title, units, domain, &surface, &mean, &excluded, centre, width,
-        );
-        files.push((name, figure));
-    }
-    files
+        "warping.svg" => {
+            let warping = sample::warping(solution, &lattice);
+            known(warping.len()).then(|| {
+                let values = sharing.mean(&warping);
+                warping::draw(title, units, domain, &surface, &values, centre, width)
+            })
+        }
+        "shear-torque.svg" => stress(UnitForce::Torque),
+        "shear-vx.svg" => stress(UnitForce::ShearX),
+        _ => stress(UnitForce::ShearY),
+    };
+    // Each figure by itself, collected in the order of the names.
+    FILES
+        .par_iter()
+        .map(|name| draw(name).map(|figure| (*name, figure)))
+        .collect::<Vec<_>>()
+        .into_iter()
+        .flatten()
+        .collect()
 }
 
 /// Divisions of a triangle's side: the more, the fewer triangles there are.
 fn divisions(solution: &Solution) -> usize {
     let triangles = solution.mesh.triangles.len().max(1) as f64;
-    let most = 4 * solution.order.max(2);
-    ((CELLS / triangles).sqrt().round() as usize).clamp(2, most)
+    ((CELLS / triangles).sqrt().round() as usize).clamp(2, 40)
 }
 
 fn mesh_size(solution: &Solution) -> String {

@@ -186,9 +186,11 @@ impl Page {
             labels: Vec::new(),
         };
         let limit = width - 2.0 * MARGIN;
-        let kind = text::shorten(kind, TITLE, true, limit);
+        // A narrow page makes the heading smaller first, then shorter.
+        let size = (TITLE * limit / text::width(kind, TITLE, true)).clamp(SMALL, TITLE);
+        let kind = text::shorten(kind, size, true, limit);
         let mut label = Label::new(&kind);
-        label.size = TITLE;
+        label.size = size;
         label.bold = true;
         label.rich = false;
         page.cursor += 0.78 * TITLE;

@@ -329,8 +329,9 @@ fn origin(page: &mut Page, ground: &mut Ground, view: &View, drawn: Rect) {
             .area
             .contains(&Rect::new(at.x, at.y - 11.0, at.x + 10.0, at.y))
     {
-        let labels = marks::axes(page, at);
+        let labels = marks::axes(page, at, &ground.taken);
         ground.taken.extend(labels);
+        ground.taken.push(Rect::about(at, 1.0));
         ground.leaders.push((at, at + Vector::new(7.0, 0.0)));
         ground.leaders.push((at, at + Vector::new(0.0, -7.0)));
     }

@@ -28,30 +28,24 @@ pub fn draw(
     let (symbol, action, factor) = match force {
         UnitForce::Torque => (
             "T",
-            format!("a torque T of 1 {}", units.moment),
+            format!("T = 1 {}", units.moment),
             stress_per_moment(units),
         ),
         UnitForce::ShearX => (
             "V_x",
-            format!(
-                "a shear force V_x of 1 {} along x through the shear centre",
-                units.force
-            ),
+            format!("V_x = 1 {} along x through the shear centre", units.force),
             stress_per_force(units),
         ),
         UnitForce::ShearY => (
             "V_y",
-            format!(
-                "a shear force V_y of 1 {} along y through the shear centre",
-                units.force
-            ),
+            format!("V_y = 1 {} along y through the shear centre", units.force),
             stress_per_force(units),
         ),
     };
     let values: Vec<f64> = stress.iter().map(|t| factor * t.length()).collect();
     let vectors: Vec<Vector> = stress.iter().map(|&t| t * factor).collect();
     let subtitle = format!(
-        "Resultant shear stress |τ| in {} under {action}; proportional to {symbol}.",
+        "Resultant |τ| in {} under {action}; proportional to {symbol}.",
         units.stress
     );
     let kind = match force {
@@ -69,6 +63,7 @@ pub fn draw(
         domain,
         surface,
         values: &values,
+        nought: None,
         signed: false,
         direction: Some(&vectors),
         excluded,

@@ -10,7 +10,7 @@ use comfy_table::{
 
 use sectile_solver::figure::Trust;
 use sectile_solver::quantity::{Group, Quantity};
-use sectile_solver::solution::Solution;
+use sectile_solver::solution::{Note, Solution};
 
 use super::digits::{self, Printed, times_power};
 use super::{CAUTION, units, wording};
@@ -51,14 +51,53 @@ pub fn render(title: &str, units: &Units, solution: &Solution, look: Look) -> St
     if solution.get(Quantity::ShearCentreX).is_some() {
         lines.extend(wrap(CENTRES, width, "  "));
     }
-    for note in &solution.notes {
-        lines.extend(wrap(&format!("Note: {}", note.text), width, "  "));
+    for text in notes(&solution.notes) {
+        lines.extend(wrap(&text, width, "  "));
     }
     lines.extend(wrap(CAUTION, width, ""));
     let mut text = lines.join("\n");
     text.push('\n');
     text
 }
+
+/// One text for each kind of finding: the first of a kind in full, the places of the others.
+fn notes(notes: &[Note]) -> Vec<String> {
+    let mut kinds: Vec<&str> = Vec::new();
+    for note in notes {
+        if !kinds.contains(&note.kind) {
+            kinds.push(note.kind);
+        }
+    }
+    let place = |note: &Note| {
+        note.at.map(|p| {
+            let tidy = |x: f64| digits::short(x, 6).replace('−', "-");
+            format!("({}, {})", tidy(p.x), tidy(p.y))
+        })
+    };
+    kinds
+        .into_iter()
+        .map(|kind| {
+            let alike: Vec<&Note> = notes.iter().filter(|n| n.kind == kind).collect();
+            let mut text = match place(alike[0]) {
+                Some(at) => format!("Note at {at}: {}", alike[0].text),
+                None => format!("Note: {}", alike[0].text),
+            };
+            let others: Vec<String> = alike[1..].iter().filter_map(|n| place(n)).collect();
+            if !others.is_empty() {
+                let named = others.len().min(MOST_PLACES);
+                text.push_str(&format!(" Likewise at {}", others[..named].join(", ")));
+                if named < others.len() {
+                    text.push_str(&format!(" and {} more places", others.len() - named));
+                }
+                text.push('.');
+            }
+            text
+        })
+        .collect()
+}
+
+/// So many places are named for findings that are alike.
+const MOST_PLACES: usize = 6;
 
 const CENTRES: &str = "Shear centre: independent of Poisson's ratio; loads refer to it. \
     Flexure centre: no mean rotation under flexure; depends on Poisson's ratio.";
@@ -260,7 +299,32 @@ mod tests {
             assert!(text.contains(wording::name(*quantity)), "{quantity:?}");
         }
         assert!(text.ends_with(&format!("{CAUTION}\n")));
-        assert!(text.contains("Note: The corner at (8, -0)"));
+        assert!(text.contains("Note at (8, 0): The corner"));
+    }
+
+    #[test]
+    fn findings_that_are_alike_are_told_once() {
+        let note = |kind, text: &str, x| Note {
+            kind,
+            text: text.into(),
+            at: Some(sectile_mesh::Point::new(x, 1.0)),
+        };
+        let mut list: Vec<Note> = (0..9)
+            .map(|i| note("sharp-corner", "Sharp.", f64::from(i)))
+            .collect();
+        list.push(Note {
+            kind: "separate-parts",
+            text: "Two parts.".into(),
+            at: None,
+        });
+        assert_eq!(
+            notes(&list),
+            [
+                "Note at (0, 1): Sharp. Likewise at (1, 1), (2, 1), (3, 1), (4, 1), (5, 1), (6, 1) and \
+                 2 more places.",
+                "Note: Two parts."
+            ]
+        );
     }
 
     #[test]
