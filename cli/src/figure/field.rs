@@ -68,9 +68,12 @@ pub struct Extreme {
     pub at: Point,
 }
 
-/// The largest of `sign · value` outside the excluded circles. Of the places that reach it within
-/// 2·10⁻⁴, the accuracy of the field, the one nearest to the middle of the section is given (a plateau
-/// has its extreme there), then the highest, then the leftmost.
+/// The largest of `sign · value` outside the excluded circles and on them, where it lies beside a
+/// corner without limit: there values are interpolated between points inside and outside, which for
+/// such a field errs upwards.
+///
+/// Of the places that reach it within 2·10⁻⁴, the accuracy of the field, the one nearest to the middle
+/// of the section is given (a plateau has its extreme there), then the highest, then the leftmost.
 #[must_use]
 pub fn extreme(
     surface: &Surface,
@@ -78,25 +81,41 @@ pub fn extreme(
     excluded: &[Circle],
     sign: f64,
 ) -> Option<Extreme> {
-    let allowed = |p: Point| excluded.iter().all(|c| p.distance(c.centre) >= c.radius);
-    let found = || {
-        values
-            .iter()
-            .zip(&surface.points)
-            .filter(|(v, p)| v.is_finite() && allowed(**p))
-    };
-    let value = found()
-        .map(|(v, _)| sign * v)
+    let points = &surface.points;
+    // The circle that a point lies in.
+    let inside: Vec<Option<&Circle>> = points
+        .iter()
+        .map(|p| excluded.iter().find(|c| p.distance(c.centre) < c.radius))
+        .collect();
+    let mut found: Vec<(f64, Point)> = (0..points.len())
+        .filter(|&i| inside[i].is_none())
+        .map(|i| (sign * values[i], points[i]))
+        .collect();
+    for cell in &surface.cells {
+        for k in 0..3 {
+            let (a, b) = (cell[k] as usize, cell[(k + 1) % 3] as usize);
+            if let (Some(circle), None) = (inside[a], inside[b]) {
+                let t = leaving(points[a], points[b], circle);
+                let value = values[a] + t * (values[b] - values[a]);
+                found.push((sign * value, points[a].lerp(points[b], t)));
+            }
+        }
+    }
+    found.retain(|(v, _)| v.is_finite());
+    let value = found
+        .iter()
+        .map(|(v, _)| *v)
         .fold(f64::NEG_INFINITY, f64::max);
     let near = value - 2e-4 * value.abs();
-    let extent = surface.points.iter().fold(Rect::EMPTY, |r, &p| r.with(p));
+    let extent = points.iter().fold(Rect::EMPTY, |r, &p| r.with(p));
     // Rounding of coordinates must not decide which of two mirrored places is taken.
     let grain = 1e-6 * extent.width().max(extent.height()).max(f64::MIN_POSITIVE);
     let rank = |p: Point| [p.distance(extent.centre()), -p.y, p.x].map(|x| (x / grain).round());
-    found()
-        .filter(|(v, _)| sign * **v >= near)
+    found
+        .iter()
+        .filter(|(v, _)| *v >= near)
         .min_by(|(_, p), (_, q)| {
-            let (a, b) = (rank(**p), rank(**q));
+            let (a, b) = (rank(*p), rank(*q));
             (0..3).fold(std::cmp::Ordering::Equal, |o, k| {
                 o.then(a[k].total_cmp(&b[k]))
             })
@@ -105,6 +124,14 @@ pub fn extreme(
             value: sign * value,
             at: *p,
         })
+}
+
+/// Where the line from `a` inside a circle to `b` outside of it leaves it, as a share of the way.
+fn leaving(a: Point, b: Point, circle: &Circle) -> f64 {
+    let (d, f) = (b - a, a - circle.centre);
+    let (p, q) = (d.dot(d), d.dot(f));
+    let rest = circle.radius.powi(2) - f.dot(f);
+    ((-q + (q * q + p * rest).max(0.0).sqrt()) / p).clamp(0.0, 1.0)
 }
 
 /// Draws the field.
@@ -199,6 +226,7 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
         if drawn.grown(0.01).contains(&Rect::about(p, 0.0)) {
             mark.draw_edge(&mut page, p);
             mark.draw(&mut page, p);
+            ground.taken.push(Rect::about(p, mark.radius() + 0.3));
             notes.push("Diamond: shear centre.".to_string());
         }
     }

@@ -58,6 +58,7 @@ impl Mark {
 
     /// Draws it.
     pub fn draw(self, page: &mut Page, at: Point) {
+        page.marks.push(Rect::about(at, self.radius()));
         let r = self.radius();
         let p = |dx: f64, dy: f64| Point::new(at.x + dx, at.y + dy);
         match self {

@@ -173,6 +173,8 @@ pub struct Page {
     nodes: Vec<Box<dyn svg::Node>>,
     /// What every text covers, for placing others and for tests.
     pub labels: Vec<Rect>,
+    /// What every mark covers, which no text may.
+    pub marks: Vec<Rect>,
 }
 
 impl Page {
@@ -184,6 +186,7 @@ impl Page {
             cursor: MARGIN,
             nodes: Vec::new(),
             labels: Vec::new(),
+            marks: Vec::new(),
         };
         let limit = width - 2.0 * MARGIN;
         // A narrow page makes the heading smaller first, then shorter.
@@ -393,6 +396,7 @@ impl Page {
             svg: format!("{document}\n"),
             page: Rect::new(0.0, 0.0, self.width, height),
             labels: self.labels,
+            marks: self.marks,
         }
     }
 
@@ -410,6 +414,8 @@ pub struct Finished {
     pub page: Rect,
     /// What every text on it covers.
     pub labels: Vec<Rect>,
+    /// What every mark on it covers.
+    pub marks: Vec<Rect>,
 }
 
 fn stroked_path(data: String, pen: Pen, quantum: f64) -> Path {

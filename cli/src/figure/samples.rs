@@ -95,6 +95,18 @@ pub fn angle() -> Domain {
     ])])
 }
 
+/// A plate with a row of seven holes, a little off its middle.
+pub fn plate_with_holes() -> Domain {
+    let mut rings = vec![polygon(&[
+        (0.0, 0.0),
+        (200.0, 0.0),
+        (200.0, 60.0),
+        (0.0, 60.0),
+    ])];
+    rings.extend((0..7).map(|i| circle(20.0 + 26.0 * f64::from(i), 30.0, 11.0, false)));
+    domain(&rings)
+}
+
 /// A half disc, whose arc sweeps half a turn.
 pub fn half_disc(radius: f64) -> Domain {
     let circle = Circle {

@@ -267,7 +267,12 @@ impl Turned {
         let pick = |dimension: bool, bare: f64| if dimension { DIMENSION_ROOM } else { bare };
         Rect::new(
             pick(!self.height_right, 8.0),
-            pick(self.width_above, 6.0),
+            // The text stands above the line, away from the outline.
+            if self.width_above {
+                DIMENSION_ROOM + 3.0
+            } else {
+                6.0
+            },
             pick(self.height_right, 3.0),
             pick(!self.width_above, 5.0),
         )

@@ -56,6 +56,12 @@ fn sound(name: &str, figure: &Finished) {
             "{name}: {a:?} outside {:?}",
             figure.page
         );
+        for b in &figure.marks {
+            assert!(
+                !a.grown(-1e-6).overlaps(b),
+                "{name}: {a:?} over the mark {b:?}"
+            );
+        }
         for b in &figure.labels[..i] {
             assert!(!a.grown(-1e-6).overlaps(b), "{name}: {a:?} over {b:?}");
         }
@@ -305,7 +311,7 @@ fn stress_figures() {
 
 #[test]
 fn quoted_extreme_keeps_out_of_excluded_circles() {
-    let (surface, points) = field_on(&samples::rectangle_mesh(10, 10, 1.0, 1.0), 1);
+    let (surface, points) = field_on(&samples::rectangle_mesh(50, 50, 1.0, 1.0), 1);
     let values: Vec<f64> = points
         .iter()
         .map(|p| 1.0 / (0.01 + p.x.hypot(p.y)))
@@ -316,14 +322,15 @@ fn quoted_extreme_keeps_out_of_excluded_circles() {
     };
     let free = field::extreme(&surface, &values, &[], 1.0).unwrap();
     assert!((free.value - 100.0).abs() < 1e-9);
+    // On the circle the field is 1 / 0.16 everywhere; interpolation errs upwards, and little.
     let kept = field::extreme(&surface, &values, &[corner], 1.0).unwrap();
-    assert!(kept.at.distance(corner.centre) >= 0.15);
-    assert!((kept.value - 1.0 / 0.21).abs() < 1e-9 || kept.value < 1.0 / 0.16);
-    let mirrored = [Circle {
+    assert!((kept.at.distance(corner.centre) - 0.15).abs() < 1e-9);
+    assert!(kept.value >= 6.25 && kept.value < 6.35, "{}", kept.value);
+    let everything = [Circle {
         centre: Point::new(0.5, 0.5),
         radius: 9.0,
     }];
-    assert!(field::extreme(&surface, &values, &mirrored, 1.0).is_none());
+    assert!(field::extreme(&surface, &values, &everything, 1.0).is_none());
 }
 
 #[test]
@@ -334,6 +341,7 @@ fn solved_sections() {
         ("half-disc", samples::half_disc(50.0)),
         ("flat", samples::rectangle(200.0, 12.0)),
         ("angle", samples::angle()),
+        ("holes", samples::plate_with_holes()),
     ] {
         let solution = samples::solved(&domain);
         for width in [60.0, 160.0] {

@@ -11,4 +11,4 @@ pub mod wording;
 
 /// The line of caution that every output carries.
 pub const CAUTION: &str =
-    "Linear-elastic section analysis: check against local codes, by licensed practice.";
+    "Linear-elastic section analysis: check by local codes and licensed practice.";

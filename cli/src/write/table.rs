@@ -175,7 +175,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
     }
     for (index, column) in table.column_iter_mut().enumerate() {
         column.set_cell_alignment(CellAlignment::Left);
-        let gap = if look.width < 80 { 1 } else { 2 };
+        let gap = if look.width < 90 { 1 } else { 2 };
         column.set_padding((0, if index == 5 { 0 } else { gap }));
         column.set_constraint(if index == 0 {
             ColumnConstraint::LowerBoundary(Width::Fixed(18))
