@@ -4,6 +4,7 @@ use std::f64::consts::{PI, TAU};
 
 use crate::domain::{Domain, DomainSide};
 use crate::point::{Point, Vector};
+use crate::tree::{Extent, Tree};
 
 /// A corner where the material takes up more than half of the full angle.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -37,6 +38,8 @@ pub fn reentrant_corners(domain: &Domain) -> Vec<ReentrantCorner> {
         .iter()
         .filter(|s| s.left.is_none() || s.right.is_none())
         .collect();
+    let boxes: Vec<Extent> = free.iter().map(|s| around(domain, s)).collect();
+    let tree = Tree::new(&boxes);
     let mut corners = Vec::new();
     for (i, mut directions) in at_point.into_iter().enumerate() {
         directions.sort_by(|a, b| a.0.total_cmp(&b.0));
@@ -51,11 +54,14 @@ pub fn reentrant_corners(domain: &Domain) -> Vec<ReentrantCorner> {
         }
         if angle > PI + STRAIGHT && directions.iter().any(|d| !d.1) {
             let at = domain.points[i];
-            let wall = free
-                .iter()
-                .filter(|s| s.from != i as u32 && s.to != i as u32)
-                .map(|s| distance(domain, s, at))
-                .fold(f64::INFINITY, f64::min);
+            let wall = tree.nearest(at, |k| {
+                let s = free[k];
+                if s.from == i as u32 || s.to == i as u32 {
+                    f64::INFINITY
+                } else {
+                    distance(domain, s, at)
+                }
+            });
             let wall = if wall.is_finite() { wall } else { size(domain) };
             corners.push(ReentrantCorner {
                 point: i as u32,
@@ -82,6 +88,23 @@ fn tangents(domain: &Domain, side: &DomainSide) -> (Vector, Vector) {
             (tangent(a), tangent(b))
         }
     }
+}
+
+/// A box about a side: for an arc, about its chord and as far beyond as it can rise.
+fn around(domain: &Domain, side: &DomainSide) -> Extent {
+    let (a, b) = (
+        domain.points[side.from as usize],
+        domain.points[side.to as usize],
+    );
+    let rise = side.arc.map_or(0.0, |arc| {
+        arc.circle.radius * (1.0 - (0.5 * arc.sweep).cos())
+    });
+    [
+        a.x.min(b.x) - rise,
+        a.x.max(b.x) + rise,
+        a.y.min(b.y) - rise,
+        a.y.max(b.y) + rise,
+    ]
 }
 
 /// Distance from a point to a side.

@@ -14,6 +14,7 @@ pub mod outline;
 pub mod point;
 pub mod quality;
 mod topology;
+mod tree;
 pub mod triangulate;
 
 pub use point::{Point, Vector};

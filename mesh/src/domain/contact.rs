@@ -75,26 +75,26 @@ fn two_circles(p: &Circle, q: &Circle, tolerance: f64) -> Vec<Point> {
     let foot = p.centre + u * x;
     // Circles that touch within the tolerance touch in one point.
     let gap = (d - (p.radius + q.radius)).max((p.radius - q.radius).abs() - d);
-    if gap > 0.0 {
-        if gap > tolerance {
-            return Vec::new();
-        }
+    if gap > tolerance {
+        return Vec::new();
+    }
+    if gap > -tolerance {
         return vec![p.centre + u * (p.radius * x.signum())];
     }
     along(foot, u.perpendicular(), x.abs(), p.radius, tolerance)
 }
 
-/// The points `foot ± √(radius² − distance²)·direction`.
+/// The points `foot ± √(radius² − distance²)·direction`; `foot` alone where the line touches the
+/// circle within the tolerance, lest rounding makes two points of one.
 fn along(foot: Point, direction: Vector, distance: f64, radius: f64, tolerance: f64) -> Vec<Point> {
     if distance > radius + tolerance {
         return Vec::new();
     }
-    let half = ((radius - distance) * (radius + distance)).max(0.0).sqrt();
-    if half <= tolerance {
-        vec![foot]
-    } else {
-        vec![foot + direction * half, foot - direction * half]
+    if distance > radius - tolerance {
+        return vec![foot];
     }
+    let half = ((radius - distance) * (radius + distance)).sqrt();
+    vec![foot + direction * half, foot - direction * half]
 }
 
 #[cfg(test)]

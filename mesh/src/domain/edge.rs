@@ -7,6 +7,7 @@ use super::fault::Place;
 use crate::outline::piece::{Piece, Ring};
 use crate::outline::side::Side;
 use crate::point::{Point, Vector};
+use crate::tree::Extent;
 
 /// A directed edge of a piece, the piece to its left.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -16,9 +17,6 @@ pub struct Edge {
     /// Geometry; arcs sweep less than half a turn.
     pub side: Side,
 }
-
-/// A box with room for the tolerance: `[x_min, x_max, y_min, y_max]`.
-pub type Extent = [f64; 4];
 
 /// Signed area of a ring, positive anticlockwise.
 #[must_use]

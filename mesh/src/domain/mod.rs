@@ -3,9 +3,15 @@
 
 mod arrange;
 mod contact;
+mod cut;
 mod edge;
 pub mod fault;
+mod hole;
+mod meeting;
 mod overlap;
+mod pinch;
+mod sound;
+mod stack;
 
 use crate::outline::piece::Piece;
 use crate::outline::side::Arc;
