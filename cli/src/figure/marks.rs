@@ -2,7 +2,7 @@
 
 use sectile_mesh::{Point, Vector};
 
-use super::page::{Anchor, INK, Label, Page, Pen, number};
+use super::page::{INK, Label, Page, Pen, number};
 use super::rect::Rect;
 
 /// The colour of the shear centre.
@@ -161,37 +161,6 @@ pub fn scale_bar(page: &mut Page, at: Point, scale: f64, unit: &str) -> f64 {
     let label = Label::small(&text);
     page.text(Point::new(at.x + w + 1.2, at.y), &label);
     w + 1.2 + label.width()
-}
-
-/// A dimension line from `a` to `b`, level or upright, with its text in the middle; returns what the
-/// text covers.
-pub fn dimension(page: &mut Page, a: Point, b: Point, text: &str) -> Rect {
-    let pen = Pen::line(INK, 0.15);
-    let d = b - a;
-    let length = d.length();
-    let u = d * (1.0 / length.max(1e-9));
-    let head = 1.7;
-    if length > 3.0 * head {
-        page.line(a + u * (0.6 * head), b - u * (0.6 * head), pen);
-        arrowhead(page, a, -u, head, INK);
-        arrowhead(page, b, u, head, INK);
-    } else {
-        // Too short for two heads inside: they point inwards from outside.
-        page.line(a - u * (2.0 * head), b + u * (2.0 * head), pen);
-        arrowhead(page, a, u, head, INK);
-        arrowhead(page, b, -u, head, INK);
-    }
-    let upright = d.y.abs() > d.x.abs();
-    let mut label = Label::new(text).anchored(Anchor::Middle);
-    label.upright = upright;
-    let m = a.lerp(b, 0.5);
-    let gap = 0.9;
-    let at = if upright {
-        Point::new(m.x - gap, m.y)
-    } else {
-        Point::new(m.x, m.y - gap)
-    };
-    page.text(at, &label)
 }
 
 #[cfg(test)]

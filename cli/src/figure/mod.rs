@@ -5,8 +5,12 @@
 
 pub mod arrows;
 pub mod bands;
+pub mod centres;
 pub mod colour;
+pub mod dimension;
+pub mod extreme;
 pub mod field;
+pub mod label;
 pub mod legend;
 pub mod levels;
 pub mod marks;

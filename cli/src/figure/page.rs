@@ -8,6 +8,7 @@ use svg::node::element::{Circle, Group, Path, Rectangle};
 
 use sectile_mesh::Point;
 
+pub use super::label::{Anchor, Label};
 use super::rect::Rect;
 use super::text::{self, FACES, LABEL, SMALL, TITLE};
 
@@ -17,104 +18,6 @@ pub const MARGIN: f64 = 4.0;
 pub const INK: &str = "#1b1f24";
 /// The colour of what should stand back.
 pub const FAINT: &str = "#69717a";
-
-/// Where a text hangs on its point.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Anchor {
-    /// It starts there.
-    Start,
-    /// Its middle is there.
-    Middle,
-    /// It ends there.
-    End,
-}
-
-/// One line of lettering; the point is on its baseline.
-#[derive(Clone, Debug)]
-pub struct Label<'a> {
-    /// The text; `x_s` sets an s below the line where `rich`.
-    pub text: &'a str,
-    /// Where it hangs.
-    pub anchor: Anchor,
-    /// Height of the type, mm.
-    pub size: f64,
-    /// Heavier.
-    pub bold: bool,
-    /// Its colour.
-    pub colour: &'a str,
-    /// Whether underscores set subscripts.
-    pub rich: bool,
-    /// Turned by 90° anticlockwise about its point.
-    pub upright: bool,
-    /// On white, so that it can be read on any ground.
-    pub backed: bool,
-}
-
-impl<'a> Label<'a> {
-    /// Plain lettering of the common size.
-    #[must_use]
-    pub fn new(text: &'a str) -> Self {
-        Self {
-            text,
-            anchor: Anchor::Start,
-            size: LABEL,
-            bold: false,
-            colour: INK,
-            rich: true,
-            upright: false,
-            backed: false,
-        }
-    }
-
-    /// Small lettering.
-    #[must_use]
-    pub fn small(text: &'a str) -> Self {
-        Self {
-            size: SMALL,
-            ..Self::new(text)
-        }
-    }
-
-    /// Hung otherwise.
-    #[must_use]
-    pub fn anchored(self, anchor: Anchor) -> Self {
-        Self { anchor, ..self }
-    }
-
-    fn runs(&self) -> Vec<text::Run> {
-        if self.rich {
-            text::runs(self.text)
-        } else {
-            vec![text::Run {
-                text: self.text.into(),
-                sub: false,
-            }]
-        }
-    }
-
-    /// Its width, mm.
-    #[must_use]
-    pub fn width(&self) -> f64 {
-        text::runs_width(&self.runs(), self.size, self.bold)
-    }
-
-    /// What it covers when hung at `at`.
-    #[must_use]
-    pub fn rect(&self, at: Point) -> Rect {
-        let w = self.width();
-        let start = match self.anchor {
-            Anchor::Start => 0.0,
-            Anchor::Middle => -0.5 * w,
-            Anchor::End => -w,
-        };
-        let (up, down) = (0.78 * self.size, 0.26 * self.size);
-        if self.upright {
-            Rect::new(at.x - up, at.y - start - w, at.x + down, at.y - start)
-        } else {
-            Rect::new(at.x + start, at.y - up, at.x + start + w, at.y + down)
-        }
-    }
-}
 
 /// How a shape is drawn.
 #[derive(Clone, Copy, Debug)]

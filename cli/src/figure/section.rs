@@ -6,46 +6,28 @@ use sectile_mesh::{Point, Vector};
 use sectile_solver::figure::Figure;
 use sectile_solver::quantity::Quantity;
 
+use super::centres::{
+    BLOCK, Block, Centre, Principal, centre_block, centres, draw_block, principal, principal_block,
+};
+use super::dimension::{Turned, dimensions};
 use super::marks::{self, Mark};
 use super::outline::{self, Shape};
-use super::page::{FAINT, Finished, INK, Label, MARGIN, Page, Pen};
+use super::page::{Finished, INK, Label, MARGIN, Page, Pen};
 use super::place::Ground;
 use super::rect::Rect;
-use super::text::{self, LABEL, SMALL};
+use super::text::SMALL;
 use super::view::View;
 use crate::section::Units;
-use crate::write::{CAUTION, digits, units as unit_names};
+use crate::write::CAUTION;
 
 /// The fill of material.
 pub const MATERIAL: &str = "#dfe3e8";
-/// Room for a dimension line with its text, mm.
-const DIMENSION_ROOM: f64 = 8.0;
-/// From the outline to a dimension line, mm.
-const DIMENSION_AT: f64 = 6.8;
 /// How far axes reach past the outline, mm.
 const AXIS_OVERHANG: f64 = 2.6;
 /// The drawing is not made higher than this, mm.
 const MOST_HEIGHT: f64 = 105.0;
-/// Width of a block of coordinates, mm.
-const BLOCK: f64 = 50.0;
 /// A centre farther from the outline than this many times the section's size is not drawn.
 const FARTHEST: f64 = 3.0;
-
-/// A marked centre.
-struct Centre {
-    mark: Mark,
-    letter: &'static str,
-    name: &'static str,
-    remark: &'static str,
-    x: (Quantity, Figure),
-    y: (Quantity, Figure),
-}
-
-impl Centre {
-    fn at(&self) -> Point {
-        Point::new(self.x.1.value, self.y.1.value)
-    }
-}
 
 /// Draws the section; properties that are absent are left out.
 #[must_use]
@@ -188,143 +170,6 @@ pub fn draw(
     page.finish(&notes, CAUTION)
 }
 
-fn centres(get: &dyn Fn(Quantity) -> Option<Figure>) -> Vec<Centre> {
-    use Quantity as Q;
-    [
-        (
-            Mark::Centroid,
-            "C",
-            "centroid",
-            "",
-            Q::CentroidX,
-            Q::CentroidY,
-        ),
-        (
-            Mark::ShearCentre,
-            "S",
-            "shear centre",
-            "independent of Poisson's ratio; loads refer to it",
-            Q::ShearCentreX,
-            Q::ShearCentreY,
-        ),
-        (
-            Mark::FlexureCentre,
-            "F",
-            "flexure centre",
-            "no mean rotation under flexure; depends on Poisson's ratio",
-            Q::FlexureCentreX,
-            Q::FlexureCentreY,
-        ),
-    ]
-    .into_iter()
-    .filter_map(|(mark, letter, name, remark, x, y)| {
-        Some(Centre {
-            mark,
-            letter,
-            name,
-            remark,
-            x: (x, get(x)?),
-            y: (y, get(y)?),
-        })
-    })
-    .collect()
-}
-
-enum Principal {
-    /// The angle of axis 1, degrees.
-    Axes(Figure),
-    /// Both principal moments are equal.
-    Any,
-}
-
-fn principal(get: &dyn Fn(Quantity) -> Option<Figure>) -> Option<Principal> {
-    let angle = get(Quantity::PrincipalAngle)?;
-    let (a, b) = (
-        get(Quantity::PrincipalMoment1)?,
-        get(Quantity::PrincipalMoment2)?,
-    );
-    // Equal within rounding: the angle says nothing.
-    let equal = (a.value - b.value).abs() <= 1e-9 * a.value.abs() + a.half_width() + b.half_width();
-    Some(if equal {
-        Principal::Any
-    } else {
-        Principal::Axes(angle)
-    })
-}
-
-/// On which sides the dimension lines stand.
-#[derive(Clone, Copy)]
-struct Turned {
-    /// The height is given on the right instead of on the left.
-    height_right: bool,
-    /// The width is given above instead of below.
-    width_above: bool,
-}
-
-impl Turned {
-    /// Room around the drawing, mm, as left, top, right, bottom.
-    fn room(self) -> Rect {
-        let pick = |dimension: bool, bare: f64| if dimension { DIMENSION_ROOM } else { bare };
-        Rect::new(
-            pick(!self.height_right, 8.0),
-            // The text stands above the line, away from the outline.
-            if self.width_above {
-                DIMENSION_ROOM + 3.0
-            } else {
-                6.0
-            },
-            pick(self.height_right, 3.0),
-            pick(!self.width_above, 5.0),
-        )
-    }
-}
-
-fn dimensions(page: &mut Page, ground: &mut Ground, extent: Rect, solid: Rect, turned: Turned) {
-    let thin = Pen::line(FAINT, 0.12);
-    let (near, far, y) = if turned.width_above {
-        (
-            solid.y0 - 1.0,
-            solid.y0 - DIMENSION_AT - 1.0,
-            solid.y0 - DIMENSION_AT,
-        )
-    } else {
-        (
-            solid.y1 + 1.0,
-            solid.y1 + DIMENSION_AT + 1.0,
-            solid.y1 + DIMENSION_AT,
-        )
-    };
-    for x in [solid.x0, solid.x1] {
-        page.line(Point::new(x, near), Point::new(x, far), thin);
-    }
-    let text = digits::short(extent.width(), 6);
-    let (a, b) = (Point::new(solid.x0, y), Point::new(solid.x1, y));
-    ground.taken.push(marks::dimension(page, a, b, &text));
-    // Labels keep off the dimension lines too.
-    ground.leaders.push((a, b));
-
-    let (near, far, x) = if turned.height_right {
-        (
-            solid.x1 + 1.0,
-            solid.x1 + DIMENSION_AT + 1.0,
-            solid.x1 + DIMENSION_AT,
-        )
-    } else {
-        (
-            solid.x0 - 1.0,
-            solid.x0 - DIMENSION_AT - 1.0,
-            solid.x0 - DIMENSION_AT,
-        )
-    };
-    for y in [solid.y0, solid.y1] {
-        page.line(Point::new(near, y), Point::new(far, y), thin);
-    }
-    let text = digits::short(extent.height(), 6);
-    let (a, b) = (Point::new(x, solid.y1), Point::new(x, solid.y0));
-    ground.taken.push(marks::dimension(page, a, b, &text));
-    ground.leaders.push((a, b));
-}
-
 /// The axes of the section file: at their origin if that is in sight.
 fn origin(page: &mut Page, ground: &mut Ground, view: &View, drawn: Rect) {
     let at = view.point(Point::default());
@@ -421,82 +266,4 @@ fn letters(page: &mut Page, ground: &mut Ground, centres: &[Centre], view: &View
             page.text(Point::new(placed.rect.x0, placed.rect.y0 - size.y0), &label);
         }
     }
-}
-
-/// A figure with its ±; exact ones without trailing zeros.
-fn printed(figure: &Figure) -> String {
-    let mut text = digits::print(figure);
-    if text.half_width.is_none() && text.value.contains('.') {
-        text.value = text
-            .value
-            .trim_end_matches('0')
-            .trim_end_matches('.')
-            .into();
-    }
-    digits::minus_sign(&text.line())
-}
-
-/// A mark, a heading and lines below it.
-struct Block {
-    mark: Option<Mark>,
-    heading: String,
-    remark: String,
-    lines: Vec<String>,
-}
-
-fn centre_block(centre: &Centre, units: &Units) -> Block {
-    let line = |(q, f): &(Quantity, Figure)| {
-        let text = printed(f);
-        let unit = unit_names::pretty(q.dimension(), units);
-        format!("{} = {text} {unit}", q.symbol())
-    };
-    Block {
-        mark: Some(centre.mark),
-        heading: format!("{}  {}", centre.letter, centre.name),
-        remark: centre.remark.into(),
-        lines: vec![line(&centre.x), line(&centre.y)],
-    }
-}
-
-fn principal_block(principal: &Principal) -> Block {
-    Block {
-        mark: None,
-        heading: "1, 2  principal axes".into(),
-        remark: String::new(),
-        lines: vec![match principal {
-            Principal::Axes(angle) => format!("axis 1 at α = {}° from x", printed(angle)),
-            Principal::Any => "every axis through C is one".into(),
-        }],
-    }
-}
-
-/// Draws a block with its upper left corner at `at`, within `width`; returns its lower edge.
-fn draw_block(page: &mut Page, at: Point, block: &Block, width: f64) -> f64 {
-    let indent = 6.0;
-    let limit = width - indent;
-    let mut y = at.y + 0.78 * LABEL;
-    match block.mark {
-        Some(mark) => mark.draw(page, Point::new(at.x + 2.4, y - 0.36 * LABEL)),
-        None => page.line(
-            Point::new(at.x, y - 0.36 * LABEL),
-            Point::new(at.x + 5.0, y - 0.36 * LABEL),
-            Pen::line(INK, 0.15).dashed("2.2 0.5 0.4 0.5"),
-        ),
-    }
-    let mut label = Label::new(&block.heading);
-    label.bold = true;
-    page.text(Point::new(at.x + indent, y), &label);
-    for line in text::wrap(&block.remark, SMALL, limit) {
-        y += 1.2 * SMALL;
-        let mut label = Label::small(&line);
-        label.colour = FAINT;
-        page.text(Point::new(at.x + indent, y), &label);
-    }
-    for line in &block.lines {
-        y += 1.3 * LABEL;
-        let mut label = Label::new(line);
-        label.size *= (limit / label.width()).min(1.0);
-        page.text(Point::new(at.x + indent, y), &label);
-    }
-    y + 0.26 * LABEL
 }

@@ -320,17 +320,17 @@ fn quoted_extreme_keeps_out_of_excluded_circles() {
         centre: Point::default(),
         radius: 0.15,
     };
-    let free = field::extreme(&surface, &values, &[], 1.0).unwrap();
+    let free = extreme::extreme(&surface, &values, &[], 1.0).unwrap();
     assert!((free.value - 100.0).abs() < 1e-9);
     // On the circle the field is 1 / 0.16 everywhere; interpolation errs upwards, and little.
-    let kept = field::extreme(&surface, &values, &[corner], 1.0).unwrap();
+    let kept = extreme::extreme(&surface, &values, &[corner], 1.0).unwrap();
     assert!((kept.at.distance(corner.centre) - 0.15).abs() < 1e-9);
     assert!(kept.value >= 6.25 && kept.value < 6.35, "{}", kept.value);
     let everything = [Circle {
         centre: Point::new(0.5, 0.5),
         radius: 9.0,
     }];
-    assert!(field::extreme(&surface, &values, &everything, 1.0).is_none());
+    assert!(extreme::extreme(&surface, &values, &everything, 1.0).is_none());
 }
 
 #[test]
