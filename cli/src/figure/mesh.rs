@@ -70,7 +70,8 @@ fn attempt(
     let mut notes = Vec::new();
     if left_out > 0 {
         notes.push(format!(
-            "{left_out} sides shorter than {} mm in print are not drawn.",
+            "{left_out} sides shorter than {} mm in print are not drawn: where no lines are, the mesh is \
+             finer than that.",
             crate::write::digits::short(shortest, 2)
         ));
     }

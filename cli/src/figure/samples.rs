@@ -1,5 +1,6 @@
 //! Sections, meshes and fields for the tests of figures: made by formula, without the solver.
 
+use std::collections::BTreeMap;
 use std::f64::consts::{FRAC_PI_2, PI, TAU};
 
 use sectile_mesh::domain::{Domain, DomainSide};
@@ -107,6 +108,14 @@ pub fn plate_with_holes() -> Domain {
     domain(&rings)
 }
 
+/// Two squares apart.
+pub fn two_parts() -> Domain {
+    let square = |x: f64| polygon(&[(x, 0.0), (x + 10.0, 0.0), (x + 10.0, 10.0), (x, 10.0)]);
+    let mut domain = domain(&[square(0.0), square(30.0)]);
+    domain.parts = 2;
+    domain
+}
+
 /// A half disc, whose arc sweeps half a turn.
 pub fn half_disc(radius: f64) -> Domain {
     let circle = Circle {
@@ -161,15 +170,16 @@ pub fn mesh(
     circle_of: impl Fn(u32, u32) -> u32,
 ) -> Mesh {
     let mut sides: Vec<MeshSide> = Vec::new();
+    let mut index: BTreeMap<[u32; 2], usize> = BTreeMap::new();
     let mut triangle_sides = vec![[NONE; 3]; triangles.len()];
     for (t, triangle) in triangles.iter().enumerate() {
         for k in 0..3 {
             let (a, b) = (triangle[(k + 1) % 3], triangle[(k + 2) % 3]);
-            let found = sides.iter().position(|s| s.vertices == [b, a]);
-            triangle_sides[t][k] = if let Some(i) = found {
+            triangle_sides[t][k] = if let Some(&i) = index.get(&[b, a]) {
                 sides[i].right = t as u32;
                 i as u32
             } else {
+                index.insert([a, b], sides.len());
                 sides.push(MeshSide {
                     vertices: [a, b],
                     left: t as u32,

@@ -358,6 +358,35 @@ fn solved_sections() {
 }
 
 #[test]
+fn separate_parts_have_the_figures_that_need_no_torsion() {
+    let domain = samples::two_parts();
+    let solution = samples::solved(&domain);
+    let figures = finished("Two flats", &units(), &domain, &solution, 160.0);
+    let names: Vec<&str> = figures.iter().map(|(name, _)| *name).collect();
+    assert_eq!(names, ["section.svg", "mesh.svg"]);
+    for (name, figure) in &figures {
+        sound(
+            &format!("parts-160-{}", name.trim_end_matches(".svg")),
+            figure,
+        );
+    }
+}
+
+#[test]
+fn a_very_fine_mesh_stays_below_the_limit_and_says_what_it_leaves_out() {
+    let domain = samples::rectangle(100.0, 60.0);
+    let mut mesh = samples::rectangle_mesh(260, 150, 100.0, 60.0);
+    // Graded: half of the width has most of the triangles.
+    for v in &mut mesh.vertices {
+        v.x = 100.0 * (v.x / 100.0).powi(3);
+    }
+    let figure = mesh::draw("Plate", &units(), &domain, &mesh, "78000 triangles", 160.0);
+    sound("mesh-very-fine", &figure);
+    assert!(figure.svg.contains("are not drawn"));
+    assert!(figure.svg.len() > 100_000, "{}", figure.svg.len());
+}
+
+#[test]
 fn same_input_same_text() {
     let draw = || {
         section::draw(
