@@ -5,11 +5,13 @@ mod arrange;
 mod contact;
 mod cut;
 mod edge;
+pub(crate) mod fan;
 pub mod fault;
 mod hole;
 mod meeting;
 mod overlap;
 mod pinch;
+mod side;
 mod sound;
 mod stack;
 

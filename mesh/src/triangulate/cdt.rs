@@ -52,6 +52,8 @@ struct EdgePart {
     to: usize,
     /// `(side, part)` if it must be divided alike elsewhere or on a curve.
     tied: Option<(usize, usize)>,
+    /// The sharp corner that it cuts off.
+    apex: Option<u32>,
 }
 
 /// Triangulates one piece. With `force` the tied parts are left undivided, whatever the shape of the
@@ -64,7 +66,7 @@ pub fn triangulate_piece(
     force: bool,
 ) -> Result<PieceMesh, MeshError> {
     let name = || domain.piece_names[piece as usize].clone();
-    let (shared, parts) = edge_parts(domain, chains, piece);
+    let (mut shared, parts) = edge_parts(domain, chains, piece);
     let position = |v: u32| {
         let v = v as usize;
         let n = domain.points.len();
@@ -119,11 +121,30 @@ pub fn triangulate_piece(
         .skip(shared.len())
         .map(|v| Point::new(v.position().x, v.position().y))
         .collect();
-    let triangles = cdt
+    let mut triangles: Vec<[u32; 3]> = cdt
         .inner_faces()
         .filter(|f| inside[f.fix().index()])
         .map(|f| f.vertices().map(|v| v.fix().index() as u32))
         .collect();
+    // The corners that were cut off follow the other shared vertices.
+    let known = shared.len() as u32;
+    let apexes: Vec<u32> = parts.iter().filter_map(|p| p.apex).collect();
+    let moved = |v: u32| {
+        if v < known {
+            v
+        } else {
+            v + apexes.len() as u32
+        }
+    };
+    for t in &mut triangles {
+        *t = t.map(moved);
+    }
+    for (i, part) in parts.iter().filter(|p| p.apex.is_some()).enumerate() {
+        for (a, b) in walk(&cdt, part.from, part.to) {
+            triangles.push([moved(a as u32), known + i as u32, moved(b as u32)]);
+        }
+    }
+    shared.extend(apexes);
     Ok(PieceMesh {
         shared,
         added,
@@ -143,22 +164,72 @@ fn edge_parts(domain: &Domain, chains: &Chains, piece: u32) -> (Vec<u32>, Vec<Ed
         let tied = side.arc.is_some() || (side.left.is_some() && side.right.is_some());
         for (k, w) in chains.vertices_of(domain, s).windows(2).enumerate() {
             let (from, to) = if left { (w[0], w[1]) } else { (w[1], w[0]) };
-            runs.push((from, to, tied.then_some((s, k))));
+            runs.push(Run {
+                from,
+                to,
+                tied: tied.then_some((s, k)),
+                apex: None,
+            });
         }
     }
-    let mut shared: Vec<u32> = runs.iter().flat_map(|r| [r.0, r.1]).collect();
+    let runs = cut_off(runs, chains, piece);
+    let mut shared: Vec<u32> = runs.iter().flat_map(|r| [r.from, r.to]).collect();
     shared.sort_unstable();
     shared.dedup();
     let local = |v: u32| shared.partition_point(|&s| s < v);
     let parts = runs
         .iter()
-        .map(|&(from, to, tied)| EdgePart {
-            from: local(from),
-            to: local(to),
-            tied,
+        .map(|r| EdgePart {
+            from: local(r.from),
+            to: local(r.to),
+            tied: r.tied,
+            apex: r.apex,
         })
         .collect();
     (shared, parts)
+}
+
+/// A part of the piece's edge by vertex numbers of domain and chains.
+struct Run {
+    from: u32,
+    to: u32,
+    tied: Option<(usize, usize)>,
+    apex: Option<u32>,
+}
+
+/// Replaces the two runs at each sharp corner of the piece by the one that cuts it off.
+fn cut_off(runs: Vec<Run>, chains: &Chains, piece: u32) -> Vec<Run> {
+    let sharp: Vec<u32> = chains
+        .sharp
+        .iter()
+        .filter(|s| s.pieces.contains(&piece))
+        .map(|s| s.point)
+        .collect();
+    if sharp.is_empty() {
+        return runs;
+    }
+    let is_sharp = |v: u32| sharp.binary_search(&v).is_ok();
+    let mut arrives = vec![0; sharp.len()];
+    let mut leaves = vec![0; sharp.len()];
+    let mut kept = Vec::new();
+    for run in runs {
+        if let Ok(i) = sharp.binary_search(&run.to) {
+            arrives[i] = run.from;
+        }
+        if let Ok(i) = sharp.binary_search(&run.from) {
+            leaves[i] = run.to;
+        }
+        if !is_sharp(run.from) && !is_sharp(run.to) {
+            kept.push(run);
+        }
+    }
+    kept.extend((0..sharp.len()).map(|i| Run {
+        from: arrives[i],
+        to: leaves[i],
+        tied: None,
+        apex: Some(sharp[i]),
+    }));
+    kept
 }
 
 /// Which faces lie in the piece: those to the left of its edge, and all that can be reached from them

@@ -1,14 +1,15 @@
-//! The divisions of the domain's sides that all pieces share: arcs and interfaces.
+//! The divisions of the domain's sides that all pieces share: arcs, interfaces, sides of sharp corners.
 
 use std::f64::consts::PI;
 
+use super::MeshError;
+use super::crowd::crowded_parts;
+use super::sharp::{Sharp, sharp_corners};
 use crate::domain::{Domain, DomainSide};
-use crate::point::{Point, Vector};
+use crate::point::Point;
 
 /// Most that one part of an arc may sweep.
 const MOST_SWEEP: f64 = PI / 6.0;
-/// An arc's part must stay this many times its own rise away from what it does not touch.
-const CLEARANCE: f64 = 4.0;
 /// Halvings of an arc for clearance.
 const MOST_HALVINGS: usize = 20;
 
@@ -19,21 +20,33 @@ pub struct Chains {
     pub points: Vec<Point>,
     /// By side: the divisions inside it as (parameter, index into `points`), rising.
     inside: Vec<Vec<(f64, u32)>>,
+    /// The sharp corners.
+    pub sharp: Vec<Sharp>,
+    /// By side: the sharp corners at its start and end.
+    sharp_ends: Vec<[Option<u32>; 2]>,
 }
 
 impl Chains {
-    /// Arcs in equal parts of at most 30°, finer where a part's chord would come close to other sides.
-    #[must_use]
-    pub fn new(domain: &Domain) -> Self {
+    /// Sides cut at sharp corners, arcs in equal parts of at most 30°, finer where a part's chord would
+    /// come close to other sides.
+    ///
+    /// # Errors
+    /// [`MeshError::TooClose`] at a cusp.
+    pub fn new(domain: &Domain) -> Result<Self, MeshError> {
+        let sharp = sharp_corners(domain)?;
+        let mut sharp_ends = vec![[None; 2]; domain.sides.len()];
+        for (i, corner) in sharp.iter().enumerate() {
+            for &(s, starts) in &corner.ends {
+                sharp_ends[s][usize::from(!starts)] = Some(i as u32);
+            }
+        }
         let mut parameters: Vec<Vec<f64>> = domain
             .sides
             .iter()
-            .map(|side| match side.arc {
-                None => Vec::new(),
-                Some(arc) => {
-                    let n = (arc.sweep.abs() / MOST_SWEEP - 1e-9).ceil().max(1.0) as usize;
-                    (1..n).map(|k| k as f64 / n as f64).collect()
-                }
+            .zip(&sharp_ends)
+            .map(|(side, ends)| {
+                let cuts = ends.map(|e| e.map(|i| sharp[i as usize].distance));
+                first_division(domain, side, cuts)
             })
             .collect();
         for _ in 0..MOST_HALVINGS {
@@ -49,15 +62,17 @@ impl Chains {
         let mut chains = Self {
             points: Vec::new(),
             inside: vec![Vec::new(); domain.sides.len()],
+            sharp,
+            sharp_ends,
         };
         for (s, list) in parameters.into_iter().enumerate() {
             for t in list {
                 let index = chains.points.len() as u32;
-                chains.points.push(point_at(domain, &domain.sides[s], t));
+                chains.points.push(domain.sides[s].at(&domain.points, t));
                 chains.inside[s].push((t, index));
             }
         }
-        chains
+        Ok(chains)
     }
 
     /// The vertices along a side from `from` to `to`.
@@ -71,17 +86,32 @@ impl Chains {
         out
     }
 
-    /// Halves the parts `(side, part)`, sorted; says which pieces are touched.
+    /// Halves the parts `(side, part)`; says which pieces are touched. The sides of a sharp corner stay
+    /// cut at one distance: where one is halved all are.
     #[must_use]
     pub fn split(&mut self, domain: &Domain, parts: &[(usize, usize)]) -> Vec<bool> {
+        let mut all = parts.to_vec();
+        for &(s, k) in parts {
+            let last = self.inside[s].len();
+            for (corner, is_end) in self.sharp_ends[s].iter().zip([k == 0, k == last]) {
+                let Some(corner) = corner.filter(|_| is_end) else {
+                    continue;
+                };
+                for &(s, starts) in &self.sharp[corner as usize].ends {
+                    all.push((s, if starts { 0 } else { self.inside[s].len() }));
+                }
+            }
+        }
+        all.sort_unstable();
+        all.dedup();
         let mut touched = vec![false; domain.piece_names.len()];
-        for &(s, k) in parts.iter().rev() {
+        for &(s, k) in all.iter().rev() {
+            let side = &domain.sides[s];
             let parameters: Vec<f64> = self.inside[s].iter().map(|p| p.0).collect();
             let t = middle(&parameters, k);
             let index = self.points.len() as u32;
-            self.points.push(point_at(domain, &domain.sides[s], t));
+            self.points.push(side.at(&domain.points, t));
             self.inside[s].insert(k, (t, index));
-            let side = &domain.sides[s];
             for piece in [side.left, side.right].into_iter().flatten() {
                 touched[piece as usize] = true;
             }
@@ -90,113 +120,28 @@ impl Chains {
     }
 }
 
+/// The cuts near sharp ends, at the given distances from start and end, and the equal parts of at most
+/// [`MOST_SWEEP`] of what is left of an arc.
+fn first_division(domain: &Domain, side: &DomainSide, cuts: [Option<f64>; 2]) -> Vec<f64> {
+    let share = |distance: f64| match side.arc {
+        None => distance / side.length(&domain.points),
+        Some(arc) => 2.0 * (0.5 * distance / arc.circle.radius).asin() / arc.sweep.abs(),
+    };
+    let low = cuts[0].map(share);
+    let high = cuts[1].map(|d| 1.0 - share(d));
+    let (a, b) = (low.unwrap_or(0.0), high.unwrap_or(1.0));
+    let n = side.arc.map_or(1, |arc| {
+        ((b - a) * arc.sweep.abs() / MOST_SWEEP - 1e-9)
+            .ceil()
+            .max(1.0) as usize
+    });
+    let between = (1..n).map(|k| a + (b - a) * (k as f64 / n as f64));
+    low.into_iter().chain(between).chain(high).collect()
+}
+
 /// The middle of part `k` of a side divided at `inside`.
 fn middle(inside: &[f64], k: usize) -> f64 {
     let a = if k == 0 { 0.0 } else { inside[k - 1] };
     let b = inside.get(k).copied().unwrap_or(1.0);
     0.5 * (a + b)
-}
-
-/// The point at parameter `t` of a side, on its true curve.
-fn point_at(domain: &Domain, side: &DomainSide, t: f64) -> Point {
-    let (a, b) = (
-        domain.points[side.from as usize],
-        domain.points[side.to as usize],
-    );
-    match side.arc {
-        None => a.lerp(b, t),
-        Some(arc) => {
-            let start = (a - arc.circle.centre).angle();
-            arc.circle.centre + Vector::at_angle(start + t * arc.sweep) * arc.circle.radius
-        }
-    }
-}
-
-struct Part {
-    side: usize,
-    index: usize,
-    a: Point,
-    b: Point,
-    /// Height of the arc over its chord.
-    rise: f64,
-    ends: [u32; 2],
-}
-
-/// The parts of arcs that are too close to parts that they do not touch.
-fn crowded_parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<(usize, usize)> {
-    let mut parts: Vec<Part> = Vec::new();
-    let mut name = domain.points.len() as u32;
-    for (s, side) in domain.sides.iter().enumerate() {
-        let mut last = (domain.points[side.from as usize], side.from, 0.0);
-        let stops = parameters[s].iter().copied().chain([1.0]);
-        for (index, t) in stops.enumerate() {
-            let next = if t == 1.0 {
-                (domain.points[side.to as usize], side.to, t)
-            } else {
-                name += 1;
-                (point_at(domain, side, t), name, t)
-            };
-            let rise = side.arc.map_or(0.0, |arc| {
-                arc.circle.radius * (1.0 - (0.5 * arc.sweep * (t - last.2)).cos())
-            });
-            parts.push(Part {
-                side: s,
-                index,
-                a: last.0,
-                b: next.0,
-                rise,
-                ends: [last.1, next.1],
-            });
-            last = next;
-        }
-    }
-    // Sorted by their left end, so that only parts that overlap in x are compared.
-    let left = |p: &Part| p.a.x.min(p.b.x) - p.rise;
-    let right = |p: &Part| p.a.x.max(p.b.x) + p.rise;
-    let reach = parts.iter().fold(0.0_f64, |m, p| m.max(p.rise)) * CLEARANCE;
-    let mut order: Vec<usize> = (0..parts.len()).collect();
-    order.sort_by(|&i, &j| left(&parts[i]).total_cmp(&left(&parts[j])));
-    let mut crowded = Vec::new();
-    for (k, &i) in order.iter().enumerate() {
-        for &j in &order[k + 1..] {
-            if left(&parts[j]) > right(&parts[i]) + reach {
-                break;
-            }
-            let (p, q) = (&parts[i], &parts[j]);
-            let rise = p.rise.max(q.rise);
-            if rise == 0.0
-                || p.ends.iter().any(|e| q.ends.contains(e))
-                || segment_distance(p, q) > CLEARANCE * rise
-            {
-                continue;
-            }
-            for part in [p, q] {
-                // The flatter of the two is not what makes them crowd.
-                if part.rise > 0.25 * rise {
-                    crowded.push((part.side, part.index));
-                }
-            }
-        }
-    }
-    crowded.sort_unstable();
-    crowded.dedup();
-    crowded
-}
-
-fn segment_distance(p: &Part, q: &Part) -> f64 {
-    let side = |a: Point, b: Point, c: Point| (b - a).cross(c - a);
-    let crosses = side(p.a, p.b, q.a) * side(p.a, p.b, q.b) < 0.0
-        && side(q.a, q.b, p.a) * side(q.a, q.b, p.b) < 0.0;
-    if crosses {
-        return 0.0;
-    }
-    let to = |a: Point, b: Point, c: Point| {
-        let d = b - a;
-        let t = ((c - a).dot(d) / d.dot(d)).clamp(0.0, 1.0);
-        c.distance(a.lerp(b, t))
-    };
-    to(p.a, p.b, q.a)
-        .min(to(p.a, p.b, q.b))
-        .min(to(q.a, q.b, p.a))
-        .min(to(q.a, q.b, p.b))
 }

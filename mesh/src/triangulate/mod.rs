@@ -2,6 +2,10 @@
 
 mod cdt;
 mod chain;
+mod crowd;
+mod sharp;
+
+use std::collections::BTreeMap;
 
 use crate::domain::Domain;
 use crate::mesh::{Mesh, NONE};
@@ -79,11 +83,13 @@ const ROUNDS: usize = 24;
 /// # Errors
 /// See [`MeshError`].
 pub fn triangulate(domain: &Domain, sizing: &Sizing) -> Result<Mesh, MeshError> {
-    let mut chains = Chains::new(domain);
+    let mut chains = Chains::new(domain)?;
     let pieces = domain.piece_names.len();
     let mut made: Vec<Option<cdt::PieceMesh>> = vec![None; pieces];
-    for round in 0..=ROUNDS {
+    let mut round = 0;
+    loop {
         let last = round == ROUNDS;
+        round += 1;
         let mut split: Vec<(usize, usize)> = Vec::new();
         for piece in 0..pieces {
             if made[piece].is_none() {
@@ -92,8 +98,6 @@ pub fn triangulate(domain: &Domain, sizing: &Sizing) -> Result<Mesh, MeshError> 
                 made[piece] = Some(mesh);
             }
         }
-        split.sort_unstable();
-        split.dedup();
         if split.is_empty() || last {
             let parts: Vec<&cdt::PieceMesh> = made.iter().flatten().collect();
             let mesh = merge(domain, &chains, &parts);
@@ -105,17 +109,21 @@ pub fn triangulate(domain: &Domain, sizing: &Sizing) -> Result<Mesh, MeshError> 
                 return Err(MeshError::Folded { at: folded[0].1 });
             }
             split = folded.into_iter().map(|(part, _)| part).collect();
-            split.sort_unstable();
-            split.dedup();
         }
         let touched = chains.split(domain, &split);
-        for (made, touched) in made.iter_mut().zip(touched) {
-            if touched {
-                *made = None;
+        for (piece, touched) in touched.into_iter().enumerate() {
+            if !touched {
+                continue;
             }
+            if chains.points.len() > sizing.max_vertices {
+                return Err(MeshError::TooManyVertices {
+                    piece: domain.piece_names[piece].clone(),
+                    limit: sizing.max_vertices,
+                });
+            }
+            made[piece] = None;
         }
     }
-    unreachable!("the last round returns")
 }
 
 /// Joins the pieces' triangles along the shared parts of chains.
@@ -140,16 +148,16 @@ fn merge(domain: &Domain, chains: &Chains, parts: &[&cdt::PieceMesh]) -> Mesh {
         }
     }
     let mut circles: Vec<Circle> = Vec::new();
+    let mut known: BTreeMap<[u64; 3], usize> = BTreeMap::new();
     let mut curved: Vec<(u32, u32, u32)> = Vec::new();
     for (s, side) in domain.sides.iter().enumerate() {
         let Some(arc) = side.arc else { continue };
-        let c = match circles.iter().position(|c| *c == arc.circle) {
-            Some(c) => c,
-            None => {
-                circles.push(arc.circle);
-                circles.len() - 1
-            }
-        };
+        let Circle { centre, radius } = arc.circle;
+        let bits = [centre.x, centre.y, radius].map(f64::to_bits);
+        let c = *known.entry(bits).or_insert_with(|| {
+            circles.push(arc.circle);
+            circles.len() - 1
+        });
         for w in chains.vertices_of(domain, s).windows(2) {
             curved.push((w[0].min(w[1]), w[0].max(w[1]), c as u32));
         }
@@ -183,6 +191,7 @@ fn folded_parts(mesh: &Mesh, chains: &Chains, domain: &Domain) -> Vec<((usize, u
     if bad.is_empty() {
         return Vec::new();
     }
+    bad.sort_by_key(|b| (b.0, b.1));
     let mut out = Vec::new();
     for (s, side) in domain.sides.iter().enumerate() {
         if side.arc.is_none() {
@@ -190,8 +199,8 @@ fn folded_parts(mesh: &Mesh, chains: &Chains, domain: &Domain) -> Vec<((usize, u
         }
         for (k, w) in chains.vertices_of(domain, s).windows(2).enumerate() {
             let ends = (w[0].min(w[1]), w[0].max(w[1]));
-            if let Some(b) = bad.iter().find(|b| (b.0, b.1) == ends) {
-                out.push(((s, k), b.2));
+            if let Ok(b) = bad.binary_search_by_key(&ends, |b| (b.0, b.1)) {
+                out.push(((s, k), bad[b].2));
             }
         }
     }
