@@ -33,7 +33,16 @@ pub struct Kernel<'a> {
     pub tables: &'a Tables,
 }
 
-/// Loads of one source problem on every triangle, shape `[triangle × local]`.
+/// A problem to be loaded: its source, if it has one, with the fluxes of the spanning tree.
+#[derive(Clone, Copy, Debug)]
+pub struct Term<'a> {
+    /// Which problem.
+    pub problem: usize,
+    /// Its source and the outward fluxes through the sides of each triangle.
+    pub source: Option<(Source, &'a [[f64; 3]])>,
+}
+
+/// Loads of several problems on every triangle, shape `[triangle × local × problem]`.
 #[derive(Clone, Debug, Default)]
 pub struct Loads {
     /// `∫ (f v − h·grad v)`.
@@ -311,61 +320,73 @@ impl<'a> Kernel<'a> {
         out
     }
 
-    /// Loads of one problem on every triangle: its known field `h`, its source if it has one (with
-    /// the fluxes of `tree_flux`).
+    /// Loads of several problems on every triangle, in one pass over the triangles.
     #[must_use]
-    pub fn loads(
-        &self,
-        problem: usize,
-        source: Option<(Source, &[[f64; 3]])>,
-        torsion: Option<&[f64]>,
-    ) -> Loads {
+    pub fn loads<const N: usize>(&self, terms: &[Term; N], torsion: Option<&[f64]>) -> Loads {
         let n = self.space.local_nodes();
         let mut loads = Loads {
-            primal: vec![0.0; n * self.triangles()],
-            dual: vec![0.0; n * self.triangles()],
+            primal: vec![0.0; N * n * self.triangles()],
+            dual: vec![0.0; N * n * self.triangles()],
         };
         loads
             .primal
-            .par_chunks_mut(n)
-            .zip(loads.dual.par_chunks_mut(n))
+            .par_chunks_mut(N * n)
+            .zip(loads.dual.par_chunks_mut(N * n))
             .enumerate()
-            .for_each_init(Workspace::default, |work, (t, (primal, dual))| {
-                let tabulated = self.enter(t, work);
-                let table = &tabulated.table;
-                if let Some((source, _)) = source {
-                    self.fill_source(source, table, torsion, work);
-                    source_modes(table, &work.source, &mut work.modes);
-                }
-                for (q, at) in work.maps.iter().enumerate() {
-                    let w = table.rule.weights[q];
-                    let d_xi = &table.d_xi[q * n..(q + 1) * n];
-                    let d_eta = &table.d_eta[q * n..(q + 1) * n];
-                    // a = the field against curl v, b = against −grad v.
-                    let mut a = known_field(problem, at.x, at.y);
-                    let h = a;
-                    if let Some((_, flux)) = source {
-                        let s = self.particular(tabulated, q, &flux[t], &work.modes);
-                        let s = at.piola(s);
-                        a = [a[0] - s[0], a[1] - s[1]];
-                        let values = &table.value[q * n..(q + 1) * n];
-                        let f = w * work.source[q];
-                        for (p, v) in primal.iter_mut().zip(values) {
-                            *p += f * v;
-                        }
-                    } else {
-                        let g = pull_back(at, h, w);
-                        for ((p, x), y) in primal.iter_mut().zip(d_xi).zip(d_eta) {
-                            *p -= g[0] * x + g[1] * y;
+            .for_each_init(
+                || {
+                    (
+                        Workspace::default(),
+                        vec![Vec::new(); N],
+                        vec![Vec::new(); N],
+                    )
+                },
+                |(work, values, modes), (t, (primal, dual))| {
+                    let tabulated = self.enter(t, work);
+                    let table = &tabulated.table;
+                    for k in 0..N {
+                        if let Some((source, _)) = terms[k].source {
+                            self.fill_source(source, table, torsion, work);
+                            source_modes(table, &work.source, &mut modes[k]);
+                            std::mem::swap(&mut values[k], &mut work.source);
                         }
                     }
-                    // a·curl v = (−a_y, a_x)·grad v.
-                    let g = pull_back(at, [-a[1], a[0]], w);
-                    for ((p, x), y) in dual.iter_mut().zip(d_xi).zip(d_eta) {
-                        *p += g[0] * x + g[1] * y;
+                    for (q, at) in work.maps.iter().enumerate() {
+                        let w = table.rule.weights[q];
+                        // By problem: against v, against the reference gradients of v (primal, dual).
+                        let mut f = [0.0; N];
+                        let mut p = [[0.0; N]; 2];
+                        let mut d = [[0.0; N]; 2];
+                        for k in 0..N {
+                            let mut a = known_field(terms[k].problem, at.x, at.y);
+                            if let Some((_, flux)) = terms[k].source {
+                                f[k] = w * values[k][q];
+                                let s = self.particular(tabulated, q, &flux[t], &modes[k]);
+                                let s = at.piola(s);
+                                a = [a[0] - s[0], a[1] - s[1]];
+                            } else {
+                                let g = pull_back(at, a, w);
+                                p[0][k] = -g[0];
+                                p[1][k] = -g[1];
+                            }
+                            // a·curl v = (−a_y, a_x)·grad v.
+                            let g = pull_back(at, [-a[1], a[0]], w);
+                            d[0][k] = g[0];
+                            d[1][k] = g[1];
+                        }
+                        for i in 0..n {
+                            let v = table.value[q * n + i];
+                            let (x, y) = (table.d_xi[q * n + i], table.d_eta[q * n + i]);
+                            let primal = &mut primal[i * N..(i + 1) * N];
+                            let dual = &mut dual[i * N..(i + 1) * N];
+                            for k in 0..N {
+                                primal[k] += f[k] * v + p[0][k] * x + p[1][k] * y;
+                                dual[k] += d[0][k] * x + d[1][k] * y;
+                            }
+                        }
                     }
-                }
-            });
+                },
+            );
         loads
     }
 

@@ -7,9 +7,9 @@ use sectile_mesh::mesh::Mesh;
 
 use crate::factor::Factor;
 use crate::geometry::{Frame, Geometry};
-use crate::kernel::{Energies, Kernel, NodeValues, Source};
+use crate::kernel::{Energies, Kernel, NodeValues, Source, Term};
 use crate::ordering::elimination_order;
-use crate::problem::{COUNT, FLEXURE_X, RESTRAINED, TORSION};
+use crate::problem::{COUNT, FLEXURE_X, FLEXURE_Y, POISSON_X, POISSON_Y, RESTRAINED, TORSION};
 use crate::property::area::AreaMoments;
 use crate::solution::{SolveError, Timings};
 use crate::space::Space;
@@ -105,17 +105,29 @@ pub fn solve_level(
             || free.assemble(&space, |t, k| kernel.stiffness(t, &curved, k)),
             || tied.assemble(&space, |t, k| kernel.stiffness(t, &curved, k)),
         );
-        let mut rhs = (Vec::new(), Vec::new());
-        for problem in 0..RESTRAINED {
-            let source = match problem.checked_sub(FLEXURE_X) {
-                Some(0) => Some((Source::X, &flexure_flux[0][..])),
-                Some(1) => Some((Source::Y, &flexure_flux[1][..])),
-                _ => None,
-            };
-            let loads = kernel.loads(problem, source, None);
-            rhs.0.extend(free.gather(&space, &loads.primal, 1));
-            rhs.1.extend(tied.gather(&space, &loads.dual, 1));
-        }
+        let [flux_x, flux_y] = &flexure_flux;
+        let plain = |problem| Term {
+            problem,
+            source: None,
+        };
+        let terms = [
+            plain(TORSION),
+            Term {
+                problem: FLEXURE_X,
+                source: Some((Source::X, flux_x)),
+            },
+            Term {
+                problem: FLEXURE_Y,
+                source: Some((Source::Y, flux_y)),
+            },
+            plain(POISSON_X),
+            plain(POISSON_Y),
+        ];
+        let loads = kernel.loads(&terms, None);
+        let rhs = join(
+            || free.gather(&space, &loads.primal, terms.len()),
+            || tied.gather(&space, &loads.dual, terms.len()),
+        );
         (matrices, rhs)
     });
     let (free_factor, tied_factor) = timed(&mut clock.factor, || {
@@ -150,7 +162,11 @@ pub fn solve_level(
         // unit_flexure is the inverse of the inertia tensor: (a, b) are the slopes of the linear part.
         let source = Source::Warping([mean / m.area, a, b]);
         let flux = tree.route(mesh, &kernel.source_integrals(source, Some(&torsion)));
-        let loads = kernel.loads(RESTRAINED, Some((source, &flux)), Some(&torsion));
+        let term = Term {
+            problem: RESTRAINED,
+            source: Some((source, &flux)),
+        };
+        let loads = kernel.loads(&[term], Some(&torsion));
         (source, flux, loads)
     });
     let mut restrained = (
@@ -222,37 +238,41 @@ fn least_eigenvalue(
     factor: &Factor,
     area: f64,
 ) -> Result<f64, SolveError> {
+    let dot = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(p, q)| p * q).sum::<f64>();
+    let ones = vec![1.0; kernel.space.nodes()];
+    let mass_of_one = kernel.mass_times(&ones);
     // A fixed sequence without structure: the multiples of the golden ratio, modulo 1.
     let mut field: Vec<f64> = (0..kernel.space.nodes())
         .map(|i| (i as f64 * 0.618_033_988_749_894_9).fract() - 0.5)
         .collect();
-    let mut quotient = 0.0;
-    for _ in 0..5 {
-        let mean = kernel.moments(&field)[0] / area;
+    let mut quotient = f64::INFINITY;
+    let mut last: Option<f64> = None;
+    for _ in 0..ITERATIONS {
+        let mean = dot(&field, &mass_of_one) / area;
         for v in &mut field {
             *v -= mean;
         }
         let load = kernel.mass_times(&field);
+        let norm = dot(&field, &load);
+        if let Some(energy) = last {
+            quotient = energy / norm;
+        }
         let mut column = vec![vec![0.0; system.len]];
         for (&u, &b) in system.unknown.iter().zip(&load) {
             if let Some(x) = column[0].get_mut(u as usize) {
-                *x = b;
+                *x = b / norm.sqrt();
             }
         }
         let b = column[0].clone();
         factor.solve(&mut column)?;
-        let energy: f64 = b.iter().zip(&column[0]).map(|(p, q)| p * q).sum();
+        last = Some(dot(&b, &column[0]));
         field = system.expand(&column[0]);
-        let [first, _, _, square] = kernel.moments(&field);
-        let norm = square - first * first / area;
-        quotient = energy / norm;
-        let scale = 1.0 / norm.sqrt();
-        for v in &mut field {
-            *v *= scale;
-        }
     }
     Ok(0.5 * quotient)
 }
+
+/// Inverse iterations: the quotient is within a few per cent of the eigenvalue, and is halved.
+const ITERATIONS: usize = 5;
 
 impl LevelResult {
     /// Squared gap of every problem on every triangle.
