@@ -1,5 +1,7 @@
 //! Section files in; tables, figures and results out. Knows nothing of numerics.
 
+pub mod command;
 pub mod figure;
+pub mod read;
 pub mod section;
 pub mod write;

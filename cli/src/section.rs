@@ -39,6 +39,8 @@ pub struct Section {
     pub units: Units,
     /// Its materials; with none in the file, one without a name (E = 1, ν = 0.3) and a note.
     pub materials: Vec<Material>,
+    /// Whether the file has no material, so that results must say what was assumed.
+    pub assumed_material: bool,
     /// Its pieces, lengths in `units.length`.
     pub pieces: Vec<Piece>,
 }

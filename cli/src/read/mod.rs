@@ -1,0 +1,203 @@
+//! Section files in: TOML text to a [`Section`] and its [`Domain`], or every fault at once.
+
+mod excerpt;
+pub mod fault;
+mod fields;
+pub mod file;
+mod geometry;
+mod later;
+mod material;
+pub mod near;
+mod piece;
+mod place;
+mod profile;
+pub mod quantity;
+mod ring;
+mod shape;
+pub mod show;
+mod syntax;
+mod units;
+
+use sectile_mesh::domain::fault::Fault as Found;
+use sectile_mesh::domain::{self, Domain};
+use sectile_mesh::outline::piece::Piece;
+use sectile_solver::material::Material;
+
+use crate::section::Section;
+use fault::{Fault, Faults};
+use fields::{Fields, Reader};
+use geometry::{PieceText, Sources};
+use syntax::printable;
+
+pub use file::section_from_path;
+
+/// Keys of the file's top level.
+const KEYS: &[&str] = &["title", "units", "material", "piece"];
+
+/// A section file that has been read without fault.
+#[derive(Clone, Debug, PartialEq)]
+pub struct ReadSection {
+    /// What the file states.
+    pub section: Section,
+    /// The valid planar regions that its pieces make.
+    pub domain: Domain,
+}
+
+/// Reads the section file `text`; messages call it `name`.
+///
+/// # Errors
+/// Every fault found. Faults of the TOML hide those of its entries; faults of entries hide those of
+/// the geometry that depends on them; nothing else is hidden.
+pub fn section_from_text(name: &str, text: &str) -> Result<ReadSection, Box<Faults>> {
+    if text
+        .trim_matches(|c: char| c.is_whitespace() || c == '\u{feff}')
+        .is_empty()
+    {
+        let fault = Fault::whole(
+            format!("{name} is empty"),
+            "`sectile new` writes a starter file",
+        );
+        return Err(Faults::new(name, text, vec![fault]));
+    }
+    let value = toml_span::parse(text)
+        .map_err(|error| Faults::new(name, text, vec![syntax::fault(text, &error)]))?;
+    let mut reader = Reader {
+        units: units::defaults(),
+        faults: Vec::new(),
+    };
+    match read(&mut reader, name, &value) {
+        Some(read) if reader.faults.is_empty() => Ok(read),
+        _ => Err(Faults::new(name, text, reader.faults)),
+    }
+}
+
+fn read(reader: &mut Reader, name: &str, value: &toml_span::Value<'_>) -> Option<ReadSection> {
+    let known = [KEYS, later::KEYS].concat();
+    let fields = Fields::open(reader, value, "a section file", &known)?;
+    later::refuse(reader, value.as_table()?);
+
+    let faults = reader.faults.len();
+    if let Some(value) = fields.get("units") {
+        units::read(reader, value);
+    }
+    // With a wrong unit of length the pieces would not fit each other.
+    let sure_of_units = reader.faults.len() == faults;
+    let title = fields
+        .get("title")
+        .and_then(|value| reader.text(value, "the title"))
+        .map_or_else(|| stem(name), str::to_owned);
+    let materials = fields
+        .get("material")
+        .map(|value| material::read_all(reader, value))
+        .unwrap_or_default();
+    let Some(value) = fields.get("piece").filter(|value| !is_empty_list(value)) else {
+        if !fields.is_misspelt("piece") {
+            reader.faults.push(Fault::whole(
+                format!("{name} has no piece"),
+                "add a [[piece]] with an outline or a profile; `sectile new` shows how",
+            ));
+        }
+        return None;
+    };
+    let pieces = piece::read_all(reader, value, &materials);
+    let complete = pieces.iter().all(Option::is_some);
+    let (pieces, texts): (Vec<Piece>, Vec<PieceText>) = pieces.into_iter().flatten().unzip();
+    refuse_several_materials(reader, &pieces, &texts, &materials);
+    let domain = if sure_of_units {
+        regions(reader, &pieces, &texts, complete)
+    } else {
+        None
+    };
+
+    let assumed_material = materials.is_empty();
+    Some(ReadSection {
+        section: Section {
+            title,
+            units: reader.units.clone(),
+            materials: if assumed_material {
+                vec![material::assumed()]
+            } else {
+                materials
+            },
+            assumed_material,
+            pieces,
+        },
+        domain: domain?,
+    })
+}
+
+/// The domain of the pieces; with some missing, faults that these could cure are left out.
+fn regions(
+    reader: &mut Reader,
+    pieces: &[Piece],
+    texts: &[PieceText],
+    complete: bool,
+) -> Option<Domain> {
+    if pieces.is_empty() {
+        return None;
+    }
+    match domain::build(pieces) {
+        Ok(domain) => Some(domain),
+        Err(found) => {
+            let sources = Sources {
+                pieces,
+                texts,
+                unit: reader.units.length,
+            };
+            let certain =
+                |fault: &&Found| complete || !matches!(fault, Found::PiecesTouchInPoint { .. });
+            reader.faults.extend(
+                found
+                    .iter()
+                    .filter(certain)
+                    .map(|fault| sources.fault(fault)),
+            );
+            None
+        }
+    }
+}
+
+fn refuse_several_materials(
+    reader: &mut Reader,
+    pieces: &[Piece],
+    texts: &[PieceText],
+    materials: &[Material],
+) {
+    let Some(first) = pieces.first() else { return };
+    let Some(other) = pieces
+        .iter()
+        .position(|piece| piece.material != first.material)
+    else {
+        return;
+    };
+    let name = |piece: &Piece| {
+        materials
+            .get(piece.material)
+            .map_or_else(String::new, |material| printable(&material.name))
+    };
+    reader.faults.push(
+        Fault::at(
+            texts[other].head.clone(),
+            format!("of {}", name(&pieces[other])),
+            "this version answers sections of one material only",
+            format!(
+                "give all pieces the same material, or solve the parts of {} and of {} by themselves; \
+                 a later version weights several materials",
+                name(first),
+                name(&pieces[other])
+            ),
+        )
+        .and(texts[0].head.clone(), format!("of {}", name(first))),
+    );
+}
+
+fn is_empty_list(value: &toml_span::Value<'_>) -> bool {
+    value.as_array().is_some_and(Vec::is_empty)
+}
+
+/// A title for a file without one: its name without folders and endings.
+fn stem(name: &str) -> String {
+    let file = name.rsplit(['/', '\\']).next().unwrap_or(name);
+    let file = file.strip_suffix(".toml").unwrap_or(file);
+    file.strip_suffix(".section").unwrap_or(file).to_owned()
+}

@@ -1,0 +1,246 @@
+//! The tables `[[piece]]`.
+
+use std::collections::BTreeMap;
+use std::ops::Range;
+
+use sectile_mesh::outline::piece::{Outline, Piece};
+use sectile_solver::material::Material;
+use toml_span::Value;
+
+use super::fault::Fault;
+use super::fields::{Fields, Reader, span};
+use super::geometry::PieceText;
+use super::near::{listed, nearest};
+use super::ring::{self, RingText};
+use super::syntax::printable;
+use super::{place, profile, shape};
+
+const KEYS: &[&str] = &[
+    "name", "material", "outline", "holes", "plate", "tube", "bar", "profile", "place",
+];
+/// Of these a piece has exactly one.
+const SHAPES: &[&str] = &["outline", "plate", "tube", "bar", "profile"];
+
+/// A piece and where it is written.
+pub(super) type Read = (Piece, PieceText);
+
+/// All pieces in the order of the file; `None` for each that is faulty.
+pub(super) fn read_all(
+    reader: &mut Reader,
+    value: &Value<'_>,
+    materials: &[Material],
+) -> Vec<Option<Read>> {
+    let Some(list) = value
+        .as_array()
+        .filter(|list| list.iter().all(|v| v.as_table().is_some()))
+    else {
+        reader.faults.push(Fault::at(
+            span(value),
+            "",
+            "`piece` must be a list of tables",
+            "head every piece with [[piece]], two brackets on either side",
+        ));
+        return Vec::new();
+    };
+    let mut names: BTreeMap<String, Range<usize>> = BTreeMap::new();
+    list.iter()
+        .enumerate()
+        .map(|(i, value)| read(reader, value, i, materials, &mut names))
+        .collect()
+}
+
+fn read(
+    reader: &mut Reader,
+    value: &Value<'_>,
+    index: usize,
+    materials: &[Material],
+    names: &mut BTreeMap<String, Range<usize>>,
+) -> Option<Read> {
+    let fields = Fields::open(reader, value, "a piece", KEYS)?;
+    let (name, head) = name(reader, &fields, index, names);
+    let material = material(reader, &fields, &name, materials);
+    let body = body(reader, &fields, &name);
+    let holes = fields.get("holes").map(|value| holes(reader, value));
+    let placing = fields.get("place").map(|value| place::read(reader, value));
+
+    let (mut outline, mut rings) = body?;
+    if let Some(holes) = holes {
+        for (hole, text) in holes? {
+            outline.holes.push(hole);
+            rings.push(text);
+        }
+    }
+    if let Some(placing) = placing {
+        outline = placing?.outline(&outline);
+    }
+    Some((
+        Piece {
+            name,
+            outline,
+            material: material?,
+        },
+        PieceText { head, rings },
+    ))
+}
+
+/// The piece's name and where its reader finds it; a piece without one is "piece 1" and so on.
+fn name(
+    reader: &mut Reader,
+    fields: &Fields<'_>,
+    index: usize,
+    names: &mut BTreeMap<String, Range<usize>>,
+) -> (String, Range<usize>) {
+    let written = fields.get("name").and_then(|value| {
+        let text = reader.text(value, "the name of a piece")?;
+        if text.trim().is_empty() {
+            reader.faults.push(Fault::at(
+                span(value),
+                "empty",
+                "the name of a piece must not be empty",
+                "give a name, or leave the key out",
+            ));
+            return None;
+        }
+        Some((text.to_owned(), span(value)))
+    });
+    let (name, head) = written.unwrap_or_else(|| (format!("piece {}", index + 1), fields.span()));
+    if let Some(first) = names.get(&name) {
+        reader.faults.push(
+            Fault::at(
+                head.clone(),
+                "again here",
+                format!("two pieces are named \"{}\"", printable(&name)),
+                "give every piece a name of its own: messages and results tell pieces apart by it",
+            )
+            .and(first.clone(), "first here"),
+        );
+    } else {
+        names.insert(name.clone(), head.clone());
+    }
+    (name, head)
+}
+
+fn material(
+    reader: &mut Reader,
+    fields: &Fields<'_>,
+    name: &str,
+    materials: &[Material],
+) -> Option<usize> {
+    let known: Vec<&str> = materials
+        .iter()
+        .map(|material| material.name.as_str())
+        .collect();
+    let Some(value) = fields.get("material") else {
+        if known.len() <= 1 {
+            return Some(0);
+        }
+        reader.faults.push(Fault::at(
+            fields.span(),
+            "of which material?",
+            format!(
+                "piece \"{}\" names no material and the file has several",
+                printable(name)
+            ),
+            format!("add `material`, one of {}", listed(&known, "or")),
+        ));
+        return None;
+    };
+    let text = reader.text(value, "the material of a piece")?;
+    let found = known.iter().position(|known| *known == text);
+    if found.is_none() {
+        reader.faults.push(Fault::at(
+            span(value),
+            "not in this file",
+            format!("there is no material \"{}\"", printable(text)),
+            match nearest(text, &known) {
+                Some(near) => format!(
+                    "the nearest known one is \"{}\"; or add a table [material.{}]",
+                    printable(near),
+                    printable(text)
+                ),
+                None => format!(
+                    "add a table [material.{}] with E and nu, or remove the line",
+                    printable(text)
+                ),
+            },
+        ));
+    }
+    found
+}
+
+/// The piece's shape before its own holes and its placing.
+fn body(reader: &mut Reader, fields: &Fields<'_>, name: &str) -> Option<(Outline, Vec<RingText>)> {
+    let mut given: Vec<(Range<usize>, &str)> = SHAPES
+        .iter()
+        .filter_map(|key| Some((fields.key_span(key)?, *key)))
+        .collect();
+    given.sort_by_key(|(range, _)| range.start);
+    let value_of = |key| fields.get(key);
+    match given.as_slice() {
+        // A misspelt shape has been told already.
+        [] if SHAPES.iter().any(|key| fields.is_misspelt(key)) => None,
+        [] => {
+            reader.faults.push(Fault::at(
+                fields.span(),
+                "no shape",
+                format!("piece \"{}\" has no shape", printable(name)),
+                format!("give it one of {}", listed(SHAPES, "or")),
+            ));
+            None
+        }
+        [(_, key)] => {
+            let value = value_of(key)?;
+            match *key {
+                "outline" => {
+                    let (outer, text) = ring::read(reader, value, "the outline")?;
+                    Some((
+                        Outline {
+                            outer,
+                            holes: Vec::new(),
+                        },
+                        vec![text],
+                    ))
+                }
+                "plate" => shape::plate(reader, value),
+                "tube" => shape::tube(reader, value),
+                "bar" => shape::bar(reader, value),
+                _ => profile::read(reader, value),
+            }
+        }
+        [(first, one), (second, other), ..] => {
+            reader.faults.push(
+                Fault::at(
+                    second.clone(),
+                    "second shape",
+                    format!(
+                        "piece \"{}\" has two shapes, `{one}` and `{other}`",
+                        printable(name)
+                    ),
+                    "keep one, and make the other a [[piece]] of its own",
+                )
+                .and(first.clone(), "first shape"),
+            );
+            None
+        }
+    }
+}
+
+fn holes(
+    reader: &mut Reader,
+    value: &Value<'_>,
+) -> Option<Vec<(sectile_mesh::outline::piece::Ring, RingText)>> {
+    let Some(list) = value.as_array() else {
+        reader.wrong_type(
+            value,
+            "`holes`",
+            "a list of loops, such as [{ circle = { at = [x, y], d = 5 } }]",
+        );
+        return None;
+    };
+    let rings: Vec<_> = list
+        .iter()
+        .enumerate()
+        .map(|(i, value)| ring::read(reader, value, &format!("hole {}", i + 1)))
+        .collect();
+    rings.into_iter().collect()
+}

@@ -1,0 +1,158 @@
+//! Files without fault: what is read is what was written.
+
+use std::f64::consts::PI;
+
+use sectile::read::{ReadSection, section_from_text};
+use sectile_mesh::Point;
+use sectile_tests::{file_name, outline_area, ring_area, section_files};
+
+fn read(name: &str) -> ReadSection {
+    let name = format!("{name}.section.toml");
+    let path = section_files("good")
+        .into_iter()
+        .find(|path| file_name(path) == name)
+        .unwrap_or_else(|| panic!("there is no {name}"));
+    let text = std::fs::read_to_string(path).expect("good files are UTF-8");
+    section_from_text(&name, &text).unwrap_or_else(|faults| panic!("{faults}"))
+}
+
+fn close(a: f64, b: f64) -> bool {
+    (a - b).abs() <= 1e-12 * b.abs().max(1.0)
+}
+
+fn areas(read: &ReadSection) -> Vec<f64> {
+    read.section
+        .pieces
+        .iter()
+        .map(|piece| outline_area(&piece.outline))
+        .collect()
+}
+
+#[test]
+fn every_good_and_every_demo_file_is_read() {
+    let files: Vec<_> = section_files("good")
+        .into_iter()
+        .chain(section_files("../cli/demo"))
+        .collect();
+    assert!(files.len() >= 12, "only {} files", files.len());
+    for path in files {
+        let text = std::fs::read_to_string(&path).expect("good files are UTF-8");
+        assert!(
+            text.to_lowercase().contains("invented"),
+            "{} does not say so",
+            file_name(&path)
+        );
+        let read =
+            section_from_text(file_name(&path), &text).unwrap_or_else(|faults| panic!("{faults}"));
+        assert!(!read.domain.sides.is_empty(), "{}", file_name(&path));
+    }
+}
+
+#[test]
+fn lengths_in_inches_feet_fractions_and_millimetres_agree_to_the_last_digit() {
+    let inches = read("units-in-inches");
+    assert_eq!(inches.section.title, "Flat in inches (invented)");
+    assert_eq!(inches.section.units.length, "in");
+    assert_eq!(inches.section.units.moment, "kip in");
+    let corners: Vec<Point> = inches.section.pieces[0]
+        .outline
+        .outer
+        .sides
+        .iter()
+        .map(|side| side.from)
+        .collect();
+    for corner in [[0.0, 0.0], [4.0, 0.0], [4.0, 0.375], [0.0, 0.375]] {
+        let corner = Point::new(corner[0], corner[1]);
+        assert!(
+            corners.iter().any(|found| found.distance(corner) < 1e-15),
+            "{corner:?} in {corners:?}"
+        );
+    }
+    let steel = &inches.section.materials[0];
+    // 200 GPa in ksi and 490 lb/ft³ in kg/m³, by the definitions of pound, inch and pound-force.
+    assert!(
+        close(steel.young, 200e3 / 6.894_757_293_168_361),
+        "{}",
+        steel.young
+    );
+    assert_eq!(steel.yield_stress, Some(50.0));
+    assert!(close(
+        steel.density.unwrap_or_default(),
+        490.0 * 0.453_592_37 / 0.028_316_846_592
+    ));
+    assert!(close(steel.shear, steel.young / 2.6));
+
+    let millimetres = read("units-in-millimetres");
+    assert_eq!(millimetres.section.title, "units-in-millimetres");
+    assert!(close(areas(&millimetres)[0], 101.6 * 9.525));
+    assert_eq!(millimetres.section.materials[0].shear, 80_000.0);
+    assert_eq!(millimetres.section.materials[0].density, Some(7850.0));
+    assert_eq!(millimetres.section.pieces[0].name, "piece 1");
+}
+
+#[test]
+fn rounded_corners_arcs_and_holes() {
+    let read = read("rounded-and-arched");
+    let outline = &read.section.pieces[0].outline;
+    // 100 × 60, two corners cut back by (1 − π/4) r², a half disc of radius 30 beside it.
+    let outer = 6000.0 - 2.0 * (1.0 - 0.25 * PI) * 100.0 + 0.5 * PI * 900.0;
+    assert!(
+        close(ring_area(&outline.outer), outer),
+        "{}",
+        ring_area(&outline.outer)
+    );
+    assert_eq!(outline.holes.len(), 2);
+    assert!(close(outline_area(outline), outer - 100.0 * PI - 400.0));
+    assert_eq!(
+        outline
+            .outer
+            .sides
+            .iter()
+            .filter(|side| side.arc.is_some())
+            .count(),
+        3
+    );
+    assert!(read.section.assumed_material);
+    assert_eq!(read.section.materials[0].young, 1.0);
+    assert_eq!(read.section.materials[0].poisson, 0.3);
+    assert_eq!(read.domain.parts, 1);
+}
+
+#[test]
+fn two_corners_suffice_with_an_arc_and_none_with_a_circle() {
+    assert!(close(
+        areas(&read("half-disc-of-two-corners"))[0],
+        0.5 * PI * 2500.0
+    ));
+    assert!(close(areas(&read("disc"))[0], PI * (1600.0 - 225.0)));
+}
+
+#[test]
+fn plates_tubes_and_bars() {
+    let fused = read("plates-fused");
+    assert_eq!(areas(&fused), [800.0, 800.0]);
+    assert_eq!(fused.domain.parts, 1);
+    assert!(!fused.section.assumed_material);
+    let apart = read("tube-and-bar-apart");
+    assert!(close(areas(&apart)[0], PI * (2500.0 - 2025.0)));
+    assert!(close(areas(&apart)[1], 2400.0 - 100.0 * PI));
+    assert_eq!(apart.domain.parts, 2);
+}
+
+#[test]
+fn a_piece_is_of_the_material_that_it_names() {
+    let read = read("one-of-two-materials");
+    let material = &read.section.materials[read.section.pieces[0].material];
+    assert_eq!(
+        (material.name.as_str(), material.young),
+        ("steel", 210_000.0)
+    );
+}
+
+#[test]
+fn other_spellings_of_toml_say_the_same() {
+    let read = read("dotted-keys");
+    assert_eq!(read.section.title, "Dotted (invented)");
+    assert_eq!(areas(&read), [24.0]);
+    assert_eq!(read.section.materials[0].young, 210_000.0);
+}
