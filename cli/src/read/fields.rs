@@ -147,7 +147,9 @@ fn unknown_key(
 /// Keys that a writer may mean by another word for the same thing.
 fn other_words(word: &str) -> &'static [&'static str] {
     match word.to_lowercase().as_str() {
-        "thickness" => &["t", "tw"],
+        "thickness" | "wall" => &["t", "tw"],
+        "web" => &["tw"],
+        "flange" => &["tf"],
         "diameter" => &["d"],
         "radius" | "fillet" | "rounding" => &["round", "r"],
         "width" | "breadth" => &["b"],
@@ -201,15 +203,19 @@ impl Reader {
         let text = self.text(value, what)?;
         let found = known.iter().copied().find(|word| *word == text);
         if found.is_none() {
-            let near = nearest(text, known).unwrap_or_default();
+            let remedy = match known {
+                [only] => format!("write \"{only}\", or leave the key out"),
+                _ => format!(
+                    "the nearest known one is \"{}\"; choose {}",
+                    nearest(text, known).unwrap_or_default(),
+                    listed(known, "or").replace('`', "\"")
+                ),
+            };
             self.faults.push(Fault::at(
                 span(value),
                 "not known",
                 format!("{what} cannot be \"{}\"", printable(text)),
-                format!(
-                    "the nearest known one is \"{near}\"; choose {}",
-                    listed(known, "or").replace('`', "\"")
-                ),
+                remedy,
             ));
         }
         found

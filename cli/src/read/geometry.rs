@@ -32,6 +32,15 @@ impl<'a> Sources<'a> {
     /// `found`, with its places marked.
     pub(super) fn fault(self, found: &Found) -> Fault {
         match *found {
+            Found::NotSimple { piece, ref reason } => Fault::at(
+                self.outline(piece),
+                "",
+                format!(
+                    "piece \"{}\" is not one simple region: {reason}",
+                    self.name(piece)
+                ),
+                "check its corners; an outline is one closed line that nowhere meets itself",
+            ),
             Found::SelfCrossing { a, b, at } => {
                 let message = format!(
                     "two sides of {} of piece \"{}\" meet at {}: {} and {}",
@@ -53,7 +62,7 @@ impl<'a> Sources<'a> {
                 self.two(hole, edge, message, "move the hole inside, make it smaller, or draw the opening as part of the outline")
             }
             Found::HoleOutside { hole } => Fault::at(
-                self.range(hole),
+                self.ring(hole).map_or(0..0, |ring| ring.whole.clone()),
                 "",
                 format!(
                     "{} lies outside of piece \"{}\"",
@@ -63,8 +72,9 @@ impl<'a> Sources<'a> {
                 "move it inside the outline; holes are in the axes of their piece, before `place`",
             ),
             Found::HolesMeet { a, b, at } => {
+                let (a, b) = if b.ring < a.ring { (b, a) } else { (a, b) };
                 let message = format!(
-                    "{} and {} of piece \"{}\" meet at {}",
+                    "{} and {} of piece \"{}\" touch or overlap at {}",
                     self.ring_name(a),
                     self.ring_name(b),
                     self.name(a.piece),
@@ -73,7 +83,7 @@ impl<'a> Sources<'a> {
                 self.two(a, b, message, "move them apart, or draw them as one hole")
             }
             Found::PiecesOverlap { a, b, at, area } => Fault::at(
-                self.head(b),
+                self.head(a),
                 "this piece",
                 format!(
                     "the pieces \"{}\" and \"{}\" overlap by {} {}² around {}",
@@ -85,9 +95,9 @@ impl<'a> Sources<'a> {
                 ),
                 "move one of them (`place`) or cut it back: pieces may share sides, not area",
             )
-            .and(self.head(a), "and this piece"),
+            .and(self.head(b), "and this piece"),
             Found::PiecesTouchInPoint { a, b, at } => Fault::at(
-                self.head(b),
+                self.head(a),
                 "this piece",
                 format!(
                     "the pieces \"{}\" and \"{}\" touch in the single point {}",
@@ -97,12 +107,9 @@ impl<'a> Sources<'a> {
                 ),
                 "let them share a part of a side, or move them apart: a point transfers no stress",
             )
-            .and(self.head(a), "and this piece"),
+            .and(self.head(b), "and this piece"),
             Found::NoArea { piece } => Fault::at(
-                self.texts
-                    .get(piece)
-                    .and_then(|text| text.rings.first())
-                    .map_or(0..0, |ring| ring.whole.clone()),
+                self.outline(piece),
                 "no area inside",
                 format!("piece \"{}\" encloses no area", self.name(piece)),
                 "check the corners: they lie in line, or nearly so",
@@ -132,6 +139,11 @@ impl<'a> Sources<'a> {
         self.pieces
             .get(piece)
             .map_or_else(String::new, |piece| super::syntax::printable(&piece.name))
+    }
+
+    fn outline(self, piece: usize) -> Range<usize> {
+        let ring = self.texts.get(piece).and_then(|text| text.rings.first());
+        ring.map_or(0..0, |ring| ring.whole.clone())
     }
 
     fn head(self, piece: usize) -> Range<usize> {

@@ -144,14 +144,22 @@ fn regions(
                 texts,
                 unit: reader.units.length,
             };
-            let certain =
-                |fault: &&Found| complete || !matches!(fault, Found::PiecesTouchInPoint { .. });
-            reader.faults.extend(
+            // An outline that crosses itself may enclose nothing for that reason only.
+            let crosses = |piece: usize| {
                 found
                     .iter()
-                    .filter(certain)
-                    .map(|fault| sources.fault(fault)),
-            );
+                    .any(|fault| matches!(fault, Found::SelfCrossing { a, .. } if a.piece == piece))
+            };
+            let certain = |fault: &&Found| match **fault {
+                Found::PiecesTouchInPoint { .. } => complete,
+                Found::NoArea { piece } => !crosses(piece),
+                _ => true,
+            };
+            let told = found
+                .iter()
+                .filter(certain)
+                .map(|fault| sources.fault(fault));
+            reader.faults.extend(told);
             None
         }
     }

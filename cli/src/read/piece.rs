@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 use std::ops::Range;
 
 use sectile_mesh::outline::piece::{Outline, Piece};
+use sectile_mesh::outline::place::placed;
 use sectile_solver::material::Material;
 use toml_span::Value;
 
@@ -71,7 +72,7 @@ fn read(
         }
     }
     if let Some(placing) = placing {
-        outline = placing?.outline(&outline);
+        outline = placed(&outline, &placing?);
     }
     Some((
         Piece {

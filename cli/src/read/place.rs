@@ -1,6 +1,6 @@
 //! `place`: a piece mirrored, then turned, then moved.
 
-use sectile_mesh::outline::place::{Axis, Placement};
+use sectile_mesh::outline::place::{Mirror, Placement};
 use toml_span::Value;
 
 use super::fields::{Fields, Reader};
@@ -22,7 +22,7 @@ pub(super) fn read(reader: &mut Reader, value: &Value<'_>) -> Option<Placement> 
         None => Some(None),
         Some(value) => reader
             .choice(value, "the axis `mirror`", &["x", "y"])
-            .map(|axis| Some(if axis == "x" { Axis::X } else { Axis::Y })),
+            .map(|axis| Some(if axis == "x" { Mirror::X } else { Mirror::Y })),
     };
     Some(Placement {
         mirror: mirror?,

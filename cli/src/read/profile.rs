@@ -1,7 +1,7 @@
 //! `profile`: a rolled or built-up form by its dimensions.
 
 use sectile_mesh::outline::piece::Outline;
-use sectile_mesh::outline::profile::{Form, ProfileFault};
+use sectile_mesh::outline::profile::{Dimensions, Form, ProfileFault, profile};
 use toml_span::Value;
 
 use super::fault::Fault;
@@ -9,18 +9,6 @@ use super::fields::{Fields, Reader, span};
 use super::quantity::Dimension;
 use super::ring::{RingText, at_most};
 use super::shape::written_whole;
-
-const FORMS: &[&str] = &["I", "channel", "angle", "tee", "box"];
-
-/// Keys of each form beside `form`: those it needs, then those it can have.
-fn keys(form: &str) -> (&'static [&'static str], &'static [&'static str]) {
-    match form {
-        "I" => (&["h", "b", "tw", "tf"], &["b2", "tf2", "r", "r2", "slope"]),
-        "angle" => (&["h", "b", "t"], &["r", "r2"]),
-        "box" => (&["h", "b"], &["t", "tw", "tf", "r", "r2"]),
-        _ => (&["h", "b", "tw", "tf"], &["r", "r2", "slope"]),
-    }
-}
 
 /// What a key of a profile states.
 fn meaning(key: &str) -> &'static str {
@@ -30,22 +18,22 @@ fn meaning(key: &str) -> &'static str {
         "t" => "the thickness `t`",
         "tw" => "the web thickness `tw`",
         "tf" => "the flange thickness `tf`",
+        "tf_at" => "the distance `tf_at` from the flange's edge",
         "b2" => "the width `b2` of the upper flange",
         "tf2" => "the thickness `tf2` of the upper flange",
         "r" => "the root radius `r`",
         "r2" => "the toe radius `r2`",
-        _ => "the flange slope `slope`",
+        "slope" => "the flange slope `slope`",
+        _ => "this dimension",
     }
 }
 
 /// The outline that `value` states.
 pub(super) fn read(reader: &mut Reader, value: &Value<'_>) -> Option<(Outline, Vec<RingText>)> {
+    let names: Vec<&'static str> = Form::ALL.iter().map(|form| form.name()).collect();
     let Some(table) = value.as_table() else {
-        reader.wrong_type(
-            value,
-            "a profile",
-            "a table such as { form = \"I\", h = 300, b = 150, tw = 7, tf = 11, r = 15 }",
-        );
+        let example = "a table such as { form = \"I\", h = 300, b = 150, tw = 7, tf = 11, r = 15 }";
+        reader.wrong_type(value, "a profile", example);
         return None;
     };
     let Some(form) = table.get("form") else {
@@ -53,195 +41,149 @@ pub(super) fn read(reader: &mut Reader, value: &Value<'_>) -> Option<(Outline, V
             span(value),
             "no `form` here",
             "a profile needs `form`",
-            "give one of \"I\", \"channel\", \"angle\", \"tee\" or \"box\"",
+            format!("give one of \"{}\"", names.join("\", \"")),
         ));
         return None;
     };
-    let form = reader.choice(form, "the form of a profile", FORMS)?;
-    let (needed, optional) = keys(form);
-    let known = [&["form"], needed, optional].concat();
-    let what = format!("the form \"{form}\"");
+    let name = reader.choice(form, "the form of a profile", &names)?;
+    let form = Form::ALL.iter().copied().find(|form| form.name() == name)?;
+    // A box may have one thickness for all its walls.
+    let shorthand: &[&str] = if form == Form::Box { &["t"] } else { &[] };
+    let known = [&["form"], form.required(), form.optional(), shorthand].concat();
+    let what = format!("the form \"{name}\"");
     let fields = Fields::open(reader, value, &what, &known)?;
-
-    let mut sound = true;
-    let mut size = |reader: &mut Reader, key: &str| {
-        let value = if needed.contains(&key) {
-            fields.need(
-                reader,
-                key,
-                &format!("give {}, as in {key} = 12", meaning(key)),
-            )
-        } else {
-            fields.get(key)
-        };
-        let read = value.map(|value| match key {
-            "slope" => reader.quantity(value, meaning(key), Dimension::Slope),
-            "r" | "r2" => reader.length(value, meaning(key)),
-            _ => reader.positive(value, meaning(key), Dimension::Length),
-        });
-        sound &=
-            read.is_some_and(|read| read.is_some()) || value.is_none() && !needed.contains(&key);
-        read.flatten()
-    };
-    let mut zero = |key: &str, reader: &mut Reader| size(reader, key).unwrap_or(0.0);
-    let (h, b) = (zero("h", reader), zero("b", reader));
-    let (r, r2) = (zero("r", reader), zero("r2", reader));
-    let form = match form {
-        "angle" => Form::Angle {
-            h,
-            b,
-            t: zero("t", reader),
-            r,
-            r2,
-        },
-        "box" => {
-            let (t, tw, tf) = (size(reader, "t"), size(reader, "tw"), size(reader, "tf"));
-            sound &= walls(reader, value, &fields);
-            Form::Box {
-                h,
-                b,
-                tw: tw.or(t).unwrap_or(0.0),
-                tf: tf.or(t).unwrap_or(0.0),
-                r,
-                r2,
-            }
-        }
-        other => {
-            let (tw, tf) = (zero("tw", reader), zero("tf", reader));
-            let slope = zero("slope", reader);
-            match other {
-                "channel" => Form::Channel {
-                    h,
-                    b,
-                    tw,
-                    tf,
-                    r,
-                    r2,
-                    slope,
-                },
-                "tee" => Form::Tee {
-                    h,
-                    b,
-                    tw,
-                    tf,
-                    r,
-                    r2,
-                    slope,
-                },
-                _ => Form::I {
-                    h,
-                    b,
-                    tw,
-                    tf,
-                    b2: size(reader, "b2").unwrap_or(b),
-                    tf2: size(reader, "tf2").unwrap_or(tf),
-                    r,
-                    r2,
-                    slope,
-                },
-            }
-        }
-    };
-    if !sound {
-        return None;
-    }
-    match form.outline() {
+    let dimensions = dimensions(reader, &fields, form)?;
+    match profile(form, &dimensions) {
         Ok(outline) => Some(written_whole(value, "profile", outline)),
         Err(faults) => {
-            let mut told: Vec<Fault> = faults
+            let told = faults
                 .iter()
-                .map(|fault| profile_fault(fault, value, &fields))
-                .collect();
-            // Where both flanges are stated by one key, its fault is told once.
-            told.dedup_by(|a, b| a.marks == b.marks);
-            reader.faults.append(&mut told);
+                .map(|fault| profile_fault(fault, value, &fields));
+            reader.faults.extend(told);
             None
         }
     }
 }
 
-/// Whether a box has its walls stated once: `t` for all four, or `tw` and `tf`.
-fn walls(reader: &mut Reader, value: &Value<'_>, fields: &Fields<'_>) -> bool {
-    let has = |key| fields.get(key).is_some();
-    let remedy = "give `t` for all four walls, or `tw` (left and right) and `tf` (top and bottom)";
-    let fault = match (has("t"), has("tw"), has("tf")) {
-        (true, false, false) | (false, true, true) => return true,
-        (true, _, _) => {
-            let other = if has("tw") { "tw" } else { "tf" };
-            Fault::at(
-                fields.key_span(other).unwrap_or(span(value)),
+/// The dimensions that a form needs or may have; `None` if any of them is faulty.
+fn dimensions(reader: &mut Reader, fields: &Fields<'_>, form: Form) -> Option<Dimensions> {
+    let one_wall = form == Form::Box && fields.get("t").is_some();
+    let mut out = Dimensions::default();
+    let mut sound = true;
+    for key in form.required().iter().chain(form.optional()).chain(&["t"]) {
+        let by_t = one_wall && ["tw", "tf"].contains(key);
+        if by_t && let Some(other) = fields.key_span(key) {
+            reader.faults.push(Fault::at(
+                other,
                 "",
-                format!("the form \"box\" has its walls stated twice, by `t` and by `{other}`"),
-                remedy,
-            )
+                format!("this box has its walls stated twice, by `t` and by `{key}`"),
+                "give `t` for all four walls, or `tw` (left and right) and `tf` (top and bottom)",
+            ));
+            sound = false;
+            continue;
         }
-        _ => Fault::at(
-            span(value),
-            "",
-            "the form \"box\" needs the thickness of its walls",
-            remedy,
-        ),
-    };
-    reader.faults.push(fault);
-    false
+        let value = if form.required().contains(key) && !by_t {
+            let remedy = if form == Form::Box && *key != "h" && *key != "b" {
+                "give `t` for all four walls, or `tw` (left and right) and `tf` (top and bottom)"
+                    .to_owned()
+            } else {
+                format!("give {}, as in {key} = 12", meaning(key))
+            };
+            let value = fields.need(reader, key, &remedy);
+            sound &= value.is_some();
+            value
+        } else {
+            fields.get(key)
+        };
+        let Some(value) = value else { continue };
+        let read = match *key {
+            "r" | "r2" | "tf_at" => not_negative(reader, value, meaning(key), Dimension::Length),
+            "slope" => not_negative(reader, value, meaning(key), Dimension::Slope),
+            _ => reader.positive(value, meaning(key), Dimension::Length),
+        };
+        let Some(number) = read else {
+            sound = false;
+            continue;
+        };
+        match *key {
+            "h" => out.h = number,
+            "b" => out.b = number,
+            "b2" => out.b2 = Some(number),
+            "tw" => out.tw = number,
+            "tf" => out.tf = number,
+            "t" => (out.tw, out.tf) = (number, number),
+            "tf2" => out.tf2 = Some(number),
+            "r" => out.r = number,
+            "r2" => out.r2 = number,
+            "slope" => out.slope = number,
+            _ => out.tf_at = Some(number),
+        }
+    }
+    sound.then_some(out)
 }
 
-/// The fault that the maker of forms found, at the key that it names.
-fn profile_fault(fault: &ProfileFault, value: &Value<'_>, fields: &Fields<'_>) -> Fault {
-    let at = |name: &str| {
-        let value_of = |key: &str| fields.get(key).map(span);
-        // A wall of a box may be stated by `t`, the upper flange by the lower one's keys.
-        let stand_in = match name {
-            "tw" | "tf" => value_of("t"),
-            "b2" => value_of("b"),
-            "tf2" => value_of("tf"),
-            _ => None,
-        };
-        value_of(name).or(stand_in).unwrap_or(span(value))
+fn not_negative(
+    reader: &mut Reader,
+    value: &Value<'_>,
+    what: &str,
+    dimension: Dimension,
+) -> Option<f64> {
+    let number = if dimension == Dimension::Length {
+        reader.length(value, what)?
+    } else {
+        reader.quantity(value, what, dimension)?
     };
-    match *fault {
-        ProfileFault::NotFinite { name } => Fault::at(
-            at(name),
-            "not finite",
-            format!("{} must be a finite number", meaning(name)),
-            "give a number such as 12.5",
+    if number >= 0.0 {
+        return Some(number);
+    }
+    reader.faults.push(Fault::at(
+        span(value),
+        "negative",
+        format!("{what} must not be negative"),
+        "leave the key out for none",
+    ));
+    None
+}
+
+/// The fault that the maker of profiles found, at the key that it names.
+fn profile_fault(fault: &ProfileFault, value: &Value<'_>, fields: &Fields<'_>) -> Fault {
+    // The walls of an angle or a box may be stated by `t`.
+    let key = fields.get(fault.key).or_else(|| {
+        let walls = ["tw", "tf", "t"].contains(&fault.key);
+        fields.get("t").filter(|_| walls)
+    });
+    let range = key.map_or(span(value), span);
+    let radius = fault.key == "r" || fault.key == "r2";
+    match fault.limit {
+        Some(limit) if radius && limit <= 0.0 => Fault::at(
+            range,
+            "no radius fits",
+            fault.message.clone(),
+            "the other dimensions leave no room here: reduce those, or leave the radius out",
         ),
-        ProfileFault::NotPositive { name, .. } => Fault::at(
-            at(name),
-            "not positive",
-            format!("{} must be greater than zero", meaning(name)),
-            "give a number such as 12.5",
-        ),
-        ProfileFault::Negative { name, .. } => Fault::at(
-            at(name),
-            "negative",
-            format!("{} must not be negative", meaning(name)),
-            format!("leave `{name}` out for none"),
-        ),
-        ProfileFault::NotBelow { name, given, limit } => Fault::at(
-            at(name),
-            format!("must be less than {}", at_most(limit)),
+        Some(limit) if radius => Fault::at(
+            range,
+            format!("at most {} fits", at_most(limit)),
+            fault.message.clone(),
             format!(
-                "{} of {given} leaves no room for the rest of the profile",
-                meaning(name)
-            ),
-            format!(
-                "it must be less than {} with the other dimensions as they are",
+                "the largest that fits, the other dimensions as they are, is {}",
                 at_most(limit)
             ),
         ),
-        ProfileFault::TooLarge {
-            name,
-            given,
-            largest,
-        } => Fault::at(
-            at(name),
-            format!("at most {} fits", at_most(largest)),
-            format!("{} of {given} does not fit", meaning(name)),
+        Some(limit) => Fault::at(
+            range,
+            format!("must be less than {}", at_most(limit)),
+            fault.message.clone(),
             format!(
-                "the largest that fits, the other dimensions as they are, is {}",
-                at_most(largest)
+                "with the other dimensions as they are it must be less than {}",
+                at_most(limit)
             ),
+        ),
+        None => Fault::at(
+            range,
+            "",
+            fault.message.clone(),
+            "check the dimensions against each other",
         ),
     }
 }

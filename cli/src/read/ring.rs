@@ -10,7 +10,6 @@ use toml_span::Value;
 use super::fault::Fault;
 use super::fields::{Fields, Reader, span};
 use super::quantity::Dimension;
-use super::shape::shape_fault;
 
 const CORNER: &[&str] = &["at", "round", "via"];
 
@@ -142,22 +141,12 @@ fn circle(reader: &mut Reader, value: &Value<'_>, what: &str) -> Option<(Ring, R
     let d = fields
         .need(reader, "d", "give the diameter, as in d = 5")
         .and_then(|value| reader.positive(value, "the diameter `d`", Dimension::Length));
-    match shape::circle(at?, d?) {
-        Ok(ring) => Some((
-            ring,
-            RingText {
-                what: what.to_owned(),
-                whole: span(value),
-                corners: Vec::new(),
-            },
-        )),
-        Err(faults) => {
-            for fault in faults {
-                reader.faults.push(shape_fault(&fault, value, &fields));
-            }
-            None
-        }
-    }
+    let text = RingText {
+        what: what.to_owned(),
+        whole: span(value),
+        corners: Vec::new(),
+    };
+    Some((shape::circle(at?, d?), text))
 }
 
 /// The fault that the makers of rings found at `corners[index]`, told by the text.

@@ -2,7 +2,7 @@
 
 use sectile_mesh::Point;
 use sectile_mesh::outline::piece::Outline;
-use sectile_mesh::outline::shape::{self, ShapeFault};
+use sectile_mesh::outline::shape;
 use toml_span::Value;
 
 use super::fault::Fault;
@@ -20,8 +20,21 @@ pub(super) fn plate(reader: &mut Reader, value: &Value<'_>) -> Option<(Outline, 
     let from = end("from", "say where its centre line starts: from = [x, y]");
     let to = end("to", "say where its centre line ends: to = [x, y]");
     let t = size(reader, &fields, "t", "the thickness `t`");
-    let made = shape::plate(from?, to?, t?);
-    shaped(reader, value, &fields, "plate", made)
+    let (from, to, t) = (from?, to?, t?);
+    if from == to {
+        let at = |key| fields.get(key).map_or(span(value), span);
+        reader.faults.push(
+            Fault::at(
+                at("from"),
+                "",
+                "the plate has no length: `from` and `to` are the same place",
+                "give the two ends of the plate's centre line",
+            )
+            .and(at("to"), ""),
+        );
+        return None;
+    }
+    Some(written_whole(value, "plate", shape::plate(from, to, t)))
 }
 
 /// `tube = { at = [x, y], d = 100, t = 5 }`: outer diameter d, wall t.
@@ -30,8 +43,18 @@ pub(super) fn tube(reader: &mut Reader, value: &Value<'_>) -> Option<(Outline, V
     let at = centre(reader, &fields, "a tube");
     let d = size(reader, &fields, "d", "the outer diameter `d`");
     let t = size(reader, &fields, "t", "the wall thickness `t`");
-    let made = shape::tube(at?, d?, t?);
-    shaped(reader, value, &fields, "tube", made)
+    let (at, d, t) = (at?, d?, t?);
+    if 2.0 * t >= d {
+        reader.faults.push(Fault::at(
+            fields.get("t").map_or(span(value), span),
+            format!("must be less than {}", 0.5 * d),
+            format!("a wall of {t} leaves nothing of the inside of this tube"),
+            "make the wall thinner than half the outer diameter; a solid round is outline = { circle \
+             = { at = [x, y], d = 100 } }",
+        ));
+        return None;
+    }
+    Some(written_whole(value, "tube", shape::tube(at, d, t)))
 }
 
 /// `bar = { at = [x, y], b = 40, h = 60 }`: a rectangle, b along x and h along y, centred at `at`.
@@ -40,8 +63,7 @@ pub(super) fn bar(reader: &mut Reader, value: &Value<'_>) -> Option<(Outline, Ve
     let at = centre(reader, &fields, "a bar");
     let b = size(reader, &fields, "b", "the width `b`");
     let h = size(reader, &fields, "h", "the height `h`");
-    let made = shape::bar(at?, b?, h?);
-    shaped(reader, value, &fields, "bar", made)
+    Some(written_whole(value, "bar", shape::bar(at?, b?, h?)))
 }
 
 fn centre(reader: &mut Reader, fields: &Fields<'_>, what: &str) -> Option<Point> {
@@ -53,24 +75,6 @@ fn centre(reader: &mut Reader, fields: &Fields<'_>, what: &str) -> Option<Point>
 fn size(reader: &mut Reader, fields: &Fields<'_>, key: &str, what: &str) -> Option<f64> {
     let value = fields.need(reader, key, &format!("give {what}, as in {key} = 10"))?;
     reader.positive(value, what, Dimension::Length)
-}
-
-fn shaped(
-    reader: &mut Reader,
-    value: &Value<'_>,
-    fields: &Fields<'_>,
-    name: &str,
-    made: Result<Outline, Vec<ShapeFault>>,
-) -> Option<(Outline, Vec<RingText>)> {
-    match made {
-        Ok(outline) => Some(written_whole(value, name, outline)),
-        Err(faults) => {
-            for fault in faults {
-                reader.faults.push(shape_fault(&fault, value, fields));
-            }
-            None
-        }
-    }
 }
 
 /// The outline and, for each of its rings, that it is written in the whole of `value`.
@@ -87,37 +91,4 @@ pub(super) fn written_whole(
     let mut texts = vec![text("edge")];
     texts.extend(outline.holes.iter().map(|_| text("inside")));
     (outline, texts)
-}
-
-/// The fault that the makers of shapes found, at the key that it names.
-pub(super) fn shape_fault(fault: &ShapeFault, value: &Value<'_>, fields: &Fields<'_>) -> Fault {
-    let at = |key: &str| fields.get(key).map_or(span(value), span);
-    match *fault {
-        ShapeFault::NotFinite { name } => Fault::at(
-            at(name),
-            "not finite",
-            format!("`{name}` must be a finite number"),
-            "give a number such as 12.5",
-        ),
-        ShapeFault::NotPositive { name, .. } => Fault::at(
-            at(name),
-            "not positive",
-            format!("`{name}` must be greater than zero"),
-            "give a length such as 12.5",
-        ),
-        ShapeFault::NoLength => Fault::at(
-            at("from"),
-            "",
-            "the plate has no length: `from` and `to` are the same place",
-            "give the two ends of the plate's centre line",
-        )
-        .and(at("to"), ""),
-        ShapeFault::NoBore { given, limit } => Fault::at(
-            at("t"),
-            format!("must be less than {limit}"),
-            format!("a wall of {given} leaves nothing of the inside of this tube"),
-            "make the wall thinner than half the outer diameter; a solid round is outline = { circle \
-             = { at = [x, y], d = 100 } }",
-        ),
-    }
 }

@@ -1,13 +1,13 @@
 //! Faults as text for a reader.
 
 use std::fmt;
-use std::io::IsTerminal;
+use std::io::{IsTerminal, Write};
 use std::ops::Range;
 
 use miette::{Diagnostic, GraphicalReportHandler, GraphicalTheme, LabeledSpan, SourceCode};
 
 use super::excerpt::Excerpt;
-use super::fault::Fault;
+use super::fault::{Fault, Faults};
 
 /// Columns of a report when nobody asks for another width.
 pub const WIDTH: usize = 100;
@@ -34,6 +34,13 @@ impl Look {
             Self::Plain
         }
     }
+}
+
+/// Prints the report on standard error, in the look that suits it.
+pub fn print(faults: &Faults) {
+    let report = faults.render(Look::of_standard_error(), WIDTH);
+    // Nobody is left to tell if standard error is closed.
+    let _ = std::io::stderr().write_all(report.as_bytes());
 }
 
 /// The report of `faults`, ending in a line that counts them.
