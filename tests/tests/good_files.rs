@@ -156,3 +156,71 @@ fn other_spellings_of_toml_say_the_same() {
     assert_eq!(areas(&read), [24.0]);
     assert_eq!(read.section.materials[0].young, 210_000.0);
 }
+
+#[test]
+fn profiles_have_the_areas_that_their_dimensions_give() {
+    let read = read("profiles");
+    let corner = 1.0 - 0.25 * PI; // of a fillet of radius 1
+    let sloped = 200.0 * 8.0 + 2.0 * 72.0 * (12.0 - 0.08 * 4.0);
+    let expected = [
+        150.0 * 12.0 + 200.0 * 20.0 + 268.0 * 8.0 + 4.0 * corner * 225.0,
+        sloped,
+        sloped,
+        9.0 * (110.0 + 70.0 - 9.0) + corner * (100.0 - 2.0 * 16.0),
+        140.0 * 12.0 + 118.0 * 8.0 + 2.0 * corner * 100.0,
+        140.0 * 90.0 - 128.0 * 78.0 + 4.0 * corner * (25.0 - 121.0),
+        140.0 * 90.0 - 120.0 * 78.0,
+    ];
+    for ((piece, area), expected) in read.section.pieces.iter().zip(areas(&read)).zip(expected) {
+        // The slope as an angle is written to ten digits.
+        let digits = if piece.name.ends_with("angle") {
+            1e-9
+        } else {
+            1e-12
+        };
+        assert!(
+            (area / expected - 1.0).abs() < digits,
+            "{}: {area}, not {expected}",
+            piece.name
+        );
+    }
+    assert_eq!(read.domain.parts, 7);
+}
+
+#[test]
+fn a_piece_is_mirrored_then_turned_then_moved() {
+    let read = read("placed");
+    let has = |piece: usize, x: f64, y: f64| {
+        let sides = &read.section.pieces[piece].outline.outer.sides;
+        let at = Point::new(x, y);
+        assert!(
+            sides.iter().any(|side| side.from.distance(at) < 1e-12),
+            "no {at:?} in {sides:?}"
+        );
+    };
+    // Ends of the legs and the inner corner.
+    has(0, 70.0, 0.0);
+    has(0, 0.0, 110.0);
+    has(0, 9.0, 9.0);
+    // (x, y) → (x, −y) → (y, x) → (100 + y, x).
+    has(1, 100.0, 70.0);
+    has(1, 210.0, 0.0);
+    has(1, 109.0, 9.0);
+    has(2, -320.0, 40.0);
+    let nose = &read.section.pieces[2].outline;
+    assert!(
+        close(outline_area(nose), area_of_nose() - 9.0 * PI),
+        "{}",
+        outline_area(nose)
+    );
+    let hole = nose.holes[0].sides[0].arc.expect("a hole is a circle");
+    assert!(hole.circle.centre.distance(Point::new(-310.0, 10.0)) < 1e-12);
+    let (sin, cos) = 0.5_f64.sin_cos();
+    has(3, 10.0 * cos - 5.0 * sin, 300.0 + 10.0 * sin + 5.0 * cos);
+}
+
+/// 20 × 40 and a segment of height 10 on a chord of 40: radius 25, half angle asin(4/5).
+fn area_of_nose() -> f64 {
+    let angle = 2.0 * 0.8_f64.asin();
+    800.0 + 0.5 * 625.0 * (angle - angle.sin())
+}

@@ -33,15 +33,20 @@ impl<'a> Sources<'a> {
     pub(super) fn fault(self, found: &Found) -> Fault {
         match *found {
             Found::NotSimple { piece, ref reason } => Fault::at(
-                self.outline(piece),
-                "",
+                self.head(piece),
+                "this piece",
                 format!(
                     "piece \"{}\" is not one simple region: {reason}",
                     self.name(piece)
                 ),
-                "check its corners; an outline is one closed line that nowhere meets itself",
+                "check its corners; every loop is one closed line that nowhere meets itself",
             ),
             Found::SelfCrossing { a, b, at } => {
+                let (a, b) = if self.corner(b) < self.corner(a) {
+                    (b, a)
+                } else {
+                    (a, b)
+                };
                 let message = format!(
                     "two sides of {} of piece \"{}\" meet at {}: {} and {}",
                     self.ring_name(a),
@@ -112,7 +117,7 @@ impl<'a> Sources<'a> {
                 self.outline(piece),
                 "no area inside",
                 format!("piece \"{}\" encloses no area", self.name(piece)),
-                "check the corners: they lie in line, or nearly so",
+                "check the corners: they lie in line, or the outline crosses itself and its parts cancel",
             ),
         }
     }
