@@ -1,5 +1,12 @@
-//! The starter files that `sectile new` writes: one a form, commented, with invented figures.
+//! `new`: commented starter files, one a form, with invented figures.
 
+use std::fs::OpenOptions;
+use std::io::{ErrorKind, Write, stderr, stdout};
+use std::path::PathBuf;
+
+use clap::Args;
+
+use super::Outcome;
 use crate::read::near::{listed, nearest};
 
 /// The forms, the one that is written when none is asked for first.
@@ -42,6 +49,52 @@ pub fn starter(form: &str) -> Result<String, UnknownForm> {
         }
     };
     Ok(text.to_owned())
+}
+
+/// Options of `new`.
+#[derive(Args, Clone, Debug)]
+#[command(after_help = "Examples:\n  \
+    sectile new                        an outline of corners, arcs and a hole, to standard output\n  \
+    sectile new I --out beam.section.toml")]
+pub struct NewArgs {
+    /// The form to start from: outline, I, channel, angle, tee, box, plates or tube.
+    #[arg(default_value = "outline", value_name = "FORM")]
+    pub form: String,
+    /// Write to this file, which must not exist yet, instead of standard output.
+    #[arg(long, value_name = "FILE")]
+    pub out: Option<PathBuf>,
+}
+
+/// Runs the command.
+#[must_use]
+pub fn run(args: &NewArgs) -> Outcome {
+    let text = match starter(&args.form) {
+        Ok(text) => text,
+        Err(unknown) => return refuse(&unknown.to_string()),
+    };
+    let Some(path) = &args.out else {
+        // A reader that closed the pipe has all that it wants.
+        let _ = stdout().write_all(text.as_bytes());
+        return Outcome::Answered;
+    };
+    let written = OpenOptions::new()
+        .write(true)
+        .create_new(true)
+        .open(path)
+        .and_then(|mut file| file.write_all(text.as_bytes()));
+    match written {
+        Ok(()) => Outcome::Answered,
+        Err(error) if error.kind() == ErrorKind::AlreadyExists => refuse(&format!(
+            "{} exists already; name another file or remove it first",
+            path.display()
+        )),
+        Err(error) => refuse(&format!("{} could not be written: {error}", path.display())),
+    }
+}
+
+fn refuse(message: &str) -> Outcome {
+    let _ = writeln!(stderr(), "{message}");
+    Outcome::NoAnswer
 }
 
 #[cfg(test)]
