@@ -5,19 +5,25 @@ use crate::mesh::Mesh;
 
 /// Bisects until every triangle at vertex `v` of a target `(v, size)` has no side longer than `size`.
 ///
+/// Sizes below what the coordinates resolve, a thousand roundings of the largest, are taken as that.
+///
 /// Each pass halves the triangles at the vertex and, for conformity, their surroundings, so sizes grow
 /// in proportion to the distance from it: about a dozen triangles for each halving.
 #[must_use]
 pub fn grade_to(mesh: &Mesh, targets: &[(u32, f64)]) -> Mesh {
+    let largest = mesh
+        .vertices
+        .iter()
+        .fold(0.0_f64, |m, p| m.max(p.x.abs()).max(p.y.abs()));
+    let least = 1e3 * f64::EPSILON * largest;
     let mut limit = vec![f64::INFINITY; mesh.vertices.len()];
     for &(v, size) in targets {
         if let Some(l) = limit.get_mut(v as usize) {
-            *l = l.min(size);
+            *l = l.min(size.max(least));
         }
     }
     let mut graded = mesh.clone();
-    // Each pass halves some area; a size of nothing at all must not keep it going for ever.
-    for _ in 0..200 {
+    loop {
         let marked: Vec<bool> = graded
             .triangles
             .iter()
@@ -30,11 +36,10 @@ pub fn grade_to(mesh: &Mesh, targets: &[(u32, f64)]) -> Mesh {
             })
             .collect();
         if !marked.contains(&true) {
-            break;
+            return graded;
         }
         graded = bisect(&graded, &marked).mesh;
     }
-    graded
 }
 
 fn longest_side(mesh: &Mesh, t: &[u32; 3]) -> f64 {

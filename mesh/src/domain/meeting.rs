@@ -50,16 +50,12 @@ impl Meeting {
         let at = *self.at.iter().find(|c| {
             a.ring != b.ring || common.iter().all(|e| e.distance(**c) > 4.0 * tolerance)
         })?;
+        let (a, b) = (a.min(b), a.max(b));
         Some(match (a.ring, b.ring) {
             (r, s) if r == s => Fault::SelfCrossing { a, b, at },
             (0, _) => Fault::HoleCrossesEdge {
                 hole: b,
                 edge: a,
-                at,
-            },
-            (_, 0) => Fault::HoleCrossesEdge {
-                hole: a,
-                edge: b,
                 at,
             },
             _ => Fault::HolesMeet { a, b, at },

@@ -7,6 +7,7 @@ use spade::{
 };
 
 use super::chain::Chains;
+use super::ladder::Ladder;
 use super::{MeshError, Sizing};
 use crate::domain::Domain;
 use crate::point::Point;
@@ -52,8 +53,6 @@ struct EdgePart {
     to: usize,
     /// `(side, part)` if it must be divided alike elsewhere or on a curve.
     tied: Option<(usize, usize)>,
-    /// The sharp corner that it cuts off.
-    apex: Option<u32>,
 }
 
 /// Triangulates one piece. With `force` the tied parts are left undivided, whatever the shape of the
@@ -66,7 +65,13 @@ pub fn triangulate_piece(
     force: bool,
 ) -> Result<PieceMesh, MeshError> {
     let name = || domain.piece_names[piece as usize].clone();
-    let (mut shared, parts) = edge_parts(domain, chains, piece);
+    let ladders: Vec<Ladder> = chains
+        .sharp
+        .iter()
+        .filter(|corner| corner.pieces.contains(&piece))
+        .map(|corner| Ladder::new(domain, chains, corner, piece))
+        .collect();
+    let (mut shared, parts) = edge_parts(domain, chains, piece, &ladders);
     let position = |v: u32| {
         let v = v as usize;
         let n = domain.points.len();
@@ -126,25 +131,38 @@ pub fn triangulate_piece(
         .filter(|f| inside[f.fix().index()])
         .map(|f| f.vertices().map(|v| v.fix().index() as u32))
         .collect();
-    // The corners that were cut off follow the other shared vertices.
-    let known = shared.len() as u32;
-    let apexes: Vec<u32> = parts.iter().filter_map(|p| p.apex).collect();
+    // What ladders have beyond their last rung follows the other shared vertices.
+    let known = shared.len();
+    let mut inner: Vec<u32> = ladders.iter().flat_map(Ladder::inner).collect();
+    inner.sort_unstable();
+    inner.dedup();
     let moved = |v: u32| {
-        if v < known {
+        if (v as usize) < known {
             v
         } else {
-            v + apexes.len() as u32
+            v + inner.len() as u32
         }
     };
     for t in &mut triangles {
         *t = t.map(moved);
     }
-    for (i, part) in parts.iter().filter(|p| p.apex.is_some()).enumerate() {
-        for (a, b) in walk(&cdt, part.from, part.to) {
-            triangles.push([moved(a as u32), known + i as u32, moved(b as u32)]);
-        }
+    let own = |v: u32| match inner.binary_search(&v) {
+        Ok(i) => (known + i) as u32,
+        Err(_) => shared.partition_point(|&s| s < v) as u32,
+    };
+    for (ladder, part) in ladders.iter().zip(&parts[parts.len() - ladders.len()..]) {
+        let ladder = Ladder {
+            arriving: ladder.arriving.iter().map(|&v| own(v)).collect(),
+            leaving: ladder.leaving.iter().map(|&v| own(v)).collect(),
+        };
+        let steps = walk(&cdt, part.from, part.to);
+        let rung: Vec<u32> = std::iter::once(part.from)
+            .chain(steps.iter().map(|s| s.1))
+            .map(|v| moved(v as u32))
+            .collect();
+        triangles.extend(ladder.triangles(&rung));
     }
-    shared.extend(apexes);
+    shared.extend(inner);
     Ok(PieceMesh {
         shared,
         added,
@@ -153,83 +171,46 @@ pub fn triangulate_piece(
     })
 }
 
-/// The piece's vertices and the parts of its edge.
-fn edge_parts(domain: &Domain, chains: &Chains, piece: u32) -> (Vec<u32>, Vec<EdgePart>) {
-    let mut runs = Vec::new();
+/// The piece's vertices and the parts of its edge; last the outer rungs of `ladders` in order.
+fn edge_parts(
+    domain: &Domain,
+    chains: &Chains,
+    piece: u32,
+    ladders: &[Ladder],
+) -> (Vec<u32>, Vec<EdgePart>) {
+    let mut runs: Vec<(u32, u32, Option<(usize, usize)>)> = Vec::new();
     for (s, side) in domain.sides.iter().enumerate() {
         let (left, right) = (side.left == Some(piece), side.right == Some(piece));
         if left == right {
             continue;
         }
         let tied = side.arc.is_some() || (side.left.is_some() && side.right.is_some());
-        for (k, w) in chains.vertices_of(domain, s).windows(2).enumerate() {
-            let (from, to) = if left { (w[0], w[1]) } else { (w[1], w[0]) };
-            runs.push(Run {
-                from,
-                to,
-                tied: tied.then_some((s, k)),
-                apex: None,
-            });
+        let vertices = chains.vertices_of(domain, s);
+        let [start, end] = chains.cut_off(s, piece);
+        for k in start..vertices.len() - 1 - end {
+            let (a, b) = (vertices[k], vertices[k + 1]);
+            let (from, to) = if left { (a, b) } else { (b, a) };
+            runs.push((from, to, tied.then_some((s, k))));
         }
     }
-    let runs = cut_off(runs, chains, piece);
-    let mut shared: Vec<u32> = runs.iter().flat_map(|r| [r.from, r.to]).collect();
+    for ladder in ladders {
+        if let (Some(&from), Some(&to)) = (ladder.arriving.last(), ladder.leaving.last()) {
+            runs.push((from, to, None));
+        }
+    }
+    let mut shared: Vec<u32> = runs.iter().flat_map(|r| [r.0, r.1]).collect();
     shared.sort_unstable();
     shared.dedup();
     let local = |v: u32| shared.partition_point(|&s| s < v);
     let parts = runs
         .iter()
-        .map(|r| EdgePart {
-            from: local(r.from),
-            to: local(r.to),
-            tied: r.tied,
-            apex: r.apex,
+        .map(|&(from, to, tied)| EdgePart {
+            from: local(from),
+            to: local(to),
+            tied,
         })
         .collect();
     (shared, parts)
-}
-
-/// A part of the piece's edge by vertex numbers of domain and chains.
-struct Run {
-    from: u32,
-    to: u32,
-    tied: Option<(usize, usize)>,
-    apex: Option<u32>,
-}
-
-/// Replaces the two runs at each sharp corner of the piece by the one that cuts it off.
-fn cut_off(runs: Vec<Run>, chains: &Chains, piece: u32) -> Vec<Run> {
-    let sharp: Vec<u32> = chains
-        .sharp
-        .iter()
-        .filter(|s| s.pieces.contains(&piece))
-        .map(|s| s.point)
-        .collect();
-    if sharp.is_empty() {
-        return runs;
-    }
-    let is_sharp = |v: u32| sharp.binary_search(&v).is_ok();
-    let mut arrives = vec![0; sharp.len()];
-    let mut leaves = vec![0; sharp.len()];
-    let mut kept = Vec::new();
-    for run in runs {
-        if let Ok(i) = sharp.binary_search(&run.to) {
-            arrives[i] = run.from;
-        }
-        if let Ok(i) = sharp.binary_search(&run.from) {
-            leaves[i] = run.to;
-        }
-        if !is_sharp(run.from) && !is_sharp(run.to) {
-            kept.push(run);
-        }
-    }
-    kept.extend((0..sharp.len()).map(|i| Run {
-        from: arrives[i],
-        to: leaves[i],
-        tied: None,
-        apex: Some(sharp[i]),
-    }));
-    kept
 }
 
 /// Which faces lie in the piece: those to the left of its edge, and all that can be reached from them

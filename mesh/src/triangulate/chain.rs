@@ -32,8 +32,8 @@ impl Chains {
     ///
     /// # Errors
     /// [`MeshError::TooClose`] at a cusp.
-    pub fn new(domain: &Domain) -> Result<Self, MeshError> {
-        let sharp = sharp_corners(domain)?;
+    pub fn new(domain: &Domain, max_area: Option<f64>) -> Result<Self, MeshError> {
+        let sharp = sharp_corners(domain, max_area)?;
         let mut sharp_ends = vec![[None; 2]; domain.sides.len()];
         for (i, corner) in sharp.iter().enumerate() {
             for &(s, starts) in &corner.ends {
@@ -86,32 +86,61 @@ impl Chains {
         out
     }
 
-    /// Halves the parts `(side, part)`; says which pieces are touched. The sides of a sharp corner stay
-    /// cut at one distance: where one is halved all are.
+    /// The numbers of parts at start and end of a side that lie in sharp corners of `piece`.
+    #[must_use]
+    pub fn cut_off(&self, side: usize, piece: u32) -> [usize; 2] {
+        self.sharp_ends[side].map(|corner| match corner {
+            Some(i) if self.sharp[i as usize].pieces.contains(&piece) => {
+                self.sharp[i as usize].steps
+            }
+            _ => 0,
+        })
+    }
+
+    /// Halves the parts `(side, part)`; says which pieces are touched. Sides of a sharp corner stay
+    /// divided alike: where one of their parts is halved all are.
     #[must_use]
     pub fn split(&mut self, domain: &Domain, parts: &[(usize, usize)]) -> Vec<bool> {
-        let mut all = parts.to_vec();
+        let mut all = Vec::new();
+        let mut steps: Vec<(u32, usize)> = Vec::new();
         for &(s, k) in parts {
-            let last = self.inside[s].len();
-            for (corner, is_end) in self.sharp_ends[s].iter().zip([k == 0, k == last]) {
-                let Some(corner) = corner.filter(|_| is_end) else {
-                    continue;
-                };
-                for &(s, starts) in &self.sharp[corner as usize].ends {
-                    all.push((s, if starts { 0 } else { self.inside[s].len() }));
+            let from_end = self.inside[s].len() - k;
+            let before = steps.len();
+            for (corner, step) in self.sharp_ends[s].iter().zip([k, from_end]) {
+                if let Some(i) = corner.filter(|&i| step < self.sharp[i as usize].steps) {
+                    steps.push((i, step));
                 }
             }
+            if steps.len() == before {
+                all.push((s, k));
+            }
+        }
+        steps.sort_unstable();
+        steps.dedup();
+        for (i, step) in steps {
+            let corner = &mut self.sharp[i as usize];
+            corner.steps += 1;
+            all.extend(corner.ends.iter().map(|&(s, starts)| {
+                let last = self.inside[s].len();
+                (s, if starts { step } else { last - step })
+            }));
         }
         all.sort_unstable();
         all.dedup();
         let mut touched = vec![false; domain.piece_names.len()];
-        for &(s, k) in all.iter().rev() {
+        for parts in all.chunk_by(|a, b| a.0 == b.0) {
+            let s = parts[0].0;
             let side = &domain.sides[s];
-            let parameters: Vec<f64> = self.inside[s].iter().map(|p| p.0).collect();
-            let t = middle(&parameters, k);
-            let index = self.points.len() as u32;
-            self.points.push(side.at(&domain.points, t));
-            self.inside[s].insert(k, (t, index));
+            let old = std::mem::take(&mut self.inside[s]);
+            let parameters: Vec<f64> = old.iter().map(|p| p.0).collect();
+            let mut new = old;
+            for &(_, k) in parts {
+                let t = middle(&parameters, k);
+                new.push((t, self.points.len() as u32));
+                self.points.push(side.at(&domain.points, t));
+            }
+            new.sort_by(|a, b| a.0.total_cmp(&b.0));
+            self.inside[s] = new;
             for piece in [side.left, side.right].into_iter().flatten() {
                 touched[piece as usize] = true;
             }

@@ -3,6 +3,7 @@
 mod cdt;
 mod chain;
 mod crowd;
+mod ladder;
 mod sharp;
 
 use std::collections::BTreeMap;
@@ -83,7 +84,7 @@ const ROUNDS: usize = 24;
 /// # Errors
 /// See [`MeshError`].
 pub fn triangulate(domain: &Domain, sizing: &Sizing) -> Result<Mesh, MeshError> {
-    let mut chains = Chains::new(domain)?;
+    let mut chains = Chains::new(domain, sizing.max_area)?;
     let pieces = domain.piece_names.len();
     let mut made: Vec<Option<cdt::PieceMesh>> = vec![None; pieces];
     let mut round = 0;

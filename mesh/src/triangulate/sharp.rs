@@ -2,8 +2,8 @@
 //!
 //! Between two sides that meet at a small angle every division of one asks for one of the other, and
 //! where a neighbour shares a side it is asked too, without end. So all sides of such a corner are cut
-//! at one distance from it, and the triangle between the corner and the two cuts is set apart: what is
-//! left to refine has an obtuse angle at either cut.
+//! at one distance from it, and the triangle between the corner and the two cuts is set apart (see
+//! [`super::ladder`]): what is left to refine has an obtuse angle at either cut.
 
 use super::MeshError;
 use crate::domain::Domain;
@@ -26,13 +26,16 @@ pub struct Sharp {
     pub ends: Vec<(usize, bool)>,
     /// Where those sides are cut: distance from the point.
     pub distance: f64,
+    /// Parts of each of those sides between the point and the cut.
+    pub steps: usize,
 }
 
-/// The sharp corners of a domain, in the order of its points.
+/// The sharp corners of a domain, in the order of its points. The triangles that are set apart are no
+/// larger than `max_area`.
 ///
 /// # Errors
 /// [`MeshError::TooClose`] at a cusp.
-pub fn sharp_corners(domain: &Domain) -> Result<Vec<Sharp>, MeshError> {
+pub fn sharp_corners(domain: &Domain, max_area: Option<f64>) -> Result<Vec<Sharp>, MeshError> {
     let mut list = Vec::new();
     for (v, fan) in fans(domain).into_iter().enumerate() {
         let mut least = SHARP;
@@ -41,6 +44,7 @@ pub fn sharp_corners(domain: &Domain) -> Result<Vec<Sharp>, MeshError> {
             pieces: Vec::new(),
             ends: Vec::new(),
             distance: f64::INFINITY,
+            steps: 1,
         };
         for (k, a) in fan.iter().enumerate() {
             let b = &fan[(k + 1) % fan.len()];
@@ -55,6 +59,10 @@ pub fn sharp_corners(domain: &Domain) -> Result<Vec<Sharp>, MeshError> {
                 });
             }
             least = least.min(angle);
+            if let Some(area) = max_area {
+                let most = (2.0 * area / angle.sin()).sqrt();
+                sharp.distance = sharp.distance.min(most);
+            }
             sharp.pieces.push(piece);
             sharp.ends.extend([(a.side, a.starts), (b.side, b.starts)]);
         }
