@@ -210,7 +210,7 @@ mod tests {
     fn a_long_line_is_windowed_and_keeps_its_column() {
         let text = format!("a = 1\nb = {}X{}\n", "é".repeat(5000), "z".repeat(5000));
         let at = text.find('X').expect("there is an X");
-        let (excerpt, marks) = Excerpt::new("f", &text, &[at..at + 1]);
+        let (excerpt, marks) = Excerpt::new("f", &text, std::slice::from_ref(&(at..at + 1)));
         assert_eq!(&excerpt.text[marks[0].clone()], "X");
         assert!(excerpt.text.chars().count() < 100);
         let contents = excerpt

@@ -6,6 +6,7 @@ use sectile_mesh::Point;
 use toml_span::Value;
 use toml_span::value::{Table, ValueInner};
 
+use super::excerpt::hidden;
 use super::fault::Fault;
 use super::near::{listed, nearest};
 use super::quantity::{Dimension, Unit, quantity};
@@ -191,6 +192,21 @@ impl Reader {
             self.wrong_type(value, what, "a text in quotation marks");
         }
         text
+    }
+
+    /// A text that fits in a table or a title: one line, nothing in it that a terminal would obey.
+    pub(super) fn line<'t>(&mut self, value: &'t Value<'_>, what: &str) -> Option<&'t str> {
+        let text = self.text(value, what)?;
+        if !text.chars().any(hidden) {
+            return Some(text);
+        }
+        self.faults.push(Fault::at(
+            span(value),
+            "",
+            format!("{what} must be one line of printable text"),
+            "remove line breaks and control characters",
+        ));
+        None
     }
 
     /// One of `known`, which is returned itself.

@@ -4,6 +4,7 @@ use std::fs::File;
 use std::io::Read;
 use std::path::Path;
 
+use super::excerpt::hidden;
 use super::fault::{Fault, Faults};
 use super::{ReadSection, section_from_text};
 
@@ -16,7 +17,12 @@ pub const LARGEST_FILE: u64 = 16 << 20;
 /// Every fault found: of the file itself (missing, a folder, empty, too large, not UTF-8), of its
 /// TOML, its entries or its geometry.
 pub fn section_from_path(path: &Path) -> Result<ReadSection, Box<Faults>> {
-    let name = path.display().to_string();
+    let name: String = path
+        .display()
+        .to_string()
+        .chars()
+        .map(|c| if hidden(c) { '·' } else { c })
+        .collect();
     let text = text_of(path, &name)?;
     section_from_text(&name, &text)
 }

@@ -3,6 +3,7 @@
 use sectile_solver::material::Material;
 use toml_span::Value;
 
+use super::excerpt::hidden;
 use super::fault::Fault;
 use super::fields::{Fields, Reader, span};
 use super::quantity::Dimension;
@@ -46,6 +47,16 @@ pub(super) fn read_all(reader: &mut Reader, value: &Value<'_>) -> Vec<Material> 
             "head the table [material.steel], with a name of your choice after the dot",
         ));
         return Vec::new();
+    }
+    for (key, _) in &entries {
+        if key.name.chars().any(hidden) {
+            reader.faults.push(Fault::at(
+                key.span.into(),
+                "",
+                "the name of a material must be one line of printable text",
+                "remove line breaks and control characters",
+            ));
+        }
     }
     entries
         .into_iter()

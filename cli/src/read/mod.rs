@@ -84,7 +84,7 @@ fn read(reader: &mut Reader, name: &str, value: &toml_span::Value<'_>) -> Option
     let sure_of_units = reader.faults.len() == faults;
     let title = fields
         .get("title")
-        .and_then(|value| reader.text(value, "the title"))
+        .and_then(|value| reader.line(value, "the title"))
         .map_or_else(|| stem(name), str::to_owned);
     let materials = fields
         .get("material")

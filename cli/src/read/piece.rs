@@ -92,7 +92,7 @@ fn name(
     names: &mut BTreeMap<String, Range<usize>>,
 ) -> (String, Range<usize>) {
     let written = fields.get("name").and_then(|value| {
-        let text = reader.text(value, "the name of a piece")?;
+        let text = reader.line(value, "the name of a piece")?;
         if text.trim().is_empty() {
             reader.faults.push(Fault::at(
                 span(value),

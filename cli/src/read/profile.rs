@@ -155,11 +155,11 @@ fn profile_fault(fault: &ProfileFault, value: &Value<'_>, fields: &Fields<'_>) -
     let range = key.map_or(span(value), span);
     let radius = fault.key == "r" || fault.key == "r2";
     match fault.limit {
-        Some(limit) if radius && limit <= 0.0 => Fault::at(
+        Some(limit) if limit <= 0.0 => Fault::at(
             range,
-            "no radius fits",
+            "nothing fits",
             fault.message.clone(),
-            "the other dimensions leave no room here: reduce those, or leave the radius out",
+            "the other dimensions leave no room here: change those",
         ),
         Some(limit) if radius => Fault::at(
             range,

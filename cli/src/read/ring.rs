@@ -257,15 +257,41 @@ fn corner_fault(
     }
 }
 
-/// A positive number to six digits, never rounded up.
+/// A number to six digits, never rounded up.
 pub(super) fn at_most(value: f64) -> String {
-    let digits = 5 - value.log10().floor() as i32;
-    let scale = 10_f64.powi(digits.clamp(-15, 300));
+    if !value.is_normal() {
+        return format!("{value}");
+    }
+    let digits = 5 - value.abs().log10().floor() as i32;
+    let scale = 10_f64.powi(digits.clamp(-300, 300));
     // A value that is its own short decimal, such as 2.3, must not lose a unit to binary rounding.
     let near = (value * scale).round() / scale;
-    if near <= value {
-        format!("{near}")
+    let short = if near <= value {
+        near
     } else {
-        format!("{}", (value * scale).floor() / scale)
+        (value * scale).floor() / scale
+    };
+    format!("{short}")
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn limits_are_cut_to_six_digits_and_never_exceeded() {
+        for (value, shown) in [
+            (2.3, "2.3"),
+            (71.45, "71.45"),
+            (1.0 / 3.0, "0.333333"),
+            (2.0 / 3.0, "0.666666"),
+            (199_999.96, "199999"),
+            (1e-7 / 3.0, "0.0000000333333"),
+            (0.0, "0"),
+            (-2.0 / 3.0, "-0.666667"),
+        ] {
+            assert_eq!(at_most(value), shown);
+            assert!(shown.parse::<f64>().is_ok_and(|shown| shown <= value));
+        }
     }
 }
