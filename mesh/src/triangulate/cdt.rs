@@ -2,8 +2,8 @@
 
 use spade::handles::FixedVertexHandle;
 use spade::{
-    AngleLimit, ConstrainedDelaunayTriangulation, HasPosition, Point2, RefinementParameters,
-    Triangulation,
+    AngleLimit, ConstrainedDelaunayTriangulation, HasPosition, InsertionError, Point2,
+    RefinementParameters, Triangulation,
 };
 
 use super::chain::Chains;
@@ -11,6 +11,7 @@ use super::ladder::Ladder;
 use super::{MeshError, Sizing};
 use crate::domain::Domain;
 use crate::point::Point;
+use crate::tree::{EMPTY, hull};
 
 /// Least angle of the triangles, where the outline allows it.
 const LEAST_ANGLE: f64 = 25.0;
@@ -29,19 +30,27 @@ pub struct PieceMesh {
     pub wanted_splits: Vec<(usize, usize)>,
 }
 
+/// A vertex of the triangulation; loading shuffles those that are given.
 #[derive(Clone, Copy, Debug)]
-struct Vertex(Point2<f64>);
+struct Vertex {
+    position: Point2<f64>,
+    /// Its number among those that are given.
+    given: Option<u32>,
+}
 
 impl HasPosition for Vertex {
     type Scalar = f64;
     fn position(&self) -> Point2<f64> {
-        self.0
+        self.position
     }
 }
 
 impl From<Point2<f64>> for Vertex {
-    fn from(p: Point2<f64>) -> Self {
-        Self(p)
+    fn from(position: Point2<f64>) -> Self {
+        Self {
+            position,
+            given: None,
+        }
     }
 }
 
@@ -71,7 +80,7 @@ pub fn triangulate_piece(
         .filter(|corner| corner.pieces.contains(&piece))
         .map(|corner| Ladder::new(domain, chains, corner, piece))
         .collect();
-    let (mut shared, parts) = edge_parts(domain, chains, piece, &ladders);
+    let (mut shared, mut parts) = edge_parts(domain, chains, piece, &ladders);
     let position = |v: u32| {
         let v = v as usize;
         let n = domain.points.len();
@@ -81,27 +90,32 @@ pub fn triangulate_piece(
             chains.points[v - n]
         }
     };
-    let points: Vec<Vertex> = shared
-        .iter()
-        .map(|&v| {
-            let p = position(v);
-            Vertex(Point2::new(p.x, p.y))
-        })
-        .collect();
-    let edges: Vec<[usize; 2]> = parts.iter().map(|p| [p.from, p.to]).collect();
-    let mut conflict = None;
-    let mut cdt = Cdt::try_bulk_load_cdt(points, edges, |e| conflict = Some(e)).map_err(|e| {
-        MeshError::Coordinate {
-            piece: name(),
-            reason: e.to_string(),
-        }
+    let positions: Vec<Point> = shared.iter().map(|&v| position(v)).collect();
+    let known = positions.len();
+    let too_close = |at: usize| MeshError::TooClose {
+        piece: name(),
+        at: positions[at.min(known - 1)],
+    };
+    let mut cdt = load(&positions).map_err(|e| MeshError::Coordinate {
+        piece: name(),
+        reason: e.to_string(),
     })?;
-    if conflict.is_some() || cdt.num_vertices() != shared.len() {
-        let at = conflict.map_or(0, |e| e[0]);
-        return Err(MeshError::TooClose {
-            piece: name(),
-            at: position(shared[at.min(shared.len() - 1)]),
-        });
+    let given = known + FRAME;
+    if cdt.num_vertices() != given {
+        return Err(too_close(0));
+    }
+    let mut handles = vec![FixedVertexHandle::from_index(0); given];
+    for v in cdt.vertices() {
+        if let Some(i) = v.data().given {
+            handles[i as usize] = v.fix();
+        }
+    }
+    for part in &mut parts {
+        let ends = [part.from, part.to].map(|v| handles[v]);
+        if cdt.try_add_constraint(ends[0], ends[1]).is_empty() {
+            return Err(too_close(part.from));
+        }
+        [part.from, part.to] = ends.map(|v| v.index());
     }
     let mut parameters = RefinementParameters::<f64>::new()
         .with_angle_limit(AngleLimit::from_deg(LEAST_ANGLE))
@@ -123,29 +137,23 @@ pub fn triangulate_piece(
     let (inside, wanted_splits) = classify(&cdt, &parts);
     let added = cdt
         .vertices()
-        .skip(shared.len())
+        .skip(given)
         .map(|v| Point::new(v.position().x, v.position().y))
         .collect();
-    let mut triangles: Vec<[u32; 3]> = cdt
-        .inner_faces()
-        .filter(|f| inside[f.fix().index()])
-        .map(|f| f.vertices().map(|v| v.fix().index() as u32))
-        .collect();
-    // What ladders have beyond their last rung follows the other shared vertices.
-    let known = shared.len();
+    // What ladders have beyond their last rung follows the other shared vertices, then what is added.
     let mut inner: Vec<u32> = ladders.iter().flat_map(Ladder::inner).collect();
     inner.sort_unstable();
     inner.dedup();
-    let moved = |v: u32| {
-        if (v as usize) < known {
-            v
-        } else {
-            v + inner.len() as u32
-        }
+    let number = |v: FixedVertexHandle| {
+        let beyond = v.index() - given.min(v.index());
+        let added = known + inner.len() + beyond;
+        cdt.vertex(v).data().given.unwrap_or(added as u32)
     };
-    for t in &mut triangles {
-        *t = t.map(moved);
-    }
+    let mut triangles: Vec<[u32; 3]> = cdt
+        .inner_faces()
+        .filter(|f| inside[f.fix().index()])
+        .map(|f| f.vertices().map(|v| number(v.fix())))
+        .collect();
     let own = |v: u32| match inner.binary_search(&v) {
         Ok(i) => (known + i) as u32,
         Err(_) => shared.partition_point(|&s| s < v) as u32,
@@ -158,7 +166,7 @@ pub fn triangulate_piece(
         let steps = walk(&cdt, part.from, part.to);
         let rung: Vec<u32> = std::iter::once(part.from)
             .chain(steps.iter().map(|s| s.1))
-            .map(|v| moved(v as u32))
+            .map(|v| number(FixedVertexHandle::from_index(v)))
             .collect();
         triangles.extend(ladder.triangles(&rung));
     }
@@ -171,6 +179,42 @@ pub fn triangulate_piece(
     })
 }
 
+/// The Delaunay triangulation of `positions` within a [`frame`]. Constraints are added afterwards one by
+/// one: spade's loading of both at once walks through hash sets, in another order in each run.
+fn load(positions: &[Point]) -> Result<Cdt, InsertionError> {
+    let vertices = positions
+        .iter()
+        .chain(&frame(positions))
+        .enumerate()
+        .map(|(i, p)| Vertex {
+            position: Point2::new(p.x, p.y),
+            given: Some(i as u32),
+        })
+        .collect();
+    Cdt::bulk_load(vertices)
+}
+
+/// Number of points of the [`frame`].
+const FRAME: usize = 4;
+
+/// Four points around a piece, well away from it. Without them the hull would run along the piece's
+/// own sides, and where a divided side is straight but for rounding, its outside would be slivers that
+/// keep spade from dividing it further.
+fn frame(points: &[Point]) -> [Point; FRAME] {
+    let around = points
+        .iter()
+        .fold(EMPTY, |m, p| hull(m, [p.x, p.x, p.y, p.y]));
+    let margin = (around[1] - around[0]).max(around[3] - around[2]);
+    let (l, r) = (around[0] - margin, around[1] + margin);
+    let (b, t) = (around[2] - margin, around[3] + margin);
+    [
+        Point::new(l, b),
+        Point::new(r, b),
+        Point::new(r, t),
+        Point::new(l, t),
+    ]
+}
+
 /// The piece's vertices and the parts of its edge; last the outer rungs of `ladders` in order.
 fn edge_parts(
     domain: &Domain,
@@ -178,7 +222,7 @@ fn edge_parts(
     piece: u32,
     ladders: &[Ladder],
 ) -> (Vec<u32>, Vec<EdgePart>) {
-    let mut runs: Vec<(u32, u32, Option<(usize, usize)>)> = Vec::new();
+    let mut parts: Vec<EdgePart> = Vec::new();
     for (s, side) in domain.sides.iter().enumerate() {
         let (left, right) = (side.left == Some(piece), side.right == Some(piece));
         if left == right {
@@ -190,26 +234,33 @@ fn edge_parts(
         for k in start..vertices.len() - 1 - end {
             let (a, b) = (vertices[k], vertices[k + 1]);
             let (from, to) = if left { (a, b) } else { (b, a) };
-            runs.push((from, to, tied.then_some((s, k))));
+            parts.push(EdgePart {
+                from: from as usize,
+                to: to as usize,
+                tied: tied.then_some((s, k)),
+            });
         }
     }
     for ladder in ladders {
         if let (Some(&from), Some(&to)) = (ladder.arriving.last(), ladder.leaving.last()) {
-            runs.push((from, to, None));
+            parts.push(EdgePart {
+                from: from as usize,
+                to: to as usize,
+                tied: None,
+            });
         }
     }
-    let mut shared: Vec<u32> = runs.iter().flat_map(|r| [r.0, r.1]).collect();
+    let mut shared: Vec<u32> = parts
+        .iter()
+        .flat_map(|p| [p.from as u32, p.to as u32])
+        .collect();
     shared.sort_unstable();
     shared.dedup();
-    let local = |v: u32| shared.partition_point(|&s| s < v);
-    let parts = runs
-        .iter()
-        .map(|&(from, to, tied)| EdgePart {
-            from: local(from),
-            to: local(to),
-            tied,
-        })
-        .collect();
+    for part in &mut parts {
+        for end in [&mut part.from, &mut part.to] {
+            *end = shared.partition_point(|&s| (s as usize) < *end);
+        }
+    }
     (shared, parts)
 }
 

@@ -1,0 +1,140 @@
+//! Sections by chance.
+
+use proptest::prelude::*;
+
+use sectile_mesh::Vector;
+use sectile_mesh::domain::build;
+use sectile_mesh::outline::corner::{Corner, ring_from_corners};
+use sectile_mesh::outline::piece::{Outline, Piece, Ring};
+use sectile_mesh::outline::shape::circle;
+use sectile_mesh::outline::side::{Arc, Circle, Side};
+use sectile_mesh::triangulate::{Sizing, triangulate};
+
+use crate::check::{check_triangulation, exact_area};
+use crate::shapes::{piece, point};
+
+/// A star-shaped loop about the origin with some corners rounded, and round holes.
+fn star() -> impl Strategy<Value = Outline> {
+    let corner = (0.5..1.0_f64, 0.0..0.8_f64, prop::option::of(0.001..0.2_f64));
+    let hole = (-0.4..0.4_f64, -0.4..0.4_f64, 0.005..0.3_f64);
+    (
+        prop::collection::vec(corner, 3..14),
+        prop::collection::vec(hole, 0..4),
+    )
+        .prop_map(|(corners, holes)| {
+            let n = corners.len() as f64;
+            let list: Vec<Corner> = corners
+                .iter()
+                .enumerate()
+                .map(|(k, &(r, shift, round))| Corner {
+                    at: point(0.0, 0.0)
+                        + Vector::at_angle(std::f64::consts::TAU * (k as f64 + shift) / n)
+                            * (100.0 * r),
+                    round: round.map(|r| 100.0 * r),
+                    via: None,
+                })
+                .collect();
+            // Radii that do not fit are left out.
+            let sharp: Vec<Corner> = list.iter().map(|c| Corner { round: None, ..*c }).collect();
+            let outer = ring_from_corners(&list)
+                .or_else(|_| ring_from_corners(&sharp))
+                .unwrap();
+            let holes = holes
+                .iter()
+                .map(|&(x, y, d)| circle(point(100.0 * x, 100.0 * y), 100.0 * d))
+                .collect();
+            Outline { outer, holes }
+        })
+}
+
+/// Any ring at all: open, wound, degenerate, with few distinct points so that much coincides.
+fn garbage() -> impl Strategy<Value = Ring> {
+    let number = prop_oneof![
+        8 => (-3..4_i32).prop_map(f64::from),
+        2 => -3.0..3.0_f64,
+        1 => prop::sample::select(vec![1e-12, 1e-300, 1e12, 1e300, f64::NAN, f64::INFINITY]),
+    ];
+    let corner = (number.clone(), number.clone());
+    let bend = prop::option::of((number.clone(), number.clone(), number.clone(), number));
+    prop::collection::vec((corner, bend), 0..9).prop_map(|list| {
+        let n = list.len();
+        let sides = (0..n)
+            .map(|k| {
+                let (from, to) = (list[k].0, list[(k + 1) % n].0);
+                let arc = list[k].1.map(|(x, y, radius, sweep)| Arc {
+                    circle: Circle {
+                        centre: point(x, y),
+                        radius,
+                    },
+                    sweep,
+                });
+                Side {
+                    from: point(from.0, from.1),
+                    to: point(to.0, to.1),
+                    arc,
+                    corner: k,
+                }
+            })
+            .collect();
+        Ring { sides }
+    })
+}
+
+/// Loops of corners on a small lattice, some sides round: sound rings that may cross and touch.
+fn lattice() -> impl Strategy<Value = Ring> {
+    let via = prop::option::weighted(0.3, (-6..7_i32, -6..7_i32));
+    prop::collection::vec((-3..4_i32, -3..4_i32, via), 2..8).prop_filter_map("no ring", |list| {
+        let corners: Vec<Corner> = list
+            .iter()
+            .map(|&(x, y, via)| Corner {
+                at: point(f64::from(x), f64::from(y)),
+                round: None,
+                via: via.map(|(x, y)| point(0.5 * f64::from(x), 0.5 * f64::from(y))),
+            })
+            .collect();
+        ring_from_corners(&corners).ok()
+    })
+}
+
+/// Builds and meshes; what is built must mesh without defects or say why not.
+fn hold(pieces: &[Piece], must_mesh: bool) {
+    let Ok(domain) = build(pieces) else { return };
+    match triangulate(
+        &domain,
+        &Sizing {
+            max_area: None,
+            max_vertices: 20_000,
+        },
+    ) {
+        Ok(mesh) => check_triangulation("by chance", &mesh, &domain, exact_area(pieces)),
+        Err(e) => assert!(!must_mesh, "{e}"),
+    }
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig { cases: 200, failure_persistence: None, ..ProptestConfig::default() })]
+
+    #[test]
+    fn stars_with_holes_mesh(outline in star()) {
+        hold(&[piece("star", outline)], true);
+    }
+
+    #[test]
+    fn garbage_never_panics(rings in prop::collection::vec(garbage(), 1..4)) {
+        let mut rings = rings.into_iter();
+        let outer = rings.next().unwrap();
+        hold(&[piece("garbage", Outline { outer, holes: rings.collect() })], false);
+    }
+
+    #[test]
+    fn lattice_pieces_never_panic(rings in prop::collection::vec(lattice(), 1..4)) {
+        let pieces: Vec<Piece> = rings
+            .into_iter()
+            .map(|outer| piece("lattice", Outline { outer, holes: Vec::new() }))
+            .collect();
+        hold(&pieces, false);
+        for p in &pieces {
+            hold(std::slice::from_ref(p), false);
+        }
+    }
+}

@@ -1,0 +1,10 @@
+//! Whole sections through outline, domain, triangulation, bisection and grading.
+#![allow(clippy::unwrap_used)]
+
+mod bisection;
+mod chance;
+mod check;
+mod corners;
+mod faults;
+mod meshes;
+mod shapes;
