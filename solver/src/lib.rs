@@ -19,6 +19,7 @@ pub mod quantity;
 pub mod sample;
 pub mod solution;
 mod space;
+pub mod stress;
 mod system;
 mod tables;
 #[cfg(test)]

@@ -208,6 +208,14 @@ fn separate_parts_bend_but_are_refused_for_torsion() {
 }
 
 #[test]
+fn an_assumed_material_is_said() {
+    let file = Path::new(env!("CARGO_MANIFEST_DIR")).join("good/disc.section.toml");
+    let results = json(&[], &file);
+    let notes = results["notes"].as_array().unwrap();
+    assert!(notes.iter().any(|n| n["kind"] == "assumed-material"));
+}
+
+#[test]
 fn settings_out_of_range_are_refused() {
     for args in [
         ["--tolerance", "0"],

@@ -5,7 +5,7 @@ use std::path::{Path, PathBuf};
 use std::time::Instant;
 
 use clap::Args;
-use sectile_solver::solution::{Level, Settings, Solution, solve};
+use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
 use super::Outcome;
 use super::progress::LevelProgress;
@@ -110,10 +110,20 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         &mut |level: &Level| progress.show(level),
     );
     progress.finish();
-    let solution = match solved {
+    let mut solution = match solved {
         Ok(solution) => solution,
         Err(error) => return fail(file, &error.to_string()),
     };
+    if read.section.assumed_material {
+        solution.notes.push(Note {
+            kind: "assumed-material",
+            text:
+                "The file names no material: Poisson's ratio 0.3 is assumed. It enters the flexure \
+                   centre and the shear areas."
+                    .into(),
+            at: None,
+        });
+    }
 
     let write_start = Instant::now();
     if let Some(folder) = &folder
