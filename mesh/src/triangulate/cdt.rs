@@ -30,27 +30,19 @@ pub struct PieceMesh {
     pub wanted_splits: Vec<(usize, usize)>,
 }
 
-/// A vertex of the triangulation; loading shuffles those that are given.
 #[derive(Clone, Copy, Debug)]
-struct Vertex {
-    position: Point2<f64>,
-    /// Its number among those that are given.
-    given: Option<u32>,
-}
+struct Vertex(Point2<f64>);
 
 impl HasPosition for Vertex {
     type Scalar = f64;
     fn position(&self) -> Point2<f64> {
-        self.position
+        self.0
     }
 }
 
 impl From<Point2<f64>> for Vertex {
-    fn from(position: Point2<f64>) -> Self {
-        Self {
-            position,
-            given: None,
-        }
+    fn from(p: Point2<f64>) -> Self {
+        Self(p)
     }
 }
 
@@ -96,19 +88,18 @@ pub fn triangulate_piece(
         piece: name(),
         at: positions[at.min(known - 1)],
     };
-    let mut cdt = load(&positions).map_err(|e| MeshError::Coordinate {
+    let order = coarse_first(known);
+    let mut handles = vec![FixedVertexHandle::from_index(0); known];
+    for (rank, &i) in order.iter().enumerate() {
+        handles[i] = FixedVertexHandle::from_index(FRAME + rank);
+    }
+    let mut cdt = load(&positions, &order).map_err(|e| MeshError::Coordinate {
         piece: name(),
         reason: e.to_string(),
     })?;
     let given = known + FRAME;
     if cdt.num_vertices() != given {
         return Err(too_close(0));
-    }
-    let mut handles = vec![FixedVertexHandle::from_index(0); given];
-    for v in cdt.vertices() {
-        if let Some(i) = v.data().given {
-            handles[i as usize] = v.fix();
-        }
     }
     for part in &mut parts {
         let ends = [part.from, part.to].map(|v| handles[v]);
@@ -145,9 +136,8 @@ pub fn triangulate_piece(
     inner.sort_unstable();
     inner.dedup();
     let number = |v: FixedVertexHandle| {
-        let beyond = v.index() - given.min(v.index());
-        let added = known + inner.len() + beyond;
-        cdt.vertex(v).data().given.unwrap_or(added as u32)
+        let v = v.index() - FRAME;
+        order.get(v).map_or(v + inner.len(), |&i| i) as u32
     };
     let mut triangles: Vec<[u32; 3]> = cdt
         .inner_faces()
@@ -179,19 +169,32 @@ pub fn triangulate_piece(
     })
 }
 
-/// The Delaunay triangulation of `positions` within a [`frame`]. Constraints are added afterwards one by
-/// one: spade's loading of both at once walks through hash sets, in another order in each run.
-fn load(positions: &[Point]) -> Result<Cdt, InsertionError> {
-    let vertices = positions
+/// The Delaunay triangulation of `positions` within a [`frame`], whose points come first, the others
+/// in the given order. One by one: spade's loading in bulk walks through hash sets, in another order in
+/// each run, and takes quadratic time where most points are on one line.
+fn load(positions: &[Point], order: &[usize]) -> Result<Cdt, InsertionError> {
+    let n = positions.len();
+    let mut cdt = Cdt::with_capacity(n + FRAME, 3 * n, 2 * n);
+    for p in frame(positions)
         .iter()
-        .chain(&frame(positions))
-        .enumerate()
-        .map(|(i, p)| Vertex {
-            position: Point2::new(p.x, p.y),
-            given: Some(i as u32),
-        })
-        .collect();
-    Cdt::bulk_load(vertices)
+        .chain(order.iter().map(|&i| &positions[i]))
+    {
+        cdt.insert(Vertex(Point2::new(p.x, p.y)))?;
+    }
+    Ok(cdt)
+}
+
+/// 0 to n − 1, coarse first: every 2^k-th, then those halfway between, and so on. Neighbours along a
+/// side follow one another, yet no fan of them grows that later points must undo.
+fn coarse_first(n: usize) -> Vec<usize> {
+    let mut order = Vec::with_capacity(n);
+    let mut step = n.next_power_of_two();
+    order.extend((0..n).step_by(step));
+    while step > 1 {
+        order.extend((step / 2..n).step_by(step));
+        step /= 2;
+    }
+    order
 }
 
 /// Number of points of the [`frame`].

@@ -79,7 +79,8 @@ const ROUNDS: usize = 24;
 /// Straight free sides are divided as the shape of triangles asks. Arcs and interfaces are divided
 /// beforehand, on the true curve and alike for both sides; where refinement still wants to divide one
 /// of their parts, or a curved triangle would fold, that part is halved and the pieces it bounds are
-/// triangulated anew. Triangles have no angle below 25° but where the outline itself has.
+/// triangulated anew. Triangles have no angle below 25° but in corners of a piece below 50°, which are
+/// cut off: there none falls much below the corner's own angle.
 ///
 /// # Errors
 /// See [`MeshError`].

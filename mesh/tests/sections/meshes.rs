@@ -8,7 +8,7 @@ use sectile_mesh::quality::least_angle;
 use sectile_mesh::triangulate::{MeshError, Sizing, triangulate};
 
 use crate::check::{check_triangulation, exact_area};
-use crate::shapes::{comb, good, piece, point, wavy, zigzag};
+use crate::shapes::{comb, good, of_points, piece, point, wavy, zigzag};
 
 /// Least angle asked for, degrees, with room for rounding.
 const LEAST: f64 = 25.0 - 0.01;
@@ -221,14 +221,16 @@ fn far_from_the_origin_and_at_any_size() {
 
 #[test]
 fn many_corners_are_no_trouble() {
-    let (domain, mesh) = domain_and_mesh("wavy", &[piece("wavy", wavy(10_000))]);
-    check_triangulation(
-        "wavy",
-        &mesh,
-        &domain,
-        exact_area(&[piece("wavy", wavy(10_000))]),
-    );
-    assert!(least_angle(&mesh) > LEAST);
+    // Most corners on one line: a rectangle with a finely divided side.
+    let n = 10_000;
+    let mut list = vec![[0.0, 0.0], [100.0, 0.0], [100.0, 100.0]];
+    list.extend((0..n).map(|k| [0.0, 100.0 - 100.0 * f64::from(k) / f64::from(n)]));
+    for outline in [wavy(10_000), of_points(&list)] {
+        let pieces = [piece("many", outline)];
+        let (domain, mesh) = domain_and_mesh("many", &pieces);
+        check_triangulation("many", &mesh, &domain, exact_area(&pieces));
+        assert!(least_angle(&mesh) > LEAST);
+    }
 }
 
 #[test]
