@@ -159,6 +159,8 @@ pub(crate) fn solve(
                 moments: scaled,
                 poisson: material.poisson,
                 shear,
+                warping_square: result.total.source_square,
+                oscillation: result.total.oscillation.map(|o| o.max(0.0).sqrt()),
                 fields: result.fields,
                 tables,
             }),

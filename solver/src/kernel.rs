@@ -253,10 +253,10 @@ impl<'a> Kernel<'a> {
 
     /// Coefficients of the reference source `f·det` of one triangle in the orthonormal polynomials.
     #[must_use]
-    pub fn modes_of(&self, t: usize, source: Source) -> Vec<f64> {
+    pub fn modes_of(&self, t: usize, source: Source, torsion: Option<&[f64]>) -> Vec<f64> {
         let mut work = Workspace::default();
         let tabulated = self.enter(t, &mut work);
-        self.fill_source(source, &tabulated.table, None, &mut work);
+        self.fill_source(source, &tabulated.table, torsion, &mut work);
         source_modes(&tabulated.table, &work.source, &mut work.modes);
         work.modes
     }

@@ -6,6 +6,7 @@
 
 mod adapt;
 mod element;
+mod evaluate;
 mod factor;
 pub mod figure;
 mod geometry;

@@ -3,12 +3,10 @@
 use rayon::prelude::*;
 use sectile_mesh::{Point, Vector};
 
-use crate::geometry::Geometry;
-use crate::kernel::{Kernel, Source, particular_flux};
-use crate::problem::{COUNT, FLEXURE_X, FLEXURE_Y, POISSON_X, POISSON_Y, TORSION, known_field};
+use crate::evaluate::{Evaluator, PointFields, PointTable};
+use crate::problem::{COUNT, FLEXURE_X, FLEXURE_Y, POISSON_X, POISSON_Y, RESTRAINED, TORSION};
 use crate::property::shear::unit_flexure;
 use crate::solution::{Solution, Solved};
-use crate::space::Space;
 
 /// The unit section force whose shear stress is asked for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -61,56 +59,49 @@ impl Lattice {
     }
 }
 
+/// The lattice's points as reference coordinates.
+#[must_use]
+pub(crate) fn reference(lattice: &Lattice) -> Vec<[f64; 2]> {
+    lattice.points.iter().map(|l| [l[1], l[2]]).collect()
+}
+
+/// `f` at the lattice points of every triangle.
+fn everywhere<T: Send>(
+    solution: &Solution,
+    lattice: &Lattice,
+    f: impl Fn(&Solved, &PointFields) -> T + Sync,
+) -> Vec<T> {
+    let Some(evaluator) = Evaluator::new(solution) else {
+        return Vec::new();
+    };
+    let table = PointTable::new(&evaluator.solved.tables, reference(lattice));
+    (0..evaluator.triangles())
+        .into_par_iter()
+        .flat_map_iter(|t| {
+            let ready = evaluator.ready(t);
+            (0..table.points.len())
+                .map(|p| f(evaluator.solved, &evaluator.at(&ready, &table, p)))
+                .collect::<Vec<T>>()
+        })
+        .collect()
+}
+
 /// Lattice points of every triangle, true positions on curved triangles, in the axes and unit of the
 /// section file. Shape `[triangles × lattice points]`, as for all that follow; empty for a section in
 /// separate parts.
 #[must_use]
 pub fn positions(solution: &Solution, lattice: &Lattice) -> Vec<Point> {
-    let Some(solved) = &solution.solved else {
-        return Vec::new();
-    };
-    let geometry = Geometry::new(&solution.mesh, &solved.frame);
-    (0..solution.mesh.triangles.len())
-        .flat_map(|t| {
-            let map = geometry.map(t);
-            lattice.points.iter().map(move |l| {
-                let at = map.at(l[1], l[2]);
-                solved.frame.outward(Point::new(at.x, at.y))
-            })
-        })
-        .collect()
+    everywhere(solution, lattice, |solved, at| {
+        solved.frame.outward(Point::new(at.x, at.y))
+    })
 }
 
 /// Warping function ω about the shear centre, zero mean, length²: `u_z = θ′ ω`.
 #[must_use]
 pub fn warping(solution: &Solution, lattice: &Lattice) -> Vec<f64> {
-    let Some(solved) = &solution.solved else {
-        return Vec::new();
-    };
-    let (Source::Warping([mean, a, b]), square) =
-        (solved.fields.sources[2], solved.frame.scale.powi(2))
-    else {
-        return Vec::new();
-    };
-    let basis = tabulate(solved, lattice);
-    let geometry = Geometry::new(&solution.mesh, &solved.frame);
-    let space = Space::new(&solution.mesh, solution.order);
-    let mut nodes = Vec::new();
-    let mut out = Vec::with_capacity(solution.mesh.triangles.len() * lattice.points.len());
-    for t in 0..solution.mesh.triangles.len() {
-        space.fill_nodes(t, &mut nodes);
-        let map = geometry.map(t);
-        for (l, functions) in lattice.points.iter().zip(&basis) {
-            let at = map.at(l[1], l[2]);
-            let omega: f64 = nodes
-                .iter()
-                .zip(functions)
-                .map(|(&i, f)| solved.fields.torsion[i] * f[0])
-                .sum();
-            out.push((omega - mean - a * at.x - b * at.y) * square);
-        }
-    }
-    out
+    everywhere(solution, lattice, |solved, at| {
+        at.omega * solved.frame.scale.powi(2)
+    })
 }
 
 /// Shear stress of a unit force: per length² for a shear force, per length³ for a torque. The mean of
@@ -133,92 +124,48 @@ pub fn both_fields(solution: &Solution, force: UnitForce, lattice: &Lattice) -> 
     let Some(solved) = &solution.solved else {
         return Vec::new();
     };
-    let factor = solved.poisson / (1.0 + solved.poisson);
-    let torsion = solved.shear.torsion.value;
-    let mut weights = [0.0; COUNT];
-    let size = match force {
-        UnitForce::Torque => {
-            weights[TORSION] = 1.0 / torsion;
-            solved.frame.scale.powi(3)
-        }
-        UnitForce::ShearX | UnitForce::ShearY => {
-            let i = usize::from(force == UnitForce::ShearY);
-            let f = unit_flexure(&solved.moments)[i];
-            weights[FLEXURE_X] = f[0];
-            weights[FLEXURE_Y] = f[1];
-            weights[POISSON_X] = factor * f[0];
-            weights[POISSON_Y] = factor * f[1];
-            weights[TORSION] = -solved.shear.twist[i] / torsion;
-            solved.frame.scale.powi(2)
-        }
+    let [vx, vy, t, _] = unit_weights(solved);
+    let weights = match force {
+        UnitForce::Torque => t,
+        UnitForce::ShearX => vx,
+        UnitForce::ShearY => vy,
     };
-    for w in &mut weights {
-        *w /= size;
-    }
-
-    let geometry = Geometry::new(&solution.mesh, &solved.frame);
-    let space = Space::new(&solution.mesh, solution.order);
-    let kernel = Kernel {
-        geometry: &geometry,
-        space,
-        tables: &solved.tables,
-    };
-    let basis = tabulate(solved, lattice);
-    let fields = [0, 1].map(|k| {
-        lattice
-            .points
-            .iter()
-            .map(|l| solved.tables.divergence[k].evaluate(l[1], l[2]))
-            .collect::<Vec<_>>()
-    });
-    let flexure = [(0, Source::X, FLEXURE_X), (1, Source::Y, FLEXURE_Y)];
-    (0..solution.mesh.triangles.len())
-        .into_par_iter()
-        .flat_map_iter(|t| {
-            let mut nodes = Vec::new();
-            space.fill_nodes(t, &mut nodes);
-            let map = geometry.map(t);
-            let modes = flexure.map(|(_, source, _)| kernel.modes_of(t, source));
-            let fields = &fields[usize::from(!map.is_straight())];
-            let mut out = Vec::with_capacity(lattice.points.len());
-            for (p, l) in lattice.points.iter().enumerate() {
-                let at = map.at(l[1], l[2]);
-                let mut primal = [0.0; 2];
-                let mut dual = [0.0; 2];
-                for (&i, f) in nodes.iter().zip(&basis[p]) {
-                    let (u, phi) = (&solved.fields.primal[i], &solved.fields.dual[i]);
-                    for (k, w) in weights.iter().enumerate() {
-                        for c in 0..2 {
-                            primal[c] += w * u[k] * f[1 + c];
-                            dual[c] += w * phi[k] * f[1 + c];
-                        }
-                    }
-                }
-                let g = at.gradient(primal[0], primal[1]);
-                let c = at.gradient(dual[0], dual[1]);
-                let mut tau_p = Vector::new(g[0], g[1]);
-                let mut tau_d = Vector::new(c[1], -c[0]);
-                for (k, w) in weights.iter().enumerate() {
-                    let h = known_field(k, at.x, at.y);
-                    tau_p += Vector::new(h[0], h[1]) * *w;
-                }
-                for (k, _, problem) in flexure {
-                    let flux = &solved.fields.fluxes[k][t];
-                    let s = at.piola(particular_flux([l[1], l[2]], flux, &modes[k], &fields[p]));
-                    tau_d += Vector::new(s[0], s[1]) * weights[problem];
-                }
-                out.push([tau_p, tau_d]);
-            }
-            out
-        })
-        .collect()
+    everywhere(solution, lattice, |_, at| {
+        [weighted(&weights, &at.primal), weighted(&weights, &at.dual)]
+    })
 }
 
-/// Node functions `[N, ∂N/∂ξ, ∂N/∂η]` at the points of a lattice.
-fn tabulate(solved: &Solved, lattice: &Lattice) -> Vec<Vec<[f64; 3]>> {
-    lattice
-        .points
-        .iter()
-        .map(|l| solved.tables.basis.evaluate(l[1], l[2]))
-        .collect()
+/// `Σ w_k τ_k`.
+pub(crate) fn weighted(weights: &[f64; COUNT], fields: &[[f64; 2]; COUNT]) -> Vector {
+    let mut out = Vector::default();
+    for (w, f) in weights.iter().zip(fields) {
+        out += Vector::new(w * f[0], w * f[1]);
+    }
+    out
+}
+
+/// The problems' weights in the shear stress of a unit V_x, V_y, T and T_w, in the unit of the file.
+///
+/// V through the shear centre: the flexure fields, with Poisson's part, less the torsion in them. T:
+/// the torsion field over J. T_w: minus the field of restrained warping over C_w.
+pub(crate) fn unit_weights(solved: &Solved) -> [[f64; COUNT]; 4] {
+    let factor = solved.poisson / (1.0 + solved.poisson);
+    let torsion = solved.shear.torsion.value;
+    let length = solved.frame.scale;
+    let flexure = unit_flexure(&solved.moments);
+    let mut out = [[0.0; COUNT]; 4];
+    for i in 0..2 {
+        let f = flexure[i];
+        out[i][FLEXURE_X] = f[0];
+        out[i][FLEXURE_Y] = f[1];
+        out[i][POISSON_X] = factor * f[0];
+        out[i][POISSON_Y] = factor * f[1];
+        out[i][TORSION] = -solved.shear.twist[i] / torsion;
+        out[i] = out[i].map(|w| w / length.powi(2));
+    }
+    out[2][TORSION] = 1.0 / torsion / length.powi(3);
+    if solved.warping_square > 0.0 {
+        out[3][RESTRAINED] = -1.0 / solved.warping_square / length.powi(3);
+    }
+    out
 }

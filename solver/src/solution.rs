@@ -99,6 +99,10 @@ pub(crate) struct Solved {
     pub moments: AreaMoments,
     pub poisson: f64,
     pub shear: ShearProperties,
+    /// `∫ω²` of the primal warping function about the shear centre.
+    pub warping_square: f64,
+    /// Bounds on what the projection of the sources leaves out, by source.
+    pub oscillation: [f64; 3],
     pub fields: Fields,
     pub tables: Tables,
 }

@@ -1,0 +1,232 @@
+//! Extremes that one may quote.
+//!
+//! Sought at the lattice points of every triangle, then around the best of them by a search in its
+//! triangle. Points close to sharp re-entrant corners are left out: the calculated stress there grows
+//! with every refinement.
+
+use sectile_mesh::Point;
+
+use super::field::UnitFields;
+use super::forces::SectionForces;
+use super::measure::Measure;
+use super::state::Stress;
+use crate::evaluate::{Evaluator, PointTable, Ready};
+use crate::solution::Solution;
+
+/// The extreme of a measure.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Extreme {
+    /// Its value.
+    pub value: f64,
+    /// Where, in the axes of the section file.
+    pub at: Point,
+    /// In which piece.
+    pub piece: u32,
+    /// The stress there.
+    pub stress: Stress,
+    /// The stress there of each part of the action alone, in the order of
+    /// [`super::forces::PART_NAMES`].
+    pub parts: [Stress; 8],
+}
+
+/// The extremes of an action in the order of [`Measure::ALL`]; utilisation only where a piece has a
+/// yield stress.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Extremes(pub Vec<(Measure, Extreme)>);
+
+impl Extremes {
+    /// The extreme of one measure.
+    #[must_use]
+    pub fn get(&self, measure: Measure) -> Option<&Extreme> {
+        self.0.iter().find(|(m, _)| *m == measure).map(|(_, e)| e)
+    }
+}
+
+/// The factor on an action at which von Mises' stress first reaches the yield stress; `None` without a
+/// yield stress or without stress.
+#[must_use]
+pub fn load_factor_to_yield(extremes: &Extremes) -> Option<f64> {
+    let utilisation = extremes.get(Measure::Utilisation)?.value;
+    (utilisation > 0.0).then(|| 1.0 / utilisation)
+}
+
+/// Distance from sharp corners within which stresses are not quoted, over the wall's thickness.
+pub const DEFAULT_EXCLUSION: f64 = 0.1;
+
+/// The points that extremes may be quoted at, made once for all actions.
+#[derive(Clone, Debug)]
+pub struct Quotable {
+    /// By lattice point of the unit fields.
+    allowed: Vec<bool>,
+    circles: Vec<(Point, f64)>,
+}
+
+impl Quotable {
+    /// All lattice points but those within `exclusion` times the wall of a sharp corner.
+    #[must_use]
+    pub fn new(solution: &Solution, fields: &UnitFields, exclusion: f64) -> Self {
+        let circles: Vec<(Point, f64)> = solution
+            .corners
+            .iter()
+            .map(|c| (c.at, exclusion * c.wall))
+            .collect();
+        let allowed = fields
+            .positions
+            .iter()
+            .map(|p| is_allowed(&circles, *p))
+            .collect();
+        Self { allowed, circles }
+    }
+}
+
+fn is_allowed(circles: &[(Point, f64)], p: Point) -> bool {
+    circles.iter().all(|(c, r)| p.distance(*c) >= *r)
+}
+
+/// The extremes under section forces. `yield_stress` by piece.
+#[must_use]
+pub fn extremes(
+    solution: &Solution,
+    fields: &UnitFields,
+    quotable: &Quotable,
+    forces: &SectionForces,
+    yield_stress: &[Option<f64>],
+) -> Extremes {
+    let Some(evaluator) = Evaluator::new(solution) else {
+        return Extremes(Vec::new());
+    };
+    let per = fields.lattice.points.len();
+    let piece_of = |i: usize| solution.mesh.piece[i / per];
+    let yield_of = |piece: u32| yield_stress.get(piece as usize).copied().flatten();
+    // One pass over the points; comparisons are on what `rank` makes the largest.
+    let mut best: Vec<Option<(f64, usize)>> = vec![None; Measure::ALL.len()];
+    for (i, unit) in fields.units.iter().enumerate() {
+        if !quotable.allowed[i] {
+            continue;
+        }
+        let stress = unit.under(forces);
+        let limit = yield_of(piece_of(i));
+        for (slot, measure) in best.iter_mut().zip(Measure::ALL) {
+            if let Some(r) = rank(*measure, &stress, limit)
+                && slot.is_none_or(|(b, _)| r > b)
+            {
+                *slot = Some((r, i));
+            }
+        }
+    }
+    let mut ready: Vec<(usize, Ready)> = Vec::new();
+    let mut out = Vec::new();
+    for (slot, &measure) in best.iter().zip(Measure::ALL) {
+        let Some((_, i)) = *slot else { continue };
+        let triangle = i / per;
+        if !ready.iter().any(|(t, _)| *t == triangle) {
+            ready.push((triangle, evaluator.ready(triangle)));
+        }
+        let Some((_, own)) = ready.iter().find(|(t, _)| *t == triangle) else {
+            continue;
+        };
+        let search = Search {
+            evaluator: &evaluator,
+            fields,
+            quotable,
+            forces,
+            measure,
+            limit: yield_of(piece_of(i)),
+            ready: own,
+        };
+        let l = fields.lattice.points[i % per];
+        out.push((
+            measure,
+            search.climb(
+                [l[1], l[2]],
+                1.0 / fields.lattice.divisions as f64,
+                piece_of(i),
+            ),
+        ));
+    }
+    Extremes(out)
+}
+
+/// A measure as something whose largest value is sought.
+fn rank(measure: Measure, stress: &Stress, limit: Option<f64>) -> Option<f64> {
+    let value = measure.of(stress, limit)?;
+    Some(if measure.is_least() { -value } else { value })
+}
+
+/// A search for the extreme inside one triangle.
+struct Search<'a> {
+    evaluator: &'a Evaluator<'a>,
+    fields: &'a UnitFields,
+    quotable: &'a Quotable,
+    forces: &'a SectionForces,
+    measure: Measure,
+    limit: Option<f64>,
+    ready: &'a Ready,
+}
+
+/// Halvings of the step of a search.
+const HALVINGS: usize = 9;
+
+impl Search<'_> {
+    fn unit(&self, p: [f64; 2]) -> (Point, super::field::UnitStress) {
+        let solved = self.evaluator.solved;
+        let table = PointTable::new(&solved.tables, vec![p]);
+        let at = self.evaluator.at(self.ready, &table, 0);
+        (
+            solved.frame.outward(Point::new(at.x, at.y)),
+            self.fields.superposition.unit_stress(solved, &at),
+        )
+    }
+
+    fn rank_at(&self, p: [f64; 2]) -> Option<f64> {
+        let (at, unit) = self.unit(p);
+        if !is_allowed(&self.quotable.circles, at) {
+            return None;
+        }
+        rank(self.measure, &unit.under(self.forces), self.limit)
+    }
+
+    /// Steps along the three sides' directions, halved whenever none of them gains.
+    fn climb(&self, start: [f64; 2], step: f64, piece: u32) -> Extreme {
+        const DIRECTIONS: [[f64; 2]; 6] = [
+            [1.0, 0.0],
+            [-1.0, 0.0],
+            [0.0, 1.0],
+            [0.0, -1.0],
+            [1.0, -1.0],
+            [-1.0, 1.0],
+        ];
+        let mut p = start;
+        let mut best = self.rank_at(p).unwrap_or(f64::NEG_INFINITY);
+        let mut step = 0.5 * step;
+        let mut halvings = 0;
+        while halvings < HALVINGS {
+            let mut gained = false;
+            for d in DIRECTIONS {
+                let q = [p[0] + step * d[0], p[1] + step * d[1]];
+                if q[0] < 0.0 || q[1] < 0.0 || q[0] + q[1] > 1.0 {
+                    continue;
+                }
+                if let Some(r) = self.rank_at(q)
+                    && r > best
+                {
+                    (best, p, gained) = (r, q, true);
+                    break;
+                }
+            }
+            if !gained {
+                step *= 0.5;
+                halvings += 1;
+            }
+        }
+        let (at, unit) = self.unit(p);
+        let stress = unit.under(self.forces);
+        Extreme {
+            value: self.measure.of(&stress, self.limit).unwrap_or(0.0),
+            at,
+            piece,
+            stress,
+            parts: self.forces.parts().map(|f| unit.under(&f)),
+        }
+    }
+}
