@@ -105,6 +105,12 @@ impl Loop {
     }
 }
 
+/// The loop through plain corners.
+#[must_use]
+pub fn polygon(corners: &[[f64; 2]]) -> Loop {
+    Loop::Corners(corners.iter().map(|&c| CornerText::Plain(c)).collect())
+}
+
 impl CornerText {
     fn corner(&self) -> Corner {
         match *self {
