@@ -79,8 +79,8 @@ const ROUNDS: usize = 24;
 /// Straight free sides are divided as the shape of triangles asks. Arcs and interfaces are divided
 /// beforehand, on the true curve and alike for both sides; where refinement still wants to divide one
 /// of their parts, or a curved triangle would fold, that part is halved and the pieces it bounds are
-/// triangulated anew. Triangles have no angle below 25° but in corners of a piece below 50°, which are
-/// cut off: there none falls much below the corner's own angle.
+/// triangulated anew. Triangles have no angle below 25° but in corners of a piece below 60°, which are
+/// cut off: there angles stay in proportion to the corner's own (see `ladder`).
 ///
 /// # Errors
 /// See [`MeshError`].

@@ -4,14 +4,16 @@ use proptest::prelude::*;
 
 use sectile_mesh::Vector;
 use sectile_mesh::domain::build;
+use sectile_mesh::domain::fault::Fault;
 use sectile_mesh::outline::corner::{Corner, ring_from_corners};
 use sectile_mesh::outline::piece::{Outline, Piece, Ring};
 use sectile_mesh::outline::shape::circle;
 use sectile_mesh::outline::side::{Arc, Circle, Side};
+use sectile_mesh::quality::least_angle;
 use sectile_mesh::triangulate::{Sizing, triangulate};
 
 use crate::check::{check_triangulation, exact_area};
-use crate::shapes::{piece, point};
+use crate::shapes::{moved, of_points, piece, point};
 
 /// A star-shaped loop about the origin with some corners rounded, and round holes.
 fn star() -> impl Strategy<Value = Outline> {
@@ -96,6 +98,59 @@ fn lattice() -> impl Strategy<Value = Ring> {
     })
 }
 
+/// Courses of blocks like a wall's, each course with widths of its own, some blocks missing, some cut in
+/// two along a diagonal, all turned: pieces that share sides and parts of sides at any angle.
+fn wall() -> impl Strategy<Value = Vec<Piece>> {
+    let block = (0.05..1.0_f64, 0..5_u8);
+    let course = (0.05..1.0_f64, prop::collection::vec(block, 1..4));
+    let courses = prop::collection::vec(course, 1..4);
+    (courses, 0.0..90.0_f64).prop_filter_map("all missing", |(courses, turn)| {
+        let mut pieces = Vec::new();
+        let mut y = 0.0;
+        for (height, blocks) in courses {
+            let mut x = 0.0;
+            for (width, kind) in blocks {
+                let p = [
+                    [x, y],
+                    [x + width, y],
+                    [x + width, y + height],
+                    [x, y + height],
+                ];
+                let triangles = [
+                    of_points(&[p[0], p[1], p[2]]),
+                    of_points(&[p[0], p[2], p[3]]),
+                ];
+                let outlines = match kind {
+                    0 => vec![],
+                    1 => triangles[..1].to_vec(),
+                    2 => triangles.to_vec(),
+                    _ => vec![of_points(&p)],
+                };
+                pieces.extend(
+                    outlines
+                        .iter()
+                        .map(|o| piece("block", moved(o, 3.0, -7.0, turn))),
+                );
+                x += width;
+            }
+            y += height;
+        }
+        (!pieces.is_empty()).then_some(pieces)
+    })
+}
+
+/// The least angle of a piece with straight sides, radians.
+fn sharpest(piece: &Piece) -> f64 {
+    let sides = &piece.outline.outer.sides;
+    (0..sides.len())
+        .map(|k| {
+            let (a, b) = (&sides[k], &sides[(k + 1) % sides.len()]);
+            let (u, v) = (a.from - a.to, b.to - b.from);
+            u.cross(v).abs().atan2(u.dot(v))
+        })
+        .fold(std::f64::consts::PI, f64::min)
+}
+
 /// Builds and meshes; what is built must mesh without defects or say why not.
 fn hold(pieces: &[Piece], must_mesh: bool) {
     let Ok(domain) = build(pieces) else { return };
@@ -117,6 +172,24 @@ proptest! {
     #[test]
     fn stars_with_holes_mesh(outline in star()) {
         hold(&[piece("star", outline)], true);
+    }
+
+    #[test]
+    fn walls_of_blocks_mesh(pieces in wall()) {
+        if let Err(faults) = build(&pieces) {
+            let touch = |f: &Fault| matches!(f, Fault::PiecesTouchInPoint { .. });
+            prop_assert!(faults.iter().all(touch), "{:?}", faults);
+            return Ok(());
+        }
+        hold(&pieces, true);
+        let mesh = triangulate(&build(&pieces).unwrap(), &Sizing::default()).unwrap();
+        // What the ladder of a sharp corner keeps of its angle where its sides are halved.
+        let halved = |piece: &Piece| {
+            let (sin, cos) = sharpest(piece).sin_cos();
+            sin.atan2(2.0 - cos).to_degrees()
+        };
+        let asked = pieces.iter().map(halved).fold(25.0, f64::min);
+        prop_assert!(least_angle(&mesh) > asked - 0.01, "{} of {asked}", least_angle(&mesh));
     }
 
     #[test]
