@@ -159,7 +159,11 @@ pub(crate) fn solve(
                 moments: scaled,
                 poisson: material.poisson,
                 shear,
-                warping_square: result.total.source_square,
+                warping_square: if shear.warping.low > 0.0 {
+                    result.total.source_square
+                } else {
+                    0.0
+                },
                 oscillation: result.total.oscillation.map(|o| o.max(0.0).sqrt()),
                 fields: result.fields,
                 tables,

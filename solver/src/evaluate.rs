@@ -24,12 +24,24 @@ impl PointTable {
     /// The table of the points `(ξ, η)`.
     #[must_use]
     pub fn new(tables: &Tables, points: Vec<[f64; 2]>) -> Self {
+        Self::of(tables, points, [true, true])
+    }
+
+    /// The table of one point for one kind of triangle.
+    #[must_use]
+    pub fn single(tables: &Tables, point: [f64; 2], ready: &Ready) -> Self {
+        let straight = ready.map.is_straight();
+        Self::of(tables, vec![point], [straight, !straight])
+    }
+
+    fn of(tables: &Tables, points: Vec<[f64; 2]>, kinds: [bool; 2]) -> Self {
         let functions = points
             .iter()
             .map(|p| tables.basis.evaluate(p[0], p[1]))
             .collect();
         let fields = [0, 1].map(|k| {
-            points
+            let wanted = if kinds[k] { &points[..] } else { &[] };
+            wanted
                 .iter()
                 .map(|p| tables.divergence[k].evaluate(p[0], p[1]))
                 .collect()

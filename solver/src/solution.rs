@@ -99,7 +99,8 @@ pub(crate) struct Solved {
     pub moments: AreaMoments,
     pub poisson: f64,
     pub shear: ShearProperties,
-    /// `∫ω²` of the primal warping function about the shear centre.
+    /// `∫ω²` of the primal warping function about the shear centre; zero for a section whose
+    /// warping cannot be told from none: it carries no bimoment.
     pub warping_square: f64,
     /// Bounds on what the projection of the sources leaves out, by source.
     pub oscillation: [f64; 3],

@@ -170,7 +170,7 @@ const HALVINGS: usize = 9;
 impl Search<'_> {
     fn unit(&self, p: [f64; 2]) -> (Point, super::field::UnitStress) {
         let solved = self.evaluator.solved;
-        let table = PointTable::new(&solved.tables, vec![p]);
+        let table = PointTable::single(&solved.tables, p, self.ready);
         let at = self.evaluator.at(self.ready, &table, 0);
         (
             solved.frame.outward(Point::new(at.x, at.y)),

@@ -57,6 +57,7 @@ pub fn invert(map: &TriangleMap, p: Point) -> Option<[f64; 2]> {
         return None;
     }
     let (mut xi, mut eta) = (1.0 / 3.0, 1.0 / 3.0);
+    let mut settled = false;
     for _ in 0..20 {
         let at = map.at(xi, eta);
         let (dx, dy) = (p.x - at.x, p.y - at.y);
@@ -67,11 +68,12 @@ pub fn invert(map: &TriangleMap, p: Point) -> Option<[f64; 2]> {
         if !(xi.abs() < 10.0 && eta.abs() < 10.0) {
             return None;
         }
-        if step[0].abs() + step[1].abs() < 1e-13 {
+        if step[0].abs() + step[1].abs() < 1e-12 {
+            settled = true;
             break;
         }
     }
-    let inside = xi > -SLACK && eta > -SLACK && xi + eta < 1.0 + SLACK;
+    let inside = settled && xi > -SLACK && eta > -SLACK && xi + eta < 1.0 + SLACK;
     inside.then(|| {
         let (xi, eta) = (xi.max(0.0), eta.max(0.0));
         let over = (xi + eta).max(1.0);

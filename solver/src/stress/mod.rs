@@ -8,3 +8,6 @@ mod locate;
 pub mod measure;
 pub mod probe;
 pub mod state;
+
+#[cfg(test)]
+mod tests;

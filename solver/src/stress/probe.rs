@@ -62,8 +62,9 @@ pub(super) fn stress_in(
     forces: &SectionForces,
     at: &Located,
 ) -> Stress {
-    let table = PointTable::new(&evaluator.solved.tables, vec![at.reference]);
-    let point = evaluator.at(&evaluator.ready(at.triangle), &table, 0);
+    let ready = evaluator.ready(at.triangle);
+    let table = PointTable::single(&evaluator.solved.tables, at.reference, &ready);
+    let point = evaluator.at(&ready, &table, 0);
     fields
         .superposition
         .unit_stress(evaluator.solved, &point)
