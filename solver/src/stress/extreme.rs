@@ -98,26 +98,27 @@ pub fn extremes(
     let per = fields.lattice.points.len();
     let piece_of = |i: usize| solution.mesh.piece[i / per];
     let yield_of = |piece: u32| yield_stress.get(piece as usize).copied().flatten();
-    // One pass over the points; comparisons are on what `rank` makes the largest.
-    let mut best: Vec<Option<(f64, usize)>> = vec![None; Measure::ALL.len()];
-    for (i, unit) in fields.units.iter().enumerate() {
-        if !quotable.allowed[i] {
-            continue;
-        }
-        let stress = unit.under(forces);
-        let limit = yield_of(piece_of(i));
-        for (slot, measure) in best.iter_mut().zip(Measure::ALL) {
-            if let Some(r) = rank(*measure, &stress, limit)
-                && slot.is_none_or(|(b, _)| r > b)
-            {
-                *slot = Some((r, i));
+    let mut best = [(f64::NEG_INFINITY, usize::MAX); Measure::ALL.len()];
+    for (t, units) in fields.units.chunks_exact(per).enumerate() {
+        let limit = yield_of(solution.mesh.piece[t]);
+        for (p, unit) in units.iter().enumerate() {
+            let i = t * per + p;
+            if quotable.allowed[i] {
+                for (slot, r) in best.iter_mut().zip(ranks(&unit.under(forces), limit)) {
+                    if r > slot.0 {
+                        *slot = (r, i);
+                    }
+                }
             }
         }
     }
     let mut ready: Vec<(usize, Ready)> = Vec::new();
     let mut out = Vec::new();
     for (slot, &measure) in best.iter().zip(Measure::ALL) {
-        let Some((_, i)) = *slot else { continue };
+        let i = slot.1;
+        if i == usize::MAX {
+            continue;
+        }
         let triangle = i / per;
         if !ready.iter().any(|(t, _)| *t == triangle) {
             ready.push((triangle, evaluator.ready(triangle)));
@@ -151,6 +152,25 @@ pub fn extremes(
 fn rank(measure: Measure, stress: &Stress, limit: Option<f64>) -> Option<f64> {
     let value = measure.of(stress, limit)?;
     Some(if measure.is_least() { -value } else { value })
+}
+
+/// For each of [`Measure::ALL`] something that is largest where the measure is extreme, at the cost
+/// of one root; what there is none of is never largest.
+fn ranks(stress: &Stress, limit: Option<f64>) -> [f64; Measure::ALL.len()] {
+    let (sigma, square) = (stress.sigma, stress.tau.dot(stress.tau));
+    let mises = sigma * sigma + 3.0 * square;
+    let tresca = mises + square;
+    let twice_radius = tresca.sqrt();
+    [
+        sigma,
+        -sigma,
+        square,
+        mises,
+        tresca,
+        sigma + twice_radius,
+        twice_radius - sigma,
+        limit.map_or(f64::NEG_INFINITY, |y| mises / (y * y)),
+    ]
 }
 
 /// A search for the extreme inside one triangle.
