@@ -1,7 +1,9 @@
 //! A section as its file states it: the plain value that the solver's inputs are taken from.
 
+use sectile_mesh::Point;
 use sectile_mesh::outline::piece::Piece;
 use sectile_solver::material::Material;
+use sectile_solver::stress::forces::SectionForces;
 
 /// The units of a section file. Lengths stay in the file's unit throughout.
 #[derive(Clone, Debug, PartialEq)]
@@ -43,4 +45,53 @@ pub struct Section {
     pub assumed_material: bool,
     /// Its pieces, lengths in `units.length`.
     pub pieces: Vec<Piece>,
+    /// Its load cases.
+    pub actions: Vec<Action>,
+    /// Sums of them.
+    pub combinations: Vec<Combination>,
+    /// Points at which stresses are wanted.
+    pub probes: Vec<Probe>,
+    /// Lines along which stresses are wanted.
+    pub cuts: Vec<Cut>,
+}
+
+/// A load case: section forces.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Action {
+    /// Its name, unlike that of any other action or combination.
+    pub name: String,
+    /// Its section forces in `units.force` and `units.length` (F, F·L, F·L²), not zero; without the
+    /// torque that the shear forces have about the shear centre when `at` is given.
+    pub forces: SectionForces,
+    /// A point on the lines of action of the shear forces; `None`: the shear centre.
+    pub at: Option<Point>,
+}
+
+/// A sum of actions, each times a factor.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Combination {
+    /// Its name, unlike that of any action or other combination.
+    pub name: String,
+    /// Indices of actions, each once, and their factors.
+    pub factors: Vec<(usize, f64)>,
+}
+
+/// A point of the material.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Probe {
+    /// Its name.
+    pub name: String,
+    /// Where it is, lengths in `units.length`.
+    pub at: Point,
+}
+
+/// A line that crosses the material.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Cut {
+    /// Its name.
+    pub name: String,
+    /// Where it starts, lengths in `units.length`.
+    pub from: Point,
+    /// Where it ends.
+    pub to: Point,
 }

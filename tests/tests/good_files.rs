@@ -4,9 +4,10 @@ use std::f64::consts::PI;
 
 use sectile::read::{ReadSection, section_from_text};
 use sectile_mesh::Point;
+use sectile_solver::stress::forces::SectionForces;
 use sectile_tests::{file_name, outline_area, ring_area, section_files};
 
-fn read(name: &str) -> ReadSection {
+fn read_file(name: &str) -> ReadSection {
     let name = format!("{name}.section.toml");
     let path = section_files("good")
         .into_iter()
@@ -50,7 +51,7 @@ fn every_good_and_every_demo_file_is_read() {
 
 #[test]
 fn lengths_in_inches_feet_fractions_and_millimetres_agree_to_the_last_digit() {
-    let inches = read("units-in-inches");
+    let inches = read_file("units-in-inches");
     assert_eq!(inches.section.title, "Flat in inches (invented)");
     assert_eq!(inches.section.units.length, "in");
     assert_eq!(inches.section.units.moment, "kip in");
@@ -82,7 +83,7 @@ fn lengths_in_inches_feet_fractions_and_millimetres_agree_to_the_last_digit() {
     ));
     assert!(close(steel.shear, steel.young / 2.6));
 
-    let millimetres = read("units-in-millimetres");
+    let millimetres = read_file("units-in-millimetres");
     assert_eq!(millimetres.section.title, "units-in-millimetres");
     assert!(close(areas(&millimetres)[0], 101.6 * 9.525));
     assert_eq!(millimetres.section.materials[0].shear, 80_000.0);
@@ -92,7 +93,7 @@ fn lengths_in_inches_feet_fractions_and_millimetres_agree_to_the_last_digit() {
 
 #[test]
 fn rounded_corners_arcs_and_holes() {
-    let read = read("rounded-and-arched");
+    let read = read_file("rounded-and-arched");
     let outline = &read.section.pieces[0].outline;
     // 100 × 60, two corners cut back by (1 − π/4) r², a half disc of radius 30 beside it.
     let outer = 6000.0 - 2.0 * (1.0 - 0.25 * PI) * 100.0 + 0.5 * PI * 900.0;
@@ -121,19 +122,19 @@ fn rounded_corners_arcs_and_holes() {
 #[test]
 fn two_corners_suffice_with_an_arc_and_none_with_a_circle() {
     assert!(close(
-        areas(&read("half-disc-of-two-corners"))[0],
+        areas(&read_file("half-disc-of-two-corners"))[0],
         0.5 * PI * 2500.0
     ));
-    assert!(close(areas(&read("disc"))[0], PI * (1600.0 - 225.0)));
+    assert!(close(areas(&read_file("disc"))[0], PI * (1600.0 - 225.0)));
 }
 
 #[test]
 fn plates_tubes_and_bars() {
-    let fused = read("plates-fused");
+    let fused = read_file("plates-fused");
     assert_eq!(areas(&fused), [800.0, 800.0]);
     assert_eq!(fused.domain.parts, 1);
     assert!(!fused.section.assumed_material);
-    let apart = read("tube-and-bar-apart");
+    let apart = read_file("tube-and-bar-apart");
     assert!(close(areas(&apart)[0], PI * (2500.0 - 2025.0)));
     assert!(close(areas(&apart)[1], 2400.0 - 100.0 * PI));
     assert_eq!(apart.domain.parts, 2);
@@ -141,7 +142,7 @@ fn plates_tubes_and_bars() {
 
 #[test]
 fn a_piece_is_of_the_material_that_it_names() {
-    let read = read("one-of-two-materials");
+    let read = read_file("one-of-two-materials");
     let material = &read.section.materials[read.section.pieces[0].material];
     assert_eq!(
         (material.name.as_str(), material.young),
@@ -151,7 +152,7 @@ fn a_piece_is_of_the_material_that_it_names() {
 
 #[test]
 fn other_spellings_of_toml_say_the_same() {
-    let read = read("dotted-keys");
+    let read = read_file("dotted-keys");
     assert_eq!(read.section.title, "Dotted (invented)");
     assert_eq!(areas(&read), [24.0]);
     assert_eq!(read.section.materials[0].young, 210_000.0);
@@ -159,7 +160,7 @@ fn other_spellings_of_toml_say_the_same() {
 
 #[test]
 fn profiles_have_the_areas_that_their_dimensions_give() {
-    let read = read("profiles");
+    let read = read_file("profiles");
     let corner = 1.0 - 0.25 * PI; // of a fillet of radius 1
     let sloped = 200.0 * 8.0 + 2.0 * 72.0 * (12.0 - 0.08 * 4.0);
     let expected = [
@@ -189,7 +190,7 @@ fn profiles_have_the_areas_that_their_dimensions_give() {
 
 #[test]
 fn a_piece_is_mirrored_then_turned_then_moved() {
-    let read = read("placed");
+    let read = read_file("placed");
     let has = |piece: usize, x: f64, y: f64| {
         let sides = &read.section.pieces[piece].outline.outer.sides;
         let at = Point::new(x, y);
@@ -217,6 +218,123 @@ fn a_piece_is_mirrored_then_turned_then_moved() {
     assert!(hole.circle.centre.distance(Point::new(-310.0, 10.0)) < 1e-12);
     let (sin, cos) = 0.5_f64.sin_cos();
     has(3, 10.0 * cos - 5.0 * sin, 300.0 + 10.0 * sin + 5.0 * cos);
+}
+
+/// Section forces in the order of the file format's keys N, Vx, Vy, Mx, My, T, B, Tw.
+fn assert_forces(found: SectionForces, expected: [f64; 8]) {
+    let f = found;
+    for (found, expected) in [f.n, f.vx, f.vy, f.mx, f.my, f.t, f.b, f.tw]
+        .into_iter()
+        .zip(expected)
+    {
+        assert!(close(found, expected), "{f:?}: {found}, not {expected}");
+    }
+}
+
+#[test]
+fn actions_are_in_the_units_of_force_and_of_length() {
+    let read = read_file("actions-everything");
+    let section = &read.section;
+    let names: Vec<&str> = section.actions.iter().map(|a| a.name.as_str()).collect();
+    assert_eq!(
+        names,
+        ["bare numbers", "own units", "action 3", "turned round"]
+    );
+    // Kips and inches: 1 kip ft = 12 kip in, 1 kip ft in = 12 kip in², 1 kip ft² = 144 kip in².
+    assert_forces(
+        section.actions[0].forces,
+        [3.0, -1.5, 2.0, 120.0, -3.0, 12.0, 24.0, 6.0],
+    );
+    assert_eq!(section.actions[0].at, Some(Point::new(-1.0, 12.0)));
+    // 1 kip = 4448.2216152605 N and 1 in = 0.0254 m by definition.
+    let kip_inch = 4_448.221_615_260_5 * 0.0254;
+    assert_forces(
+        section.actions[1].forces,
+        [0.5, 1.0, -0.5, 12.0, 12.0, 113.0 / kip_inch, 288.0, 36.0],
+    );
+    assert_eq!(section.actions[1].at, None);
+    assert_forces(
+        section.actions[2].forces,
+        [0.0, 0.0, 0.0, 0.0, 0.0, 12.0, 0.0, 0.0],
+    );
+    assert_forces(
+        section.actions[3].forces,
+        [0.0, 0.0, 0.0, 0.0, 0.0, 0.0, -432.0, 0.0],
+    );
+
+    // Newtons and metres, bare moments in kN cm = 10 N m.
+    let metric = read_file("actions-in-metres");
+    assert_forces(
+        metric.section.actions[0].forces,
+        [1.0, 0.0, 0.0, 10.0, 0.0, 0.0, 10.0, 0.0],
+    );
+    assert_forces(
+        metric.section.actions[1].forces,
+        [1e6, 0.0, 0.0, 1.0, 0.0, 0.0, 1e3, 0.0],
+    );
+}
+
+#[test]
+fn combinations_probes_and_cuts_are_as_written() {
+    let read = read_file("actions-everything");
+    let section = &read.section;
+    assert_eq!(section.combinations[0].name, "ultimate");
+    assert_eq!(
+        section.combinations[0].factors,
+        [(1, 1.5), (0, 1.35), (2, -1.0)]
+    );
+    assert_eq!(section.combinations[1].name, "combination 2");
+    assert_eq!(section.combinations[1].factors, [(3, 2.0)]);
+
+    let probes: Vec<(&str, Point)> = section
+        .probes
+        .iter()
+        .map(|probe| (probe.name.as_str(), probe.at))
+        .collect();
+    assert_eq!(
+        probes,
+        [
+            ("toe", Point::new(0.5, 0.5)),
+            ("probe 2", Point::new(0.5, 4.0)),
+            ("corner", Point::new(4.0, 8.0)),
+        ]
+    );
+    let [web, flange] = &section.cuts[..] else {
+        panic!("{:?}", section.cuts);
+    };
+    assert_eq!(
+        (web.name.as_str(), web.from),
+        ("web", Point::new(-1.0, 4.0))
+    );
+    assert_eq!(flange.name, "cut 2");
+    assert_eq!(flange.from, Point::new(3.0, 0.25));
+    assert_eq!(flange.to, Point::new(2.0, 0.25));
+}
+
+#[test]
+fn faults_that_later_stages_find_are_told_like_those_of_reading() {
+    let read = read_file("one-of-two-materials");
+    let faults = read.refused(vec![read.yield_missing(read.section.pieces[0].material)]);
+    let report = faults.to_string();
+    assert!(
+        report.contains("material \"steel\" has no yield stress to compare with"),
+        "{report}"
+    );
+    assert!(report.contains("[material.steel]"), "{report}");
+    let fault = &faults.faults()[0];
+    let line = faults.line(fault).expect("the fault is located");
+    let text = std::fs::read_to_string(
+        section_files("good")
+            .iter()
+            .find(|path| file_name(path) == faults.file())
+            .expect("the file is there"),
+    )
+    .expect("good files are UTF-8");
+    assert_eq!(text.lines().nth(line - 1), Some("[material.steel]"));
+
+    let assumed = read_file("rounded-and-arched");
+    let report = assumed.refused(vec![assumed.yield_missing(0)]).to_string();
+    assert!(report.contains("has no material"), "{report}");
 }
 
 /// 20 × 40 and a segment of height 10 on a chord of 40: radius 25, half angle asin(4/5).

@@ -16,6 +16,9 @@ use crate::section::Units;
 /// Coordinates and sizes beyond this are refused: their squares would lose the section's shape.
 const LARGEST_LENGTH: f64 = 1e9;
 
+/// Section forces beyond this are refused: their squares must stay finite in any unit.
+const LARGEST_ACTION: f64 = 1e30;
+
 /// What all readers share: the file's units and the faults found so far.
 #[derive(Debug)]
 pub(super) struct Reader {
@@ -155,10 +158,18 @@ fn other_words(word: &str) -> &'static [&'static str] {
         "radius" | "fillet" | "rounding" => &["round", "r"],
         "width" | "breadth" => &["b"],
         "height" | "depth" => &["h"],
-        "poisson" | "v" => &["nu"],
+        "poisson" => &["nu"],
+        "v" => &["nu", "Vy"],
+        "axial" | "normal" | "fz" | "nz" | "p" => &["N"],
+        "fx" | "qx" => &["Vx"],
+        "qy" | "f" | "q" => &["Vy"],
+        "m" | "bending" => &["Mx"],
+        "torque" | "torsion" | "mz" | "mt" | "tz" => &["T"],
+        "bimoment" | "mw" | "bw" => &["B"],
         "young" | "modulus" => &["E"],
         "g" => &["shear"],
-        "fy" | "strength" => &["yield"],
+        "fy" => &["yield", "Vy"],
+        "strength" => &["yield"],
         "rho" | "weight" => &["density"],
         "rotate" | "rotation" | "angle" => &["turn"],
         "flip" | "reflect" => &["mirror"],
@@ -170,6 +181,9 @@ fn other_words(word: &str) -> &'static [&'static str] {
         "start" => &["from"],
         "end" => &["to"],
         "part" | "parts" | "pieces" => &["piece"],
+        "load" | "loads" | "case" | "cases" => &["action", "factors"],
+        "actions" | "sum" | "coefficients" => &["action", "factors"],
+        "line" | "section" | "slice" => &["cut"],
         _ => &[],
     }
 }
@@ -255,8 +269,49 @@ impl Reader {
         what: &str,
         dimension: Dimension,
     ) -> Option<f64> {
+        let unit = self.unit(dimension);
+        self.converted(value, what, unit, unit)
+    }
+
+    /// A section force, moment or bimoment in the file's units of force and of length, `F`, `F·L` or
+    /// `F·L²`; a bare number is in the unit of force, of moment, or of moment times length.
+    pub(super) fn action(
+        &mut self,
+        value: &Value<'_>,
+        what: &str,
+        dimension: Dimension,
+    ) -> Option<f64> {
+        let (force, length) = (self.unit(Dimension::Force), self.unit(Dimension::Length));
+        let consistent = match dimension {
+            Dimension::Moment => force.times_length(length),
+            Dimension::Bimoment => force.times_length(length).times_length(length),
+            _ => force,
+        };
+        let amount = self.converted(value, what, self.unit(dimension), consistent)?;
+        if amount.abs() <= LARGEST_ACTION {
+            return Some(amount);
+        }
+        self.faults.push(Fault::at(
+            span(value),
+            "too large",
+            format!("{what} is beyond all measure"),
+            "check the exponent and the unit; see [units]",
+        ));
+        None
+    }
+
+    /// A quantity in the unit `wanted`: a bare number is in `bare`, a text has its own.
+    fn converted(
+        &mut self,
+        value: &Value<'_>,
+        what: &str,
+        bare: Unit,
+        wanted: Unit,
+    ) -> Option<f64> {
+        let dimension = wanted.dimension;
         if let Some(number) = plain_number(value) {
-            return self.finite(number, value, what);
+            let number = self.finite(number, value, what)?;
+            return self.finite(bare.convert(number, wanted), value, what);
         }
         let Some(text) = value.as_str() else {
             self.wrong_type(
@@ -269,7 +324,7 @@ impl Reader {
             );
             return None;
         };
-        match quantity(text, dimension, self.unit(dimension)) {
+        match quantity(text, dimension, wanted) {
             Ok(number) => Some(number),
             Err(misread) => {
                 self.faults.push(Fault::at(
@@ -371,6 +426,11 @@ impl Reader {
             Dimension::Length => self.units.length,
             Dimension::Force => self.units.force,
             Dimension::Moment => &self.units.moment,
+            Dimension::Bimoment => {
+                return self
+                    .unit(Dimension::Moment)
+                    .times_length(self.unit(Dimension::Length));
+            }
             Dimension::Stress => self.units.stress,
             Dimension::Density => return Unit::KG_PER_M3,
             Dimension::Angle => return Unit::DEGREE,

@@ -211,12 +211,13 @@ impl<'a> Sources<'a> {
     }
 }
 
-fn point(at: Point) -> String {
+/// A point for a message.
+pub(super) fn point(at: Point) -> String {
     format!("({}, {})", short(at.x), short(at.y))
 }
 
 /// Six significant digits, without trailing zeros and without a negative zero.
-fn short(value: f64) -> String {
+pub(super) fn short(value: f64) -> String {
     if value == 0.0 || !value.is_finite() {
         return "0".to_owned();
     }

@@ -8,28 +8,12 @@ use super::fields::{Reader, span};
 
 /// Keys of the top level, what they are for, and how their entries are headed.
 const LATER: &[(&str, &str, &str)] = &[
-    ("action", "load cases", "[[action]]"),
-    (
-        "combination",
-        "combinations of load cases",
-        "[[combination]]",
-    ),
-    ("probe", "stresses at a point", "[[probe]]"),
-    ("cut", "stresses along a line", "[[cut]]"),
     ("seam", "seams", "[[seam]]"),
     ("span", "a member and its loads", "[span]"),
 ];
 
 /// The keys of such entries.
-pub(super) const KEYS: &[&str] = &[
-    "action",
-    "combination",
-    "probe",
-    "cut",
-    "seam",
-    "span",
-    "contact",
-];
+pub(super) const KEYS: &[&str] = &["seam", "span", "contact"];
 
 /// A fault for each kind of entry that the file has of these.
 pub(super) fn refuse(reader: &mut Reader, top: &Table<'_>) {

@@ -1,5 +1,7 @@
 //! The tables `[material.NAME]`.
 
+use std::ops::Range;
+
 use sectile_solver::material::Material;
 use toml_span::Value;
 
@@ -65,6 +67,18 @@ pub(super) fn read_all(reader: &mut Reader, value: &Value<'_>) -> Vec<Material> 
             ..read(reader, value).unwrap_or_else(assumed)
         })
         .collect()
+}
+
+/// Where the names of the materials are written, in the order of the file.
+pub(super) fn heads(value: &Value<'_>) -> Vec<Range<usize>> {
+    let mut heads: Vec<Range<usize>> = value
+        .as_table()
+        .into_iter()
+        .flat_map(|table| table.keys())
+        .map(|key| key.span.into())
+        .collect();
+    heads.sort_by_key(|range| range.start);
+    heads
 }
 
 fn read(reader: &mut Reader, value: &Value<'_>) -> Option<Material> {

@@ -1,5 +1,8 @@
 //! Section files in: TOML text to a [`Section`] and its [`Domain`], or every fault at once.
 
+mod action;
+mod combination;
+mod cut;
 mod excerpt;
 pub mod fault;
 mod fields;
@@ -7,9 +10,12 @@ pub mod file;
 mod geometry;
 mod later;
 mod material;
+mod names;
 pub mod near;
 mod piece;
 mod place;
+pub mod places;
+mod probe;
 mod profile;
 pub mod quantity;
 mod ring;
@@ -23,16 +29,27 @@ use sectile_mesh::domain::{self, Domain};
 use sectile_mesh::outline::piece::Piece;
 use sectile_solver::material::Material;
 
-use crate::section::Section;
+use crate::section::{Action, Combination, Cut, Probe, Section};
 use fault::{Fault, Faults};
 use fields::{Fields, Reader};
 use geometry::{PieceText, Sources};
+use names::Names;
+use places::Places;
 use syntax::printable;
 
 pub use file::section_from_path;
 
 /// Keys of the file's top level.
-const KEYS: &[&str] = &["title", "units", "material", "piece"];
+const KEYS: &[&str] = &[
+    "title",
+    "units",
+    "material",
+    "piece",
+    "action",
+    "combination",
+    "probe",
+    "cut",
+];
 
 /// A section file that has been read without fault.
 #[derive(Clone, Debug, PartialEq)]
@@ -41,6 +58,8 @@ pub struct ReadSection {
     pub section: Section,
     /// The valid planar regions that its pieces make.
     pub domain: Domain,
+    /// Where the file states it, for faults that are found later.
+    pub places: Places,
 }
 
 /// Reads the section file `text`; messages call it `name`.
@@ -65,13 +84,22 @@ pub fn section_from_text(name: &str, text: &str) -> Result<ReadSection, Box<Faul
         units: units::defaults(),
         faults: Vec::new(),
     };
-    match read(&mut reader, name, &value) {
+    let read = read(&mut reader, name, text, &value);
+    if let Some(read) = &read {
+        reader.faults.extend(read.misplaced());
+    }
+    match read {
         Some(read) if reader.faults.is_empty() => Ok(read),
         _ => Err(Faults::new(name, text, reader.faults)),
     }
 }
 
-fn read(reader: &mut Reader, name: &str, value: &toml_span::Value<'_>) -> Option<ReadSection> {
+fn read(
+    reader: &mut Reader,
+    name: &str,
+    text: &str,
+    value: &toml_span::Value<'_>,
+) -> Option<ReadSection> {
     let known = [KEYS, later::KEYS].concat();
     let fields = Fields::open(reader, value, "a section file", &known)?;
     later::refuse(reader, value.as_table()?);
@@ -90,6 +118,19 @@ fn read(reader: &mut Reader, name: &str, value: &toml_span::Value<'_>) -> Option
         .get("material")
         .map(|value| material::read_all(reader, value))
         .unwrap_or_default();
+    let loads = loads(reader, &fields);
+    let (probes, at_probes): (Vec<Probe>, Vec<_>) = fields
+        .get("probe")
+        .map(|value| probe::read_all(reader, value))
+        .unwrap_or_default()
+        .into_iter()
+        .unzip();
+    let (cuts, at_cuts): (Vec<Cut>, Vec<_>) = fields
+        .get("cut")
+        .map(|value| cut::read_all(reader, value))
+        .unwrap_or_default()
+        .into_iter()
+        .unzip();
     let Some(value) = fields.get("piece").filter(|value| !is_empty_list(value)) else {
         if !fields.is_misspelt("piece") {
             reader.faults.push(Fault::whole(
@@ -121,9 +162,44 @@ fn read(reader: &mut Reader, name: &str, value: &toml_span::Value<'_>) -> Option
             },
             assumed_material,
             pieces,
+            actions: loads.0,
+            combinations: loads.1,
+            probes,
+            cuts,
         },
         domain: domain?,
+        places: Places {
+            file: name.to_owned(),
+            text: text.to_owned(),
+            materials: fields
+                .get("material")
+                .map(material::heads)
+                .unwrap_or_default(),
+            probes: at_probes,
+            cuts: at_cuts,
+        },
     })
+}
+
+/// The actions and their combinations, which share their names.
+fn loads(reader: &mut Reader, fields: &Fields<'_>) -> (Vec<Action>, Vec<Combination>) {
+    let mut names = Names::new("actions or combinations");
+    let actions = match fields.get("action") {
+        Some(value) => action::read_all(reader, value, &mut names),
+        // Combinations cannot be matched to actions under a misspelt heading.
+        None => (!fields.is_misspelt("action")).then(Vec::new),
+    };
+    let combinations = fields
+        .get("combination")
+        .map(|value| combination::read_all(reader, value, actions.as_deref(), &mut names));
+    (
+        actions
+            .into_iter()
+            .flatten()
+            .filter_map(|read| read.action)
+            .collect(),
+        combinations.into_iter().flatten().flatten().collect(),
+    )
 }
 
 /// The domain of the pieces; with some missing, faults that these could cure are left out.
@@ -144,15 +220,8 @@ fn regions(
                 texts,
                 unit: reader.units.length,
             };
-            // An outline that crosses itself may enclose nothing for that reason only.
-            let crosses = |piece: usize| {
-                found
-                    .iter()
-                    .any(|fault| matches!(fault, Found::SelfCrossing { a, .. } if a.piece == piece))
-            };
             let certain = |fault: &&Found| match **fault {
                 Found::PiecesTouchInPoint { .. } => complete,
-                Found::NoArea { piece } => !crosses(piece),
                 _ => true,
             };
             let told = found

@@ -1,6 +1,5 @@
 //! The tables `[[piece]]`.
 
-use std::collections::BTreeMap;
 use std::ops::Range;
 
 use sectile_mesh::outline::piece::{Outline, Piece};
@@ -11,6 +10,7 @@ use toml_span::Value;
 use super::fault::Fault;
 use super::fields::{Fields, Reader, span};
 use super::geometry::PieceText;
+use super::names::{Names, tables};
 use super::near::{listed, nearest};
 use super::ring::{self, RingText};
 use super::syntax::printable;
@@ -31,20 +31,10 @@ pub(super) fn read_all(
     value: &Value<'_>,
     materials: &[Material],
 ) -> Vec<Option<Read>> {
-    let Some(list) = value
-        .as_array()
-        .filter(|list| list.iter().all(|v| v.as_table().is_some()))
-    else {
-        reader.faults.push(Fault::at(
-            span(value),
-            "",
-            "`piece` must be a list of tables",
-            "head every piece with [[piece]], two brackets on either side",
-        ));
-        return Vec::new();
-    };
-    let mut names: BTreeMap<String, Range<usize>> = BTreeMap::new();
-    list.iter()
+    let mut names = Names::new("pieces");
+    tables(reader, value, "piece")
+        .unwrap_or_default()
+        .iter()
         .enumerate()
         .map(|(i, value)| read(reader, value, i, materials, &mut names))
         .collect()
@@ -55,10 +45,10 @@ fn read(
     value: &Value<'_>,
     index: usize,
     materials: &[Material],
-    names: &mut BTreeMap<String, Range<usize>>,
+    names: &mut Names,
 ) -> Option<Read> {
     let fields = Fields::open(reader, value, "a piece", KEYS)?;
-    let (name, head) = name(reader, &fields, index, names);
+    let (name, head) = names.of(reader, &fields, index);
     let material = material(reader, &fields, &name, materials);
     let body = body(reader, &fields, &name);
     let holes = fields.get("holes").map(|value| holes(reader, value));
@@ -82,43 +72,6 @@ fn read(
         },
         PieceText { head, rings },
     ))
-}
-
-/// The piece's name and where its reader finds it; a piece without one is "piece 1" and so on.
-fn name(
-    reader: &mut Reader,
-    fields: &Fields<'_>,
-    index: usize,
-    names: &mut BTreeMap<String, Range<usize>>,
-) -> (String, Range<usize>) {
-    let written = fields.get("name").and_then(|value| {
-        let text = reader.line(value, "the name of a piece")?;
-        if text.trim().is_empty() {
-            reader.faults.push(Fault::at(
-                span(value),
-                "empty",
-                "the name of a piece must not be empty",
-                "give a name, or leave the key out",
-            ));
-            return None;
-        }
-        Some((text.to_owned(), span(value)))
-    });
-    let (name, head) = written.unwrap_or_else(|| (format!("piece {}", index + 1), fields.span()));
-    if let Some(first) = names.get(&name) {
-        reader.faults.push(
-            Fault::at(
-                head.clone(),
-                "again here",
-                format!("two pieces are named \"{}\"", printable(&name)),
-                "give every piece a name of its own: messages and results tell pieces apart by it",
-            )
-            .and(first.clone(), "first here"),
-        );
-    } else {
-        names.insert(name.clone(), head.clone());
-    }
-    (name, head)
 }
 
 fn material(

@@ -16,6 +16,8 @@ pub enum Dimension {
     Force,
     /// Force times length.
     Moment,
+    /// Force times length squared.
+    Bimoment,
     /// Force over area: stress, and the moduli of a material.
     Stress,
     /// Mass over volume.
@@ -26,8 +28,8 @@ pub enum Dimension {
     Slope,
 }
 
-/// A unit: `numerator / denominator` of the base unit of its dimension (0.1 mm, N, N mm·10, Pa, kg/m³,
-/// degree, per cent).
+/// A unit: `numerator / denominator` of the base unit of its dimension (0.1 mm, N, N·0.1 mm,
+/// N·(0.1 mm)², Pa, kg/m³, degree, per cent).
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Unit {
     /// What it measures.
@@ -45,6 +47,10 @@ pub const STRESSES: &[&str] = &["Pa", "kPa", "MPa", "GPa", "psi", "ksi"];
 const MOMENTS: &[&str] = &[
     "N m", "kN m", "MN m", "N mm", "kN mm", "lbf in", "lbf ft", "kip in", "kip ft",
 ];
+const BIMOMENTS: &[&str] = &[
+    "N m2", "kN m2", "MN m2", "N mm2", "kN mm2", "kN cm2", "lbf in2", "lbf ft2", "kip in2",
+    "kip ft2",
+];
 const DENSITIES: &[&str] = &["kg/m3", "g/cm3", "t/m3", "lb/ft3", "lb/in3"];
 const ANGLES: &[&str] = &["deg", "rad"];
 const SLOPES: &[&str] = &["%", "deg"];
@@ -57,6 +63,7 @@ impl Dimension {
             Self::Length => "a length",
             Self::Force => "a force",
             Self::Moment => "a moment",
+            Self::Bimoment => "a bimoment",
             Self::Stress => "a stress",
             Self::Density => "a density",
             Self::Angle => "an angle",
@@ -71,6 +78,7 @@ impl Dimension {
             Self::Length => LENGTHS,
             Self::Force => FORCES,
             Self::Moment => MOMENTS,
+            Self::Bimoment => BIMOMENTS,
             Self::Stress => STRESSES,
             Self::Density => DENSITIES,
             Self::Angle => ANGLES,
@@ -85,6 +93,7 @@ impl Dimension {
             Self::Length => "3/8 in",
             Self::Force => "40 kN",
             Self::Moment => "12.5 kN m",
+            Self::Bimoment => "1.2 kN m2",
             Self::Stress => "210 GPa",
             Self::Density => "7850 kg/m3",
             Self::Angle => "30 deg",
@@ -142,7 +151,7 @@ impl Unit {
             _ => {
                 return length(name)
                     .map_or_else(
-                        || moment(name),
+                        || moment(name).or_else(|| bimoment(name)),
                         |tenths| Some((Dimension::Length, tenths, 1.0)),
                     )
                     .map(|(dimension, numerator, denominator)| Self {
@@ -157,6 +166,21 @@ impl Unit {
             numerator,
             denominator,
         })
+    }
+
+    /// This unit of force times the unit of length `arm`, a unit of moment; or this unit of moment
+    /// times it, one of bimoment.
+    #[must_use]
+    pub fn times_length(self, arm: Self) -> Self {
+        let dimension = match self.dimension {
+            Dimension::Force => Dimension::Moment,
+            _ => Dimension::Bimoment,
+        };
+        Self {
+            dimension,
+            numerator: self.numerator * arm.numerator,
+            denominator: self.denominator * arm.denominator,
+        }
     }
 
     /// `value` of this unit, expressed in `other` of the same dimension.
@@ -201,6 +225,15 @@ pub fn moment_parts(name: &str) -> Option<(&'static str, &'static str)> {
             .find(|arm| **arm == rest)
             .map(|arm| (*force, *arm))
     })
+}
+
+/// A unit of bimoment: as one of moment, its length squared (`m2`, `m²` or `m^2`).
+fn bimoment(name: &str) -> Option<(Dimension, f64, f64)> {
+    let plain = name.strip_suffix(['2', '²'])?;
+    let plain = plain.strip_suffix('^').unwrap_or(plain);
+    let (force, arm) = moment_parts(plain)?;
+    let (force, arm) = (Unit::named(force)?, length(arm)?);
+    Some((Dimension::Bimoment, force.numerator * arm * arm, 1.0))
 }
 
 /// What is wrong with a text that should be a quantity: message and remedy.
@@ -369,6 +402,10 @@ mod tests {
         assert_eq!(to("1 kip ft", "kip in"), 12.0);
         assert_eq!(to("2 kN·m", "kN m"), 2.0);
         assert_eq!(to("2kNm", "kN m"), 2.0);
+        assert_eq!(to("1.2 kN m2", "kN mm2"), 1.2e6);
+        assert_eq!(to("1.2 kN m^2", "kN·m²"), 1.2);
+        assert_eq!(to("3kNm²", "N m2"), 3000.0);
+        assert_eq!(to("1 kip ft2", "kip in^2"), 144.0);
         assert_eq!(to("1 kip", "lbf"), 1000.0);
         assert_eq!(to("7.85 g/cm3", "kg/m3"), 7850.0);
         assert!((to("1 rad", "deg") - 57.295_779_513_082_32).abs() < 1e-13);

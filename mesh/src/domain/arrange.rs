@@ -7,7 +7,7 @@ use super::hole::misplaced_holes;
 use super::meeting::{limit_crossings, meetings};
 use super::overlap::second_opinion;
 use super::pinch::{connected_parts, pinches};
-use super::sound::unsound;
+use super::sound::{empty_rings, unsound};
 use super::stack::overlaps;
 use super::{Domain, TOLERANCE};
 use crate::outline::piece::Piece;
@@ -39,6 +39,7 @@ pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
         }
     }
     limit_crossings(&mut faults);
+    faults.extend(empty_rings(pieces, &faults, tolerance));
     if faults.is_empty() {
         faults.extend(misplaced_holes(&edges));
     }

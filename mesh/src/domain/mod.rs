@@ -14,6 +14,7 @@ mod pinch;
 mod side;
 mod sound;
 mod stack;
+mod within;
 
 use crate::outline::piece::Piece;
 use crate::outline::side::Arc;

@@ -1,4 +1,5 @@
-//! Rings that are none: open ones, sides that are not numbers, arcs that miss their ends.
+//! Rings that are none: open ones, sides that are not numbers, arcs that miss their ends; and rings that
+//! enclose nothing.
 
 use std::f64::consts::TAU;
 
@@ -16,7 +17,6 @@ pub fn unsound(pieces: &[Piece], tolerance: f64) -> Vec<Fault> {
     let mut faults = Vec::new();
     for (piece, p) in pieces.iter().enumerate() {
         let rings = std::iter::once(&p.outline.outer).chain(&p.outline.holes);
-        let before = faults.len();
         for (r, ring) in rings.enumerate() {
             if let Some(reason) = unsound_ring(ring, tolerance) {
                 let which = if r == 0 {
@@ -28,17 +28,32 @@ pub fn unsound(pieces: &[Piece], tolerance: f64) -> Vec<Fault> {
                 faults.push(Fault::NotSimple { piece, reason });
             }
         }
-        if faults.len() > before {
-            continue;
-        }
-        if enclosed_by_nothing(&p.outline.outer, tolerance) {
-            faults.push(Fault::NoArea { piece });
-        }
-        for (h, hole) in p.outline.holes.iter().enumerate() {
-            if enclosed_by_nothing(hole, tolerance) {
-                let reason = format!("hole {} encloses no area", h + 1);
-                faults.push(Fault::NotSimple { piece, reason });
+    }
+    faults
+}
+
+/// Rings that enclose no area, but for those of which `crossings` says that they cross themselves: the
+/// parts of such a ring may cancel, and the crossing is what its writer has to repair.
+#[must_use]
+pub fn empty_rings(pieces: &[Piece], crossings: &[Fault], tolerance: f64) -> Vec<Fault> {
+    let crosses = |piece: usize, ring: usize| {
+        crossings.iter().any(|fault| {
+            matches!(fault, Fault::SelfCrossing { a, .. } if (a.piece, a.ring) == (piece, ring))
+        })
+    };
+    let mut faults = Vec::new();
+    for (piece, p) in pieces.iter().enumerate() {
+        let rings = std::iter::once(&p.outline.outer).chain(&p.outline.holes);
+        for (r, ring) in rings.enumerate() {
+            if !enclosed_by_nothing(ring, tolerance) || crosses(piece, r) {
+                continue;
             }
+            faults.push(if r == 0 {
+                Fault::NoArea { piece }
+            } else {
+                let reason = format!("hole {r} encloses no area");
+                Fault::NotSimple { piece, reason }
+            });
         }
     }
     faults
