@@ -81,7 +81,7 @@ pub struct Combination {
 pub struct Probe {
     /// Its name.
     pub name: String,
-    /// Where it is, lengths in `units.length`.
+    /// Where it is, lengths in `units.length`; on the edge exactly if the file means the edge.
     pub at: Point,
 }
 

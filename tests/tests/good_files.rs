@@ -312,6 +312,23 @@ fn combinations_probes_and_cuts_are_as_written() {
 }
 
 #[test]
+fn probes_written_with_few_digits_lie_on_the_round_edge_they_mean() {
+    let text = "[[piece]]\noutline = { circle = { at = [0, 0], d = 100 } }\n\
+        [[probe]]\nat = [35.35534, 35.35534]\n[[probe]]\nat = [35.35533, 35.35533]\n";
+    let read = section_from_text("disc.section.toml", text).expect("both are on the disc");
+    let [outside, inside] = &read.section.probes[..] else {
+        panic!("{:?}", read.section.probes);
+    };
+    let radius = |at: Point| at.distance(Point::default());
+    assert!((radius(outside.at) - 50.0).abs() < 1e-13, "{outside:?}");
+    assert_eq!(inside.at, Point::new(35.35533, 35.35533));
+    let farther = text.replace("35.35534", "35.356");
+    let faults = section_from_text("disc.section.toml", &farther).expect_err("one is off it");
+    assert_eq!(faults.faults().len(), 1);
+    assert_eq!(faults.line(&faults.faults()[0]), Some(4));
+}
+
+#[test]
 fn faults_that_later_stages_find_are_told_like_those_of_reading() {
     let read = read_file("one-of-two-materials");
     let faults = read.refused(vec![read.yield_missing(read.section.pieces[0].material)]);

@@ -84,9 +84,9 @@ pub fn section_from_text(name: &str, text: &str) -> Result<ReadSection, Box<Faul
         units: units::defaults(),
         faults: Vec::new(),
     };
-    let read = read(&mut reader, name, text, &value);
-    if let Some(read) = &read {
-        reader.faults.extend(read.misplaced());
+    let mut read = read(&mut reader, name, text, &value);
+    if let Some(read) = &mut read {
+        reader.faults.extend(read.settle());
     }
     match read {
         Some(read) if reader.faults.is_empty() => Ok(read),

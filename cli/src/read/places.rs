@@ -7,9 +7,9 @@ use super::fault::{Fault, Faults};
 use super::geometry::{point, short};
 use super::syntax::printable;
 
-/// A probe may lie outside of the material by this part of the section's size: as far as a point on a
-/// round edge is off when it is written with six or seven digits.
-pub const PROBE_TOLERANCE: f64 = 1e-6;
+/// A probe that lies outside of the material by no more than this part of the section's size is meant
+/// to lie on the edge: so far off is a point of a round edge written with six or seven digits.
+const SLACK: f64 = 1e-6;
 
 /// The text of a section file and the places in it that faults of its entries mark.
 #[derive(Clone, Debug, PartialEq)]
@@ -108,20 +108,27 @@ impl ReadSection {
         )
     }
 
-    /// The faults of probes outside of the material and of cuts that miss it.
-    pub(super) fn misplaced(&self) -> Vec<Fault> {
-        let tolerance = PROBE_TOLERANCE * self.domain.size();
-        let outside = |i: &usize| !self.domain.contains(self.section.probes[*i].at, tolerance);
-        let misses = |i: &usize| {
-            let cut = &self.section.cuts[*i];
-            !self.domain.is_crossed(cut.from, cut.to)
-        };
-        let probes = (0..self.section.probes.len()).filter(outside);
-        let cuts = (0..self.section.cuts.len()).filter(misses);
-        probes
-            .map(|i| self.probe_outside(i))
-            .chain(cuts.map(|i| self.cut_misses(i)))
-            .collect()
+    /// Moves probes that are outside by their rounding only onto the edge; the faults of those that
+    /// are farther outside, and of cuts that miss the material.
+    pub(super) fn settle(&mut self) -> Vec<Fault> {
+        let slack = SLACK * self.domain.size();
+        let mut faults = Vec::new();
+        for i in 0..self.section.probes.len() {
+            let at = self.section.probes[i].at;
+            if self.domain.contains(at, 0.0) {
+                continue;
+            }
+            match self.domain.nearest_on_boundary(at) {
+                Some(near) if near.distance(at) <= slack => self.section.probes[i].at = near,
+                _ => faults.push(self.probe_outside(i)),
+            }
+        }
+        for (i, cut) in self.section.cuts.iter().enumerate() {
+            if !self.domain.is_crossed(cut.from, cut.to) {
+                faults.push(self.cut_misses(i));
+            }
+        }
+        faults
     }
 }
 

@@ -34,8 +34,8 @@ fn a_figure_of_eight_names_both_sides_and_the_crossing() {
     assert_eq!(
         found,
         [Fault::SelfCrossing {
-            a: place(0),
-            b: place(2),
+            a: place(1),
+            b: place(3),
             at: point(2.0, 2.0),
         }]
     );
