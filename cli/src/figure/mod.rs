@@ -19,6 +19,7 @@ pub mod outline;
 pub mod page;
 pub mod path;
 pub mod place;
+pub mod png;
 pub mod rect;
 pub mod section;
 pub mod stress;

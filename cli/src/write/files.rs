@@ -126,13 +126,17 @@ pub fn check(folder: &Path, source: &str, names: &[&str]) -> Result<(), WriteErr
     }
 }
 
-/// Writes the files `(name, text)` of one section into `folder`, which is made if need be: each to a
+/// Writes the files `(name, text or bytes)` of one section into `folder`, which is made if need be: each to a
 /// temporary file beside its place first; only when all are on the disk are they renamed,
 /// `results.json` before the others, so that a folder always says whose it is.
 ///
 /// # Errors
 /// As [`check`]; or the system refused, and the temporary files are removed again.
-pub fn write_all(folder: &Path, source: &str, files: &[(&str, &str)]) -> Result<(), WriteError> {
+pub fn write_all<B: AsRef<[u8]>>(
+    folder: &Path,
+    source: &str,
+    files: &[(&str, B)],
+) -> Result<(), WriteError> {
     let names: Vec<&str> = files.iter().map(|(name, _)| *name).collect();
     check(folder, source, &names)?;
     fs::create_dir_all(folder).map_err(|source| WriteError::System {
@@ -140,16 +144,16 @@ pub fn write_all(folder: &Path, source: &str, files: &[(&str, &str)]) -> Result<
         what: "made",
         source,
     })?;
-    let mut order: Vec<&(&str, &str)> = files.iter().collect();
+    let mut order: Vec<&(&str, B)> = files.iter().collect();
     order.sort_by_key(|(name, _)| *name != RESULTS);
 
     let mut temporary = Vec::new();
     let outcome = order
         .iter()
-        .try_for_each(|(name, text)| {
+        .try_for_each(|(name, content)| {
             let path = temporary_path(&folder.join(name));
             temporary.push(path.clone());
-            write_through(&path, text)
+            write_through(&path, content.as_ref())
         })
         .and_then(|()| {
             order
@@ -172,7 +176,7 @@ pub fn write_all(folder: &Path, source: &str, files: &[(&str, &str)]) -> Result<
 /// The system refused.
 pub fn write(path: &Path, text: &str) -> Result<(), WriteError> {
     let temporary = temporary_path(path);
-    let outcome = write_through(&temporary, text).and_then(|()| put_in_place(&temporary, path));
+    let outcome = write_through(&temporary, text.as_bytes()).and_then(|()| put_in_place(&temporary, path));
     if outcome.is_err() {
         let _ = fs::remove_file(&temporary);
     }
@@ -185,10 +189,10 @@ fn temporary_path(path: &Path) -> PathBuf {
     path.with_file_name(format!(".{name}.{}.part", std::process::id()))
 }
 
-fn write_through(path: &Path, text: &str) -> Result<(), WriteError> {
+fn write_through(path: &Path, content: &[u8]) -> Result<(), WriteError> {
     let attempt = || {
         let mut file = fs::File::create(path)?;
-        file.write_all(text.as_bytes())
+        file.write_all(content)
     };
     attempt().map_err(|source| WriteError::System {
         path: path.to_path_buf(),
@@ -307,6 +311,15 @@ mod tests {
         let fault = write_all(&scratch.0, "a", &files).unwrap_err();
         assert!(matches!(fault, WriteError::System { .. }));
         assert!(listing(&scratch.0).is_empty());
+    }
+
+    #[test]
+    fn bytes_are_written_as_they_are() {
+        let scratch = Scratch::new("bytes");
+        let bytes: Vec<u8> = (0..=255).collect();
+        let owner = r#"{"source": "a"}"#.as_bytes().to_vec();
+        write_all(&scratch.0, "a", &[("a.png", bytes.clone()), (RESULTS, owner)]).unwrap();
+        assert_eq!(fs::read(scratch.0.join("a.png")).unwrap(), bytes);
     }
 
     #[test]
