@@ -3,5 +3,6 @@
 pub mod command;
 pub mod figure;
 pub mod read;
+pub mod response;
 pub mod section;
 pub mod write;

@@ -111,7 +111,9 @@ mod tests {
     use sectile_mesh::Point;
 
     fn decoded(bytes: &[u8]) -> (png::Info<'static>, Vec<u8>) {
-        let mut reader = png::Decoder::new(std::io::Cursor::new(bytes)).read_info().unwrap();
+        let mut reader = png::Decoder::new(std::io::Cursor::new(bytes))
+            .read_info()
+            .unwrap();
         let mut pixels = vec![0; reader.output_buffer_size().unwrap()];
         reader.next_frame(&mut pixels).unwrap();
         (reader.info().clone(), pixels)
@@ -167,9 +169,15 @@ mod tests {
     fn what_is_no_picture_is_refused() {
         assert!(matches!(render("<p/>", 150.0), Err(PngError::Svg(_))));
         for dpi in [0.0, f64::NAN, 1e6, -72.0] {
-            assert!(matches!(render(&sample("x"), dpi), Err(PngError::Resolution(_))));
+            assert!(matches!(
+                render(&sample("x"), dpi),
+                Err(PngError::Resolution(_))
+            ));
         }
         let svg = sample("x").replace("60mm", "6000mm");
-        assert!(matches!(render(&svg, 1200.0), Err(PngError::TooLarge { .. })));
+        assert!(matches!(
+            render(&svg, 1200.0),
+            Err(PngError::TooLarge { .. })
+        ));
     }
 }

@@ -176,7 +176,8 @@ pub fn write_all<B: AsRef<[u8]>>(
 /// The system refused.
 pub fn write(path: &Path, text: &str) -> Result<(), WriteError> {
     let temporary = temporary_path(path);
-    let outcome = write_through(&temporary, text.as_bytes()).and_then(|()| put_in_place(&temporary, path));
+    let outcome =
+        write_through(&temporary, text.as_bytes()).and_then(|()| put_in_place(&temporary, path));
     if outcome.is_err() {
         let _ = fs::remove_file(&temporary);
     }
@@ -318,7 +319,12 @@ mod tests {
         let scratch = Scratch::new("bytes");
         let bytes: Vec<u8> = (0..=255).collect();
         let owner = r#"{"source": "a"}"#.as_bytes().to_vec();
-        write_all(&scratch.0, "a", &[("a.png", bytes.clone()), (RESULTS, owner)]).unwrap();
+        write_all(
+            &scratch.0,
+            "a",
+            &[("a.png", bytes.clone()), (RESULTS, owner)],
+        )
+        .unwrap();
         assert_eq!(fs::read(scratch.0.join("a.png")).unwrap(), bytes);
     }
 

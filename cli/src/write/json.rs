@@ -9,7 +9,12 @@ use serde::{Serialize, Serializer};
 use sectile_solver::solution::Solution;
 
 use super::{CAUTION, units, wording};
+use crate::response::{Names, Responses};
 use crate::section::Units;
+
+pub mod action;
+
+use action::{Action, Exclusion, Extremes};
 
 /// What the command knows beside the solution.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -41,8 +46,14 @@ pub struct Results {
     pub tolerance_reached: bool,
     /// The properties by key, in reading order.
     pub properties: Properties,
-    /// Load cases.
+    /// Actions and combinations.
     pub actions: Vec<Action>,
+    /// The worst over all of them, where there are any.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub envelope: Option<Extremes>,
+    /// Where extremes are not quoted.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub exclusion: Option<Exclusion>,
     /// The last mesh.
     pub mesh: MeshSize,
     /// Seconds by stage.
@@ -93,13 +104,6 @@ pub struct Property {
     pub unit: String,
     /// Such as `I_x`.
     pub symbol: &'static str,
-}
-
-/// A load case; none is solved yet, the list in the file is empty.
-#[derive(Clone, Debug, Serialize)]
-pub struct Action {
-    /// Its name.
-    pub name: String,
 }
 
 /// The size of the last mesh.
@@ -187,6 +191,8 @@ impl Results {
             tolerance_reached: solution.reached,
             properties: Properties(properties),
             actions: Vec::new(),
+            envelope: None,
+            exclusion: None,
             mesh: MeshSize {
                 triangles: solution.mesh.triangles.len(),
                 unknowns: solution.levels.last().map_or(0, |level| level.unknowns),
@@ -214,6 +220,26 @@ impl Results {
                     at: note.at.map(|p| [no_minus_zero(p.x), no_minus_zero(p.y)]),
                 })
                 .collect(),
+        }
+    }
+
+    /// With the responses to the file's actions.
+    #[must_use]
+    pub fn with_responses(
+        self,
+        units: &Units,
+        names: &Names,
+        solution: &Solution,
+        responses: &Responses,
+    ) -> Self {
+        Self {
+            actions: action::actions(units, names, responses),
+            envelope: Some(action::envelope(units, names, responses)),
+            exclusion: Some(Exclusion {
+                share_of_wall: responses.exclusion,
+                corners: solution.corners.len(),
+            }),
+            ..self
         }
     }
 

@@ -1,6 +1,8 @@
 //! The table that `solve` prints: properties grouped as an engineer reads them, each to the digits
 //! that its bounds support.
 
+pub mod actions;
+
 use std::collections::BTreeSet;
 
 use comfy_table::{

@@ -88,6 +88,12 @@ pub fn stress_per_moment(units: &Units) -> f64 {
     newton_metres(&units.moment) / (units.metres().powi(3) * pascals(units.stress))
 }
 
+/// A moment of one unit of force times one unit of length, in the declared units of moment.
+#[must_use]
+pub fn moment_per_force(units: &Units) -> f64 {
+    newtons(units.force) * units.metres() / newton_metres(&units.moment)
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -122,6 +128,8 @@ mod tests {
         let u = units("mm", "kN", "kN m", "MPa");
         assert!((stress_per_force(&u) / 1e3 - 1.0).abs() < 1e-14);
         assert!((stress_per_moment(&u) / 1e6 - 1.0).abs() < 1e-14);
+        // 1 kN · mm is 10⁻³ kN m.
+        assert!((moment_per_force(&u) / 1e-3 - 1.0).abs() < 1e-14);
         // 1 kip on 1 in² is 1 ksi; 1 kip ft over 1 in³ is 12 ksi.
         let u = units("in", "kip", "kip ft", "ksi");
         assert!((stress_per_force(&u) - 1.0).abs() < 1e-14);

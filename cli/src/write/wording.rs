@@ -2,6 +2,7 @@
 
 use sectile_solver::figure::Trust;
 use sectile_solver::quantity::{Group, Quantity};
+use sectile_solver::stress::measure::Measure;
 
 /// A short name of a property, without its formula.
 #[must_use]
@@ -56,6 +57,21 @@ pub fn heading(group: Group) -> &'static str {
         Group::Bending => "Bending",
         Group::Torsion => "Torsion and warping",
         Group::Shear => "Shear",
+    }
+}
+
+/// A measure of stress.
+#[must_use]
+pub fn measure(measure: Measure) -> &'static str {
+    match measure {
+        Measure::SigmaMax => "Normal stress, largest",
+        Measure::SigmaMin => "Normal stress, smallest",
+        Measure::Tau => "Shear stress, resultant",
+        Measure::VonMises => "Von Mises",
+        Measure::Tresca => "Tresca",
+        Measure::Principal1 => "Principal stress, 1",
+        Measure::Principal3 => "Principal stress, 3",
+        Measure::Utilisation => "Utilisation of yield",
     }
 }
 

@@ -1,0 +1,69 @@
+//! What the section answers to its actions and combinations: the plain values that tables, files and
+//! figures are made of. Consistent units: the file's force F and length L, stresses F/L².
+
+use sectile_mesh::Point;
+use sectile_solver::stress::cut::CutResult;
+use sectile_solver::stress::extreme::{Extreme, Extremes};
+use sectile_solver::stress::field::UnitFields;
+use sectile_solver::stress::forces::SectionForces;
+use sectile_solver::stress::measure::Measure;
+use sectile_solver::stress::probe::ProbeStress;
+
+/// The answer to one action or combination.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Response {
+    /// Its name.
+    pub name: String,
+    /// Whether it combines actions.
+    pub combination: bool,
+    /// The section forces, the torque of the line of action in `t`.
+    pub forces: SectionForces,
+    /// The line of action of its shear forces, where one is given.
+    pub at: Option<Point>,
+    /// Torque about the shear centre, Saint-Venant's and warping torque, F·L.
+    pub torque: f64,
+    /// What the line of action added to it.
+    pub offset_torque: f64,
+    /// The extremes that may be quoted.
+    pub extremes: Extremes,
+    /// First yield is reached at this multiple of the action.
+    pub load_factor: Option<f64>,
+    /// Relative error in energy of the shear stress, guaranteed.
+    pub energy_error: f64,
+    /// By index of the probe.
+    pub probes: Vec<(usize, Vec<ProbeStress>)>,
+    /// By index of the cut.
+    pub cuts: Vec<(usize, CutResult)>,
+}
+
+/// The answers to all of a file's actions and combinations.
+#[derive(Clone, Debug)]
+pub struct Responses {
+    /// In the order of the file, combinations last.
+    pub list: Vec<Response>,
+    /// The unit fields that they are made of.
+    pub fields: UnitFields,
+    /// The worst of each measure over all of them: which response, and its extreme.
+    pub envelope: Vec<(Measure, usize, Extreme)>,
+    /// Extremes keep off sharp re-entrant corners by this share of the wall.
+    pub exclusion: f64,
+}
+
+/// The names that the writers of responses need.
+#[derive(Clone, Copy, Debug)]
+pub struct Names<'a> {
+    /// Pieces, by index.
+    pub pieces: &'a [String],
+    /// Probes, by index.
+    pub probes: &'a [crate::section::Probe],
+    /// Cuts, by index.
+    pub cuts: &'a [crate::section::Cut],
+}
+
+impl<'a> Names<'a> {
+    /// The name of a piece; empty where it has none.
+    #[must_use]
+    pub fn piece(&self, piece: u32) -> &'a str {
+        self.pieces.get(piece as usize).map_or("", |n| n.as_str())
+    }
+}

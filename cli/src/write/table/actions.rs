@@ -1,0 +1,364 @@
+//! The section of the table on actions: what governs each, where, from what, and how far from yield.
+
+use comfy_table::{
+    Attribute, Cell, CellAlignment, ColumnConstraint, ContentArrangement, Table, Width, presets,
+};
+
+use sectile_solver::solution::Solution;
+use sectile_solver::stress::extreme::Extreme;
+use sectile_solver::stress::measure::Measure;
+
+use super::{Look, bold, style, wrap};
+use crate::response::{Names, Response, Responses};
+use crate::section::Units;
+use crate::write::digits;
+use crate::write::units::{moment_per_force, stress_per_force};
+use crate::write::{actions, cause, wording};
+
+/// More responses than these are told by the worst ones.
+const MOST: usize = 24;
+
+/// The lines on actions, each ended by a line break; empty where there are none.
+#[must_use]
+pub fn render(
+    units: &Units,
+    names: &Names,
+    solution: &Solution,
+    responses: &Responses,
+    look: Look,
+) -> String {
+    if responses.list.is_empty() {
+        return String::new();
+    }
+    let look = Look {
+        width: look.width.max(72),
+        ..look
+    };
+    let width = usize::from(look.width);
+    let shown = worst(responses, MOST);
+    let mut lines = vec![bold("Actions", look.styled)];
+    lines.extend(governing_table(units, names, responses, &shown, look));
+    if shown.len() < responses.list.len() {
+        let text = format!(
+            "The {} that govern of {}; stresses.csv has all.",
+            shown.len(),
+            responses.list.len()
+        );
+        lines.extend(wrap(&text, width, "  "));
+    }
+    if responses.list.len() > 1 {
+        lines.push(String::new());
+        lines.push(bold("Envelope", look.styled));
+        lines.extend(envelope_table(units, names, responses, look));
+    }
+    lines.extend(crossings(units, names, responses, &shown, look));
+    lines.push(String::new());
+    lines.extend(wrap(LEGEND, width, "  "));
+    if !solution.corners.is_empty() {
+        let text = format!(
+            "Extremes keep off sharp re-entrant corners, where linear-elastic stress has no limit, by {} \
+             of the wall there.",
+            digits::short(responses.exclusion, 3)
+        );
+        lines.extend(wrap(&text, width, "  "));
+    }
+    let mut text = lines.join("\n");
+    text.push('\n');
+    text
+}
+
+const LEGEND: &str = "mostly: the part of the action with the largest share of the stress. torque: about \
+    the shear centre, that of the line of action included. yield ×: first yield at this multiple of the \
+    action. error: of the shear field in energy, guaranteed.";
+
+/// The responses with the greatest governing values, in the order of the file.
+#[must_use]
+pub fn worst(responses: &Responses, most: usize) -> Vec<usize> {
+    let value = |i: usize| actions::governing(&responses.list[i]).map_or(0.0, |(_, e)| e.value);
+    let mut order: Vec<usize> = (0..responses.list.len()).collect();
+    order.sort_by(|&a, &b| value(b).total_cmp(&value(a)).then(a.cmp(&b)));
+    order.truncate(most);
+    order.sort_unstable();
+    order
+}
+
+fn governing_table(
+    units: &Units,
+    names: &Names,
+    responses: &Responses,
+    shown: &[usize],
+    look: Look,
+) -> Vec<String> {
+    let pieces = names.pieces.len() > 1;
+    let used = responses.list.iter().any(|r| r.load_factor.is_some());
+    let mut heads = vec![("", String::new()), ("von Mises", units.stress.into())];
+    heads.push(("at", units.length.into()));
+    if pieces {
+        heads.push(("piece", String::new()));
+    }
+    heads.push(("mostly", String::new()));
+    heads.push(("torque", units.moment.clone()));
+    if used {
+        heads.push(("yield ×", String::new()));
+    }
+    heads.push(("error", String::new()));
+    let rows: Vec<Vec<String>> = shown
+        .iter()
+        .map(|&i| governing_row(units, names, &responses.list[i], pieces, used))
+        .collect();
+    let numbers: Vec<bool> = heads
+        .iter()
+        .map(|(h, _)| matches!(*h, "von Mises" | "torque" | "yield ×" | "error"))
+        .collect();
+    columns(&heads, &rows, &numbers, look)
+}
+
+fn governing_row(
+    units: &Units,
+    names: &Names,
+    response: &Response,
+    pieces: bool,
+    used: bool,
+) -> Vec<String> {
+    let mut row = vec![response.name.clone()];
+    match actions::governing(response) {
+        Some((measure, extreme)) => {
+            let stress = extreme.stress.von_mises() * stress_per_force(units);
+            row.extend([short(stress), place(extreme)]);
+            if pieces {
+                row.push(names.piece(extreme.piece).into());
+            }
+            row.push(mostly(measure, extreme));
+        }
+        None => row.extend(vec!["–".to_string(); 3 + usize::from(pieces)]),
+    }
+    row.push(short(response.torque * moment_per_force(units)));
+    if used {
+        row.push(response.load_factor.map_or("–".into(), short));
+    }
+    row.push(percent(response.energy_error));
+    row
+}
+
+fn envelope_table(units: &Units, names: &Names, responses: &Responses, look: Look) -> Vec<String> {
+    let pieces = names.pieces.len() > 1;
+    let mut heads = vec![("", String::new()), ("value", units.stress.into())];
+    heads.push(("at", units.length.into()));
+    if pieces {
+        heads.push(("piece", String::new()));
+    }
+    heads.push(("mostly", String::new()));
+    heads.push(("from", String::new()));
+    let rows: Vec<Vec<String>> = responses
+        .envelope
+        .iter()
+        .map(|(measure, index, extreme)| {
+            let factor = match measure {
+                Measure::Utilisation => 1.0,
+                _ => stress_per_force(units),
+            };
+            let mut row = vec![wording::measure(*measure).to_string()];
+            row.extend([short(extreme.value * factor), place(extreme)]);
+            if pieces {
+                row.push(names.piece(extreme.piece).into());
+            }
+            row.push(mostly(*measure, extreme));
+            row.push(
+                responses
+                    .list
+                    .get(*index)
+                    .map_or(String::new(), |r| r.name.clone()),
+            );
+            row
+        })
+        .collect();
+    let numbers: Vec<bool> = heads.iter().map(|(h, _)| *h == "value").collect();
+    columns(&heads, &rows, &numbers, look)
+}
+
+/// What crosses the cuts, by cut and action.
+fn crossings(
+    units: &Units,
+    names: &Names,
+    responses: &Responses,
+    shown: &[usize],
+    look: Look,
+) -> Vec<String> {
+    let flow = format!("{}/{}", units.force, units.length);
+    let heads = vec![
+        ("cut", String::new()),
+        ("action", String::new()),
+        ("shear flow", flow.clone()),
+        ("normal", flow),
+    ];
+    let mut rows = Vec::new();
+    for (c, cut) in names.cuts.iter().enumerate() {
+        for &i in shown {
+            let response = &responses.list[i];
+            for (_, result) in response.cuts.iter().filter(|(index, _)| *index == c) {
+                rows.push(vec![
+                    cut.name.clone(),
+                    response.name.clone(),
+                    short(result.shear_flow),
+                    short(result.normal_force),
+                ]);
+            }
+        }
+    }
+    if rows.is_empty() {
+        return Vec::new();
+    }
+    let mut lines = vec![String::new(), bold("Cuts", look.styled)];
+    lines.extend(columns(&heads, &rows, &[false, false, true, true], look));
+    lines
+}
+
+fn columns(
+    heads: &[(&str, String)],
+    rows: &[Vec<String>],
+    numbers: &[bool],
+    look: Look,
+) -> Vec<String> {
+    let mut table = Table::new();
+    table
+        .load_style(presets::NOTHING)
+        .set_content_arrangement(ContentArrangement::Dynamic)
+        .set_width(look.width);
+    if look.styled {
+        table.enforce_styling();
+    } else {
+        table.force_no_tty();
+    }
+    let hard = |text: &str| text.replace(' ', "\u{a0}");
+    let head = |text: &str| style(Cell::new(hard(text)), Attribute::Dim, look);
+    table.add_row(heads.iter().map(|(h, _)| head(h)).collect::<Vec<_>>());
+    if heads.iter().any(|(_, unit)| !unit.is_empty()) {
+        table.add_row(heads.iter().map(|(_, unit)| head(unit)).collect::<Vec<_>>());
+    }
+    // Names may break; whatever is a number may not.
+    let free = |i: usize| matches!(heads[i].0, "" | "cut" | "action" | "from" | "piece");
+    for row in rows {
+        let cells = row.iter().enumerate().map(|(i, text)| {
+            let text = if i == 0 {
+                format!("\u{a0}\u{a0}{text}")
+            } else {
+                text.clone()
+            };
+            Cell::new(if free(i) { text } else { hard(&text) })
+        });
+        table.add_row(cells.collect::<Vec<_>>());
+    }
+    let last = heads.len() - 1;
+    for (i, column) in table.column_iter_mut().enumerate() {
+        column.set_cell_alignment(if numbers[i] {
+            CellAlignment::Right
+        } else {
+            CellAlignment::Left
+        });
+        column.set_padding((0, if i == last { 0 } else { 2 }));
+        column.set_constraint(if free(i) {
+            ColumnConstraint::LowerBoundary(Width::Fixed(10))
+        } else {
+            ColumnConstraint::ContentWidth
+        });
+    }
+    table
+        .lines()
+        .map(|line| line.replace('\u{a0}', " ").trim_end().to_string())
+        .collect()
+}
+
+fn mostly(measure: Measure, extreme: &Extreme) -> String {
+    cause::main(measure, extreme).map_or("–".into(), |c| {
+        format!("{} {:.0} %", c.part, 100.0 * c.share)
+    })
+}
+
+fn place(extreme: &Extreme) -> String {
+    let tidy = |x: f64| plain(x, 4);
+    format!("({}, {})", tidy(extreme.at.x), tidy(extreme.at.y))
+}
+
+fn short(x: f64) -> String {
+    plain(x, 4)
+}
+
+fn plain(x: f64, digits: i32) -> String {
+    digits::short(x, digits).replace('−', "-")
+}
+
+fn percent(share: f64) -> String {
+    if share == 0.0 {
+        "0 %".into()
+    } else {
+        // Rounded up: it is a bound.
+        let digit = 10f64.powf((100.0 * share).log10().floor() - 1.0);
+        let up = (100.0 * share / digit).ceil() * digit;
+        format!("{} %", plain(up, 2))
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    #![allow(clippy::unwrap_used)]
+    use super::*;
+    use crate::write::actions::tests::Sample;
+
+    #[test]
+    fn every_action_with_its_figures_within_the_width() {
+        let sample = Sample::new();
+        for width in [72, 80, 120] {
+            let look = Look {
+                width,
+                styled: false,
+            };
+            let text = render(
+                &sample.units,
+                &sample.names(),
+                &sample.solution,
+                &sample.responses,
+                look,
+            );
+            for line in text.lines() {
+                assert!(
+                    line.chars().count() <= usize::from(width),
+                    "{width}: {line}"
+                );
+            }
+            for word in ["Actions", "Envelope", "Cuts", "pull", "von Mises", "kN/mm"] {
+                assert!(text.contains(word), "{word}\n{text}");
+            }
+            assert!(!text.contains('\u{a0}') && !text.contains('\u{1b}'));
+        }
+    }
+
+    #[test]
+    fn bounds_of_errors_round_up() {
+        assert_eq!(percent(0.0), "0 %");
+        assert_eq!(percent(0.001_01), "0.11 %");
+        assert_eq!(percent(0.123_4), "13 %");
+        assert_eq!(percent(2.0e-5), "0.002 %");
+    }
+
+    #[test]
+    fn many_actions_are_told_by_the_worst() {
+        let mut sample = Sample::new();
+        let one = sample.responses.list[0].clone();
+        for i in 0..40 {
+            let mut more = one.clone();
+            more.name = format!("more {i}");
+            sample.responses.list.push(more);
+        }
+        let text = render(
+            &sample.units,
+            &sample.names(),
+            &sample.solution,
+            &sample.responses,
+            Look {
+                width: 100,
+                styled: false,
+            },
+        );
+        assert!(text.contains("The 24 that govern of"), "{text}");
+    }
+}
