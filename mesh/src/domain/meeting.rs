@@ -11,6 +11,10 @@ use crate::tree::{Extent, Tree};
 /// Faults of crossing sides reported for one ring or pair of rings: more would be the same mistake.
 const MOST_CROSSINGS: usize = 10;
 
+/// Meetings for each edge after which the search ends. In a sound section an edge meets the two beside
+/// it and those that touch it from other pieces.
+const MOST_MEETINGS: usize = 32;
+
 /// Two edges that meet.
 pub struct Meeting {
     /// Index of one edge.
@@ -21,18 +25,30 @@ pub struct Meeting {
     pub at: Vec<Point>,
 }
 
-/// All pairs of edges that meet.
+/// All pairs of edges that meet, sorted; of a hopeless drawing, the first of more than any sound one
+/// can have.
 #[must_use]
 pub fn meetings(edges: &[Edge], tolerance: f64) -> Vec<Meeting> {
     let boxes: Vec<Extent> = edges.iter().map(|e| extent(&e.side, tolerance)).collect();
-    Tree::new(&boxes)
-        .pairs()
-        .into_iter()
-        .filter_map(|(a, b)| {
+    let tree = Tree::new(&boxes);
+    let mut found = Vec::new();
+    for (a, range) in boxes.iter().enumerate() {
+        if found.len() > MOST_MEETINGS * (edges.len() + 1_000) {
+            break;
+        }
+        let mut near = Vec::new();
+        tree.overlapping(range, &mut |b| {
+            if b > a {
+                near.push(b);
+            }
+        });
+        near.sort_unstable();
+        found.extend(near.into_iter().filter_map(|b| {
             let at = contacts(&edges[a].side, &edges[b].side, tolerance);
             (!at.is_empty()).then_some(Meeting { a, b, at })
-        })
-        .collect()
+        }));
+    }
+    found
 }
 
 impl Meeting {

@@ -50,7 +50,7 @@ impl Chains {
             })
             .collect();
         for _ in 0..MOST_HALVINGS {
-            let crowded = crowded_parts(domain, &parameters);
+            let crowded = crowded_parts(domain, &parameters, &sharp_ends);
             if crowded.is_empty() {
                 break;
             }

@@ -6,6 +6,10 @@ use crate::tree::{Extent, Tree};
 
 /// An arc's part must stay this many times its own rise away from what it does not touch.
 const CLEARANCE: f64 = 4.0;
+/// An arc's part may be this many times as long as the wall beside it is thick. Triangles of 25° across
+/// a wall are at most about twice as long as it is thick: refinement would come to that by halving part
+/// after part, each time from the start.
+const WALL: f64 = 2.5;
 
 struct Part {
     side: usize,
@@ -15,21 +19,42 @@ struct Part {
     /// Height of the arc over its chord.
     rise: f64,
     ends: [u32; 2],
+    /// Whether there is material to the left and right.
+    material: [bool; 2],
+    /// Whether it lies in a sharp corner, whose sides are divided alike.
+    cut_off: bool,
+}
+
+impl Part {
+    /// How far away another part may be and still crowd this one.
+    fn reach(&self) -> f64 {
+        (CLEARANCE * self.rise).max(self.a.distance(self.b) / WALL)
+    }
+
+    /// Whether a point lies on a side of the chord where there is material.
+    fn faces(&self, p: Point) -> bool {
+        self.material[usize::from((self.b - self.a).cross(p - self.a) < 0.0)]
+    }
 }
 
 /// The parts `(side, part)` of arcs, sorted, that are to be halved: too close to parts that they do not
-/// touch, or from end to end along another side's part. `parameters`: the divisions of each side.
+/// touch, or from end to end along another side's part. `parameters`: the divisions of each side;
+/// `sharp_ends`: whether a sharp corner is cut off at its start and end.
 #[must_use]
-pub fn crowded_parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<(usize, usize)> {
+pub fn crowded_parts(
+    domain: &Domain,
+    parameters: &[Vec<f64>],
+    sharp_ends: &[[Option<u32>; 2]],
+) -> Vec<(usize, usize)> {
     if domain.sides.iter().all(|s| s.arc.is_none()) {
         return Vec::new();
     }
-    let parts = parts(domain, parameters);
+    let parts = parts(domain, parameters, sharp_ends);
     // Of two overlapping boxes, grown by their own reach, one holds all that crowds it.
     let boxes: Vec<Extent> = parts
         .iter()
         .map(|p| {
-            let reach = CLEARANCE * p.rise;
+            let reach = if p.rise > 0.0 { p.reach() } else { 0.0 };
             [
                 p.a.x.min(p.b.x) - reach,
                 p.a.x.max(p.b.x) + reach,
@@ -42,12 +67,7 @@ pub fn crowded_parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<(usize, us
     let mut crowded = Vec::new();
     for (i, p) in parts.iter().enumerate().filter(|(_, p)| p.rise > 0.0) {
         tree.overlapping(&boxes[i], &mut |j| {
-            let q = &parts[j];
-            if i == j || !crowds(p, q) {
-                return;
-            }
-            // The flatter of the two is not what makes them crowd.
-            if p.rise > 0.25 * p.rise.max(q.rise) {
+            if i != j && crowds(p, &parts[j]) {
                 crowded.push((p.side, p.index));
             }
         });
@@ -57,16 +77,27 @@ pub fn crowded_parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<(usize, us
     crowded
 }
 
+/// Whether `p` is to be halved because of `q`.
 fn crowds(p: &Part, q: &Part) -> bool {
     let shared = p.ends.iter().filter(|e| q.ends.contains(e)).count();
     match shared {
-        0 => segment_distance(p, q) <= CLEARANCE * p.rise.max(q.rise),
+        0 => {
+            let distance = segment_distance(p, q);
+            let rise = p.rise.max(q.rise);
+            // The flatter of the two is not what makes them crowd.
+            (p.rise > 0.25 * rise && distance <= CLEARANCE * rise)
+                || (!p.cut_off
+                    && !q.cut_off
+                    && p.a.distance(p.b) > WALL * distance
+                    && p.faces(q.a.lerp(q.b, 0.5))
+                    && q.faces(p.a.lerp(p.b, 0.5)))
+        }
         1 => false,
         _ => true,
     }
 }
 
-fn parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<Part> {
+fn parts(domain: &Domain, parameters: &[Vec<f64>], sharp_ends: &[[Option<u32>; 2]]) -> Vec<Part> {
     let mut parts: Vec<Part> = Vec::new();
     let mut name = domain.points.len() as u32;
     for (s, side) in domain.sides.iter().enumerate() {
@@ -92,6 +123,9 @@ fn parts(domain: &Domain, parameters: &[Vec<f64>]) -> Vec<Part> {
                 b: next.0,
                 rise,
                 ends: [last.1, next.1],
+                material: [side.left.is_some(), side.right.is_some()],
+                cut_off: (index == 0 && sharp_ends[s][0].is_some())
+                    || (t == 1.0 && sharp_ends[s][1].is_some()),
             });
             last = next;
         }
