@@ -8,7 +8,8 @@ use super::SIZE_LIMIT;
 use super::arrows;
 use super::bands::Cut;
 use super::colour::{self, Rgb};
-use super::extreme::{extreme, mark_extremes};
+use super::extreme::{Extreme, extreme, mark_extremes};
+use super::guide::Guide;
 use super::legend::Scale;
 use super::levels::Levels;
 use super::marks::{self, Mark};
@@ -58,6 +59,12 @@ pub struct Field<'a> {
     pub excluded: &'a [Circle],
     /// A point to be marked, such as the shear centre.
     pub mark: Option<(Mark, Point)>,
+    /// Smallest and largest value to be quoted, where they are known better than from the surface.
+    pub quoted: Option<[Extreme; 2]>,
+    /// Lines across the field.
+    pub guides: &'a [Guide],
+    /// What else is to be said below.
+    pub remark: &'a str,
 }
 
 /// Draws the field.
@@ -78,17 +85,18 @@ pub fn draw(field: &Field, width: f64) -> Finished {
 fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     let mut page = Page::new(width, field.kind, field.title, field.subtitle);
     let extent = outline::extent(field.domain);
-    let bounds = field.mark.map_or(extent, |(_, p)| {
-        let size = extent.width().hypot(extent.height());
-        let sight = extent.grown(1.5 * size);
-        if sight.contains(&Rect::about(p, 0.0)) {
-            extent.with(p)
-        } else {
-            extent
-        }
-    });
-    let high = extreme(field.surface, field.values, field.excluded, 1.0);
-    let low = extreme(field.surface, field.values, field.excluded, -1.0);
+    let sight = extent.grown(1.5 * extent.width().hypot(extent.height()));
+    let bounds = field
+        .mark
+        .iter()
+        .map(|(_, p)| *p)
+        .chain(field.guides.iter().map(|g| g.nearest(extent.centre())))
+        .filter(|p| sight.contains(&Rect::about(*p, 0.0)))
+        .fold(extent, Rect::with);
+    let [low, high] = match field.quoted {
+        Some(quoted) => quoted.map(Some),
+        None => [-1.0, 1.0].map(|sign| extreme(field.surface, field.values, field.excluded, sign)),
+    };
     let (Some(high), Some(low)) = (high, low) else {
         let note = "The field has no value outside the excluded places.".to_string();
         return page.finish(&[note], CAUTION);
@@ -147,6 +155,11 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
         );
     }
     let mut notes = Vec::new();
+    for guide in field.guides {
+        if guide.draw(&mut page, &mut ground, &view, drawn) {
+            notes.push(guide.note().to_string());
+        }
+    }
     if let Some((mark, p)) = field.mark {
         let p = view.point(p);
         if drawn.grown(0.01).contains(&Rect::about(p, 0.0)) {
@@ -191,6 +204,7 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     let (long, short): (Vec<String>, Vec<String>) =
         notes.into_iter().partition(|n| n.starts_with(RINGS));
     let mut notes = vec![short.join(" ")];
+    notes.extend((!field.remark.is_empty()).then(|| field.remark.to_string()));
     notes.extend(long);
     page.finish(&notes, CAUTION)
 }

@@ -7,9 +7,11 @@ pub mod arrows;
 pub mod bands;
 pub mod centres;
 pub mod colour;
+pub mod cut;
 pub mod dimension;
 pub mod extreme;
 pub mod field;
+pub mod guide;
 pub mod label;
 pub mod legend;
 pub mod levels;
@@ -21,6 +23,7 @@ pub mod path;
 pub mod place;
 pub mod png;
 pub mod rect;
+pub mod response;
 pub mod section;
 pub mod stress;
 pub mod surface;
@@ -43,6 +46,7 @@ use sectile_solver::sample::{self, Lattice, UnitForce};
 use sectile_solver::solution::Solution;
 use sectile_solver::solution::exclusion_radius;
 
+use crate::response::{Names, Responses};
 use crate::section::Units;
 use surface::Sharing;
 
@@ -82,6 +86,44 @@ pub fn all(
         .collect()
 }
 
+/// The figures of responses to actions: file name and SVG text.
+///
+/// Of each chosen response (see [`response::chosen`]) von Mises' stress, the normal stress and the
+/// resultant shear stress, `stress-<action>-von-mises.svg`, `-sigma.svg` and `-tau.svg`, left out
+/// where there is none; and every cut, `cut-<cut>-<action>.svg`. With more than one response also the
+/// envelope, `stress-envelope-von-mises.svg`, over all of them.
+#[must_use]
+pub fn responses(
+    title: &str,
+    units: &Units,
+    domain: &Domain,
+    solution: &Solution,
+    names: &Names,
+    responses: &Responses,
+    width_mm: f64,
+) -> Vec<(String, String)> {
+    response::all(
+        title,
+        units,
+        domain,
+        solution,
+        names,
+        responses,
+        printable(width_mm),
+    )
+    .into_iter()
+    .map(|(name, figure)| (name, figure.svg))
+    .collect()
+}
+
+fn printable(width_mm: f64) -> f64 {
+    if width_mm.is_finite() {
+        width_mm.max(NARROWEST)
+    } else {
+        PRINT_WIDTH
+    }
+}
+
 fn finished(
     title: &str,
     units: &Units,
@@ -89,11 +131,7 @@ fn finished(
     solution: &Solution,
     width_mm: f64,
 ) -> Vec<(&'static str, Finished)> {
-    let width = if width_mm.is_finite() {
-        width_mm.max(NARROWEST)
-    } else {
-        PRINT_WIDTH
-    };
+    let width = printable(width_mm);
     let lattice = Lattice::new(divisions(solution));
     let positions = sample::positions(solution, &lattice);
     let sharing = Sharing::new(&solution.mesh, &lattice);

@@ -68,6 +68,9 @@ pub fn draw(
         direction: Some(&vectors),
         excluded,
         mark: shear_centre.map(|p| (Mark::ShearCentre, p)),
+        quoted: None,
+        guides: &[],
+        remark: "",
     };
     field::draw(&field, width)
 }

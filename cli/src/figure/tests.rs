@@ -8,9 +8,12 @@ use sectile_solver::figure::{Figure, Trust};
 use sectile_solver::quantity::Quantity as Q;
 use sectile_solver::sample::{Lattice, UnitForce};
 
+use sectile_solver::stress::measure::Measure;
+
 use super::page::Finished;
 use super::surface::{Sharing, Surface};
 use super::*;
+use crate::write::actions::tests::Sample;
 
 fn units() -> Units {
     Units {
@@ -354,6 +357,144 @@ fn solved_sections() {
                 );
             }
         }
+    }
+}
+
+/// Channel, angle, plate with holes and ring under the sample's three actions.
+fn responding() -> Vec<(&'static str, Domain, Sample)> {
+    let p = Point::new;
+    [
+        (
+            "channel",
+            samples::channel(),
+            p(4.0, 100.0),
+            (p(-1.0, 60.0), p(9.0, 60.0)),
+        ),
+        (
+            "angle",
+            samples::angle(),
+            p(4.0, 100.0),
+            (p(-1.0, 60.0), p(9.0, 60.0)),
+        ),
+        (
+            "holes",
+            samples::plate_with_holes(),
+            p(5.0, 5.0),
+            (p(20.0, -1.0), p(20.0, 61.0)),
+        ),
+        (
+            "ring",
+            samples::annulus(50.0, 60.0, 60.0, 45.0),
+            p(102.0, 60.0),
+            (p(50.0, 60.0), p(150.0, 85.0)),
+        ),
+    ]
+    .into_iter()
+    .map(|(name, domain, probe, cut)| {
+        let sample = Sample::of(&domain, probe, cut);
+        (name, domain, sample)
+    })
+    .collect()
+}
+
+fn drawn(domain: &Domain, sample: &Sample, width: f64) -> Vec<(String, Finished)> {
+    response::all(
+        "An invented bar",
+        &sample.units,
+        domain,
+        &sample.solution,
+        &sample.names(),
+        &sample.responses,
+        width,
+    )
+}
+
+#[test]
+fn responses_have_their_figures() {
+    for (name, domain, sample) in responding() {
+        for width in [60.0, 160.0] {
+            let figures = drawn(&domain, &sample, width);
+            let names: Vec<&str> = figures.iter().map(|(n, _)| n.as_str()).collect();
+            assert_eq!(
+                names,
+                [
+                    "stress-envelope-von-mises.svg",
+                    "stress-pull-eccentric-von-mises.svg",
+                    "stress-pull-eccentric-sigma.svg",
+                    "stress-wheel-at-midspan-von-mises.svg",
+                    "stress-wheel-at-midspan-sigma.svg",
+                    "stress-wheel-at-midspan-tau.svg",
+                    "stress-1-35-pull-plus-1-5-wheel-von-mises.svg",
+                    "stress-1-35-pull-plus-1-5-wheel-sigma.svg",
+                    "stress-1-35-pull-plus-1-5-wheel-tau.svg",
+                    "cut-web-pull-eccentric.svg",
+                    "cut-web-wheel-at-midspan.svg",
+                    "cut-web-1-35-pull-plus-1-5-wheel.svg",
+                ]
+            );
+            for (file, figure) in &figures {
+                sound(
+                    &format!("{name}-{width}-{}", file.trim_end_matches(".svg")),
+                    figure,
+                );
+                if file.ends_with("-sigma.svg") {
+                    assert!(figure.svg.contains("neutral axis"), "{file}");
+                }
+                if file.ends_with("-tau.svg") {
+                    assert!(figure.svg.contains("line of action"), "{file}");
+                }
+            }
+        }
+    }
+}
+
+#[test]
+fn of_many_responses_those_that_govern_are_drawn() {
+    let (_, domain, mut sample) = responding().swap_remove(0);
+    let one = sample.responses.list.clone();
+    for i in 0..10 {
+        for (k, response) in one.iter().enumerate() {
+            let mut more = response.clone();
+            more.name = format!("more {i} {k}");
+            sample.responses.list.push(more);
+        }
+    }
+    let chosen = response::chosen(&sample.responses);
+    assert_eq!(chosen.len(), response::MOST);
+    assert!(chosen.windows(2).all(|w| w[0] < w[1]));
+    let value = |i: usize| {
+        let (_, e) = crate::write::actions::governing(&sample.responses.list[i]).unwrap();
+        e.value
+    };
+    let least = chosen
+        .iter()
+        .map(|&i| value(i))
+        .fold(f64::INFINITY, f64::min);
+    for i in (0..sample.responses.list.len()).filter(|i| !chosen.contains(i)) {
+        assert!(value(i) <= least);
+    }
+    let figures = drawn(&domain, &sample, 160.0);
+    assert!(figures.len() <= 1 + 4 * response::MOST);
+    let (name, envelope) = &figures[0];
+    sound(name, envelope);
+    assert!(envelope.svg.contains("that govern"));
+}
+
+#[test]
+fn the_quoted_extreme_is_that_of_the_tables() {
+    let (_, domain, sample) = responding().swap_remove(0);
+    let figures = drawn(&domain, &sample, 160.0);
+    for (file, measure) in [
+        ("stress-wheel-at-midspan-von-mises.svg", Measure::VonMises),
+        ("stress-wheel-at-midspan-sigma.svg", Measure::SigmaMax),
+        ("stress-wheel-at-midspan-sigma.svg", Measure::SigmaMin),
+        ("stress-wheel-at-midspan-tau.svg", Measure::Tau),
+    ] {
+        let (_, figure) = figures.iter().find(|(n, _)| n == file).unwrap();
+        let extreme = sample.responses.list[1].extremes.get(measure).unwrap();
+        // 1 kN/mm² is 1000 MPa.
+        let text = crate::write::digits::short(1e3 * extreme.value, 4);
+        assert!(figure.svg.contains(&text), "{file}: {text}");
     }
 }
 

@@ -48,6 +48,9 @@ pub fn draw(
         direction: None,
         excluded: &[],
         mark: shear_centre.map(|p| (Mark::ShearCentre, p)),
+        quoted: None,
+        guides: &[],
+        remark: "",
     };
     field::draw(&field, width)
 }

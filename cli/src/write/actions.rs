@@ -262,6 +262,17 @@ pub fn governing(response: &Response) -> Option<(Measure, &Extreme)> {
         .find_map(|m| response.extremes.get(m).map(|e| (m, e)))
 }
 
+/// The responses with the greatest governing values, in the order of the file.
+#[must_use]
+pub fn worst(responses: &Responses, most: usize) -> Vec<usize> {
+    let value = |i: usize| governing(&responses.list[i]).map_or(0.0, |(_, e)| e.value);
+    let mut order: Vec<usize> = (0..responses.list.len()).collect();
+    order.sort_by(|&a, &b| value(b).total_cmp(&value(a)).then(a.cmp(&b)));
+    order.truncate(most);
+    order.sort_unstable();
+    order
+}
+
 /// A stress in other units.
 #[must_use]
 pub fn scaled(stress: &Stress, factor: f64) -> Stress {

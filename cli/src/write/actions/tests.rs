@@ -20,20 +20,25 @@ pub(crate) struct Sample {
 
 impl Sample {
     pub(crate) fn new() -> Self {
-        Self::of(&samples::channel())
+        let cut = (Point::new(-1.0, 60.0), Point::new(9.0, 60.0));
+        Self::of(&samples::channel(), Point::new(4.0, 100.0), cut)
     }
 
-    pub(crate) fn of(domain: &sectile_mesh::domain::Domain) -> Self {
+    pub(crate) fn of(
+        domain: &sectile_mesh::domain::Domain,
+        probe_at: Point,
+        (from, to): (Point, Point),
+    ) -> Self {
         let solution = samples::solved(domain);
         let fields = UnitFields::new(&solution, 4).unwrap();
         let probes = vec![Probe {
             name: "toe".into(),
-            at: Point::new(4.0, 100.0),
+            at: probe_at,
         }];
         let cuts = vec![Cut {
             name: "web".into(),
-            from: Point::new(-1.0, 60.0),
-            to: Point::new(9.0, 60.0),
+            from,
+            to,
         }];
         let centre = Point::new(
             solution.get(Quantity::ShearCentreX).unwrap().value,

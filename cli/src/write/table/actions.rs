@@ -35,7 +35,7 @@ pub fn render(
         ..look
     };
     let width = usize::from(look.width);
-    let shown = worst(responses, MOST);
+    let shown = actions::worst(responses, MOST);
     let mut lines = vec![bold("Actions", look.styled)];
     lines.extend(governing_table(units, names, responses, &shown, look));
     if shown.len() < responses.list.len() {
@@ -70,17 +70,6 @@ pub fn render(
 const LEGEND: &str = "mostly: the part of the action with the largest share of the stress. torque: about \
     the shear centre, that of the line of action included. yield ×: first yield at this multiple of the \
     action. error: of the shear field in energy, guaranteed.";
-
-/// The responses with the greatest governing values, in the order of the file.
-#[must_use]
-pub fn worst(responses: &Responses, most: usize) -> Vec<usize> {
-    let value = |i: usize| actions::governing(&responses.list[i]).map_or(0.0, |(_, e)| e.value);
-    let mut order: Vec<usize> = (0..responses.list.len()).collect();
-    order.sort_by(|&a, &b| value(b).total_cmp(&value(a)).then(a.cmp(&b)));
-    order.truncate(most);
-    order.sort_unstable();
-    order
-}
 
 fn governing_table(
     units: &Units,
