@@ -5,7 +5,7 @@
 use sectile_solver::figure::Trust;
 use sectile_solver::solution::Settings;
 use sectile_validation::cases::{self, Case, Claim, Status};
-use sectile_validation::outline::piece;
+use sectile_validation::outline::{piece, polygon};
 use sectile_validation::solve::{all_rows, settings, solve_pieces};
 use sectile_validation::verdict::{Row, enclosure_count, judge};
 
@@ -109,4 +109,59 @@ fn values_outside_are_refused() {
         }
     }
     assert!(refused >= 20);
+}
+
+/// Two blocks on a thin neck, and thin strips: their free membranes have low eigenvalues, on which the
+/// upper end of the warping constant rests. No source: a loose enclosure is held against a tight one.
+#[test]
+fn loose_enclosures_meet_tight_ones_on_nearly_separate_sections() {
+    let dumbbell = |neck: f64, length: f64| {
+        let (m, l) = (0.5 * neck, length);
+        polygon(&[
+            [-1.0, -0.5],
+            [0.0, -0.5],
+            [0.0, -m],
+            [l, -m],
+            [l, -0.7],
+            [l + 1.2, -0.7],
+            [l + 1.2, 0.7],
+            [l, 0.7],
+            [l, m],
+            [0.0, m],
+            [0.0, 0.5],
+            [-1.0, 0.5],
+        ])
+    };
+    let strip = |t: f64| polygon(&[[0.0, 0.0], [1.0, 0.0], [1.0, t], [0.0, t]]);
+    let sections = [
+        ("wide neck", dumbbell(0.3, 1.0)),
+        ("narrow neck", dumbbell(0.05, 0.05)),
+        ("narrow long neck", dumbbell(0.05, 5.0)),
+        ("very narrow neck", dumbbell(0.01, 1.0)),
+        ("strip", strip(0.1)),
+        ("thin strip", strip(0.01)),
+    ];
+    for (name, outline) in sections {
+        let (body, _) = piece(&outline, &[]).expect("geometry");
+        let pieces = [body];
+        let tight = solve_pieces(&pieces, 0.3, &settings(1e-6)).expect("solved");
+        assert!(tight.reached);
+        for order in 1..=4 {
+            for tolerance in [0.9, 0.1] {
+                let loose = Settings {
+                    order: Some(order),
+                    ..settings(tolerance)
+                };
+                let loose = solve_pieces(&pieces, 0.3, &loose).expect("solved");
+                for (q, a) in &loose.properties {
+                    let b = tight.get(*q).expect("given");
+                    assert!(
+                        a.low <= b.high && b.low <= a.high,
+                        "{name}, order {order}, {tolerance}: {} {a:?} {b:?}",
+                        q.key()
+                    );
+                }
+            }
+        }
+    }
 }
