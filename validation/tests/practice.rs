@@ -206,7 +206,8 @@ fn legs_that_meet_in_a_point_put_the_shear_centre_there() {
             [-i, -i],
         ]
     };
-    let shapes: [(&str, &dyn Fn(f64) -> Vec<[f64; 2]>); 4] = [
+    type Shape<'a> = &'a dyn Fn(f64) -> Vec<[f64; 2]>;
+    let shapes: [(&str, Shape); 4] = [
         ("angle", &angle),
         ("unequal angle", &unequal),
         ("tee", &tee),
