@@ -14,7 +14,7 @@ use crate::property::shear::ShearProperties;
 use crate::quantity::Quantity;
 use crate::tables::Tables;
 
-pub use crate::adapt::{DEFAULT_ORDER, exclusion_radius};
+pub use crate::adapt::{default_order, exclusion_radius};
 
 /// What the adaptive loop aims at.
 #[derive(Clone, Copy, Debug, PartialEq)]

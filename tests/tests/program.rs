@@ -110,7 +110,7 @@ fn a_folder_takes_all_files_and_is_kept_from_other_sections() {
             .arg(demo(name));
         command.assert()
     };
-    solve("ramp-channel").success().stdout("");
+    solve("facade-rail").success().stdout("");
     let mut names: Vec<String> = fs::read_dir(folder.path())
         .unwrap()
         .map(|e| e.unwrap().file_name().into_string().unwrap())
@@ -132,10 +132,10 @@ fn a_folder_takes_all_files_and_is_kept_from_other_sections() {
     for name in &names {
         assert!(fs::metadata(folder.path().join(name)).unwrap().len() < 400_000);
     }
-    solve("ramp-channel").success();
+    solve("facade-rail").success();
     let refused = solve("hall-girder").code(2);
     let message = String::from_utf8(refused.get_output().stderr.clone()).unwrap();
-    assert!(message.contains("ramp-channel.section.toml"), "{message}");
+    assert!(message.contains("facade-rail.section.toml"), "{message}");
 }
 
 /// Everything but the timings is the same on every run and any number of threads.

@@ -2,6 +2,7 @@
 
 pub mod new;
 pub mod progress;
+pub mod respond;
 pub mod solve;
 
 use std::io::{IsTerminal, stdout};

@@ -7,12 +7,18 @@ use std::time::Instant;
 use clap::Args;
 use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
+use sectile_solver::stress::extreme::DEFAULT_EXCLUSION;
+use sectile_solver::stress::field::UnitFields;
+
 use super::Outcome;
 use super::progress::LevelProgress;
+use super::respond::respond;
 use crate::figure;
 use crate::read::{ReadSection, section_from_path, show};
+use crate::response::{Names, Responses};
 use crate::write::json::{Results, Run};
-use crate::write::{csv, files, table};
+use crate::write::slug::{cut_files, slugs};
+use crate::write::{actions, csv, files, table, vtu};
 
 /// Options of `solve`.
 #[derive(Args, Clone, Debug)]
@@ -29,7 +35,7 @@ pub struct SolveArgs {
     /// the polar radius).
     #[arg(long, default_value = "1e-4", value_name = "T")]
     pub tolerance: f64,
-    /// Order of the finite elements, 1 to 6.
+    /// Order of the finite elements, 1 to 6; by default the fastest for the tolerance.
     #[arg(long, value_name = "P")]
     pub order: Option<usize>,
     /// Stop refining before a system has more unknowns than this; the bounds stay true.
@@ -49,6 +55,15 @@ pub struct SolveArgs {
     /// Print width of the figures, in mm.
     #[arg(long, default_value = "160mm", value_parser = print_width, value_name = "MM")]
     pub width: f64,
+    /// Keep extremes of stress away from sharp re-entrant corners by this share of the wall there.
+    #[arg(long, default_value_t = DEFAULT_EXCLUSION, value_parser = share, value_name = "SHARE")]
+    pub corner_distance: f64,
+    /// Ask for load factors to first yield: a material without a yield stress is then an error.
+    #[arg(long)]
+    pub to_yield: bool,
+    /// Write every figure as PNG too, at this resolution.
+    #[arg(long, value_parser = resolution, value_name = "DPI")]
+    pub png: Option<f64>,
     /// Print seconds by stage and the peak memory.
     #[arg(long)]
     pub timings: bool,
@@ -59,6 +74,20 @@ fn print_width(text: &str) -> Result<f64, String> {
     match number.parse::<f64>() {
         Ok(mm) if (60.0..=1000.0).contains(&mm) => Ok(mm),
         _ => Err("a print width is 60mm to 1000mm, such as 160mm".into()),
+    }
+}
+
+fn share(text: &str) -> Result<f64, String> {
+    match text.trim().parse::<f64>() {
+        Ok(share) if (0.0..=1.0).contains(&share) => Ok(share),
+        _ => Err("a share of the wall is 0 to 1, such as 0.1".into()),
+    }
+}
+
+fn resolution(text: &str) -> Result<f64, String> {
+    match text.trim().parse::<f64>() {
+        Ok(dpi) if (30.0..=1200.0).contains(&dpi) => Ok(dpi),
+        _ => Err("a resolution is 30 to 1200 dots an inch, such as 300".into()),
     }
 }
 
@@ -125,17 +154,46 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         });
     }
 
+    if args.to_yield && !read.section.actions.is_empty() {
+        let missing: Vec<_> = (0..read.section.materials.len())
+            .filter(|&m| read.section.materials[m].yield_stress.is_none())
+            .map(|m| read.yield_missing(m))
+            .collect();
+        if !missing.is_empty() {
+            show::print(&read.refused(missing));
+            return Outcome::NoAnswer;
+        }
+    }
+    let respond_start = Instant::now();
+    let responses = respond(&read.section, &solution, args.corner_distance);
+    if responses.is_none() && !read.section.actions.is_empty() {
+        solution.notes.push(Note {
+            kind: "actions-not-answered",
+            text: "The actions are not answered: a section in separate parts has no shear stress \
+                   that does not depend on what holds them together."
+                .into(),
+            at: None,
+        });
+    }
+    run.actions = respond_start.elapsed().as_secs_f64();
+    let answer = Answer {
+        source,
+        read,
+        solution,
+        responses,
+    };
+
     let write_start = Instant::now();
     if let Some(folder) = &folder
-        && let Err(error) = write_folder(args, folder, &source, &read, &solution, &run, start)
+        && let Err(error) = write_folder(args, folder, &answer, &run, start)
     {
-        return fail(file, &error.to_string());
+        return fail(file, &error);
     }
     run.write = write_start.elapsed().as_secs_f64();
     run.total = start.elapsed().as_secs_f64();
     run.peak_memory = peak_memory();
-    report(args, folder.as_deref(), &source, &read, &solution, &run);
-    if solution.reached && read.domain.parts == 1 {
+    report(args, folder.as_deref(), &answer, &run);
+    if answer.solution.reached && answer.read.domain.parts == 1 {
         Outcome::Answered
     } else {
         Outcome::Finding
@@ -166,27 +224,71 @@ fn stem(file: &Path) -> String {
     }
 }
 
+/// All that is known of one section.
+struct Answer {
+    /// The section file as `results.json` names it.
+    source: String,
+    read: ReadSection,
+    solution: Solution,
+    responses: Option<Responses>,
+}
+
+impl Answer {
+    fn names(&self) -> Names<'_> {
+        Names {
+            pieces: &self.read.domain.piece_names,
+            probes: &self.read.section.probes,
+            cuts: &self.read.section.cuts,
+        }
+    }
+
+    fn results(&self, run: &Run) -> Results {
+        let section = &self.read.section;
+        let units = &section.units;
+        let results = Results::new(&section.title, &self.source, units, &self.solution, run);
+        match &self.responses {
+            None => results,
+            Some(responses) => {
+                results.with_responses(units, &self.names(), &self.solution, responses)
+            }
+        }
+    }
+}
+
 fn write_folder(
     args: &SolveArgs,
     folder: &Path,
-    source: &str,
-    read: &ReadSection,
-    solution: &Solution,
+    answer: &Answer,
     run: &Run,
     start: Instant,
-) -> Result<(), files::WriteError> {
+) -> Result<(), String> {
     let write_start = Instant::now();
-    let section = &read.section;
-    let mut written: Vec<(String, String)> = figure::all(
+    let section = &answer.read.section;
+    let mut written: Vec<(String, Vec<u8>)> = Vec::new();
+    let figures = figure::all(
         &section.title,
         &section.units,
-        &read.domain,
-        solution,
+        &answer.read.domain,
+        &answer.solution,
         args.width,
+    );
+    if let Some(responses) = &answer.responses {
+        written.extend(response_files(answer, responses));
+    }
+    if let Some(dpi) = args.png {
+        for (name, svg) in &figures {
+            let png = figure::png::render(svg, dpi).map_err(|e| e.to_string())?;
+            written.push((name.replace(".svg", ".png"), png));
+        }
+    }
+    written.extend(
+        figures
+            .into_iter()
+            .map(|(name, svg)| (name, svg.into_bytes())),
     );
     written.push((
         "properties.csv".into(),
-        csv::properties(&section.units, solution),
+        csv::properties(&section.units, &answer.solution).into_bytes(),
     ));
     let run = Run {
         write: write_start.elapsed().as_secs_f64(),
@@ -194,34 +296,77 @@ fn write_folder(
         peak_memory: peak_memory(),
         ..run.clone()
     };
-    let results = Results::new(&section.title, source, &section.units, solution, &run);
-    written.push((files::RESULTS.into(), results.pretty()));
-    let named: Vec<(&str, &str)> = written
+    written.push((
+        files::RESULTS.into(),
+        answer.results(&run).pretty().into_bytes(),
+    ));
+    let named: Vec<(&str, &[u8])> = written
         .iter()
-        .map(|(name, text)| (name.as_str(), text.as_str()))
+        .map(|(name, bytes)| (name.as_str(), bytes.as_slice()))
         .collect();
-    files::write_all(folder, source, &named)
+    files::write_all(folder, &answer.source, &named).map_err(|e| e.to_string())
 }
 
-fn report(
-    args: &SolveArgs,
-    folder: Option<&Path>,
-    source: &str,
-    read: &ReadSection,
-    solution: &Solution,
-    run: &Run,
-) {
-    let section = &read.section;
+/// Fields are written for this many actions; `stresses.csv` has the extremes of all.
+const MOST_FIELDS: usize = 12;
+
+/// Tables and fields of the responses.
+fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8>)> {
+    let units = &answer.read.section.units;
+    let names = answer.names();
+    let mut out = vec![(
+        "stresses.csv".to_string(),
+        actions::stresses_csv(units, &names, responses).into_bytes(),
+    )];
+    let response_slugs = slugs(responses.list.iter().map(|r| r.name.as_str()));
+    let nodes = UnitFields::new(&answer.solution, answer.solution.order);
+    for (response, slug) in responses.list.iter().zip(&response_slugs).take(MOST_FIELDS) {
+        let Some(nodes) = &nodes else { continue };
+        out.push((
+            format!("field-{slug}.csv"),
+            actions::field_csv(units, &names, &answer.solution, nodes, &response.forces)
+                .into_bytes(),
+        ));
+        out.push((
+            format!("field-{slug}.vtu"),
+            vtu::field(units, &answer.solution, nodes, &response.forces).into_bytes(),
+        ));
+    }
+    let cut_slugs: Vec<String> = slugs(names.cuts.iter().map(|c| c.name.as_str()));
+    let files = cut_files(&cut_slugs, &response_slugs);
+    for (r, response) in responses.list.iter().enumerate() {
+        for (c, cut) in &response.cuts {
+            out.push((
+                format!("{}.csv", files[*c][r]),
+                actions::cut_csv(units, &names, cut).into_bytes(),
+            ));
+        }
+    }
+    out
+}
+
+fn report(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
+    let section = &answer.read.section;
     let mut text = String::new();
     if args.json {
-        text = Results::new(&section.title, source, &section.units, solution, run).line();
+        text = answer.results(run).line();
         text.push('\n');
     } else if !args.quiet {
         let look = table::Look {
             width: super::terminal_width(),
             styled: super::styled(&stdout()),
         };
-        text = table::render(&section.title, &section.units, solution, look);
+        text = table::render(&section.title, &section.units, &answer.solution, look);
+        if let Some(responses) = &answer.responses {
+            text.push('\n');
+            text.push_str(&table::actions::render(
+                &section.units,
+                &answer.names(),
+                &answer.solution,
+                responses,
+                look,
+            ));
+        }
         if let Some(folder) = folder {
             text.push_str(&format!(
                 "Results and figures are in {}\n",
@@ -232,7 +377,7 @@ fn report(
     // A reader that closed the pipe has all that it wants.
     let _ = stdout().write_all(text.as_bytes());
     if args.timings {
-        let _ = stderr().write_all(timings(solution, run).as_bytes());
+        let _ = stderr().write_all(timings(&answer.solution, run).as_bytes());
     }
 }
 
@@ -246,6 +391,7 @@ fn timings(solution: &Solution, run: &Run) -> String {
         ("factor", t.factor),
         ("solve", t.solve),
         ("bounds", t.bounds),
+        ("actions", run.actions),
         ("write", run.write),
         ("total", run.total),
     ];

@@ -21,6 +21,8 @@ use action::{Action, Exclusion, Extremes};
 pub struct Run {
     /// Seconds spent on reading the section file.
     pub read: f64,
+    /// Seconds spent on the actions.
+    pub actions: f64,
     /// Seconds spent on writing, as far as known when the object is made.
     pub write: f64,
     /// Seconds from start to now.
@@ -136,6 +138,8 @@ pub struct Timings {
     pub solve: f64,
     /// Particular fluxes, gaps, bounds and properties.
     pub bounds: f64,
+    /// Stresses under the file's actions.
+    pub actions: f64,
     /// Tables and figures.
     pub write: f64,
     /// All of it.
@@ -207,6 +211,7 @@ impl Results {
                 factor: t.factor,
                 solve: t.solve,
                 bounds: t.bounds,
+                actions: run.actions,
                 write: run.write,
                 total: run.total,
                 peak_memory: run.peak_memory,

@@ -192,8 +192,17 @@ impl Search<'_> {
         let solved = self.evaluator.solved;
         let table = PointTable::single(&solved.tables, p, self.ready);
         let at = self.evaluator.at(self.ready, &table, 0);
+        // A coordinate that is zero but for rounding is zero.
+        let snapped = |c: f64| {
+            if c.abs() < 1e-12 * solved.frame.scale {
+                0.0
+            } else {
+                c
+            }
+        };
+        let place = solved.frame.outward(Point::new(at.x, at.y));
         (
-            solved.frame.outward(Point::new(at.x, at.y)),
+            Point::new(snapped(place.x), snapped(place.y)),
             self.fields.superposition.unit_stress(solved, &at),
         )
     }
