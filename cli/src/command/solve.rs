@@ -265,7 +265,7 @@ fn write_folder(
     let write_start = Instant::now();
     let section = &answer.read.section;
     let mut written: Vec<(String, Vec<u8>)> = Vec::new();
-    let figures = figure::all(
+    let mut figures = figure::all(
         &section.title,
         &section.units,
         &answer.read.domain,
@@ -273,6 +273,15 @@ fn write_folder(
         args.width,
     );
     if let Some(responses) = &answer.responses {
+        figures.extend(figure::responses(
+            &section.title,
+            &section.units,
+            &answer.read.domain,
+            &answer.solution,
+            &answer.names(),
+            responses,
+            args.width,
+        ));
         written.extend(response_files(answer, responses));
     }
     if let Some(dpi) = args.png {
