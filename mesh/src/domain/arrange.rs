@@ -14,8 +14,9 @@ use crate::outline::piece::Piece;
 use crate::point::Point;
 use crate::tree::{EMPTY, hull};
 
-/// Pieces with more sides than this are not shown to the second judge.
-const SECOND_OPINION_LIMIT: usize = 2000;
+/// Pieces with more sides than this are not shown to the second judge, whose time grows with the square
+/// of their number: 1 ms at this many.
+const SECOND_OPINION_LIMIT: usize = 300;
 
 /// See [`super::build`].
 pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
