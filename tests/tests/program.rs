@@ -215,6 +215,114 @@ fn an_assumed_material_is_said() {
     assert!(notes.iter().any(|n| n["kind"] == "assumed-material"));
 }
 
+/// The demo's wheel: −8 kN at x = 44 against a shear centre at x = −25.3696 (energy definition), so
+/// 8 × 69.37 kN mm of torque; extremes, probes and cuts have the contract's keys.
+#[test]
+fn actions_are_answered_with_the_keys_of_the_contract() {
+    let results = json(&["--to-yield"], &demo("ramp-channel"));
+    let actions = results["actions"].as_array().unwrap();
+    let wheel = actions.iter().find(|a| a["name"] == "wheel").unwrap();
+    let torque = wheel["torque"].as_f64().unwrap();
+    let offset = 44.0 + 25.369_63;
+    assert!((torque + 8.0 * offset * 1e-3).abs() < 1e-6, "{torque}");
+    assert!(wheel["load_factor_to_yield"].as_f64().unwrap() > 1.0);
+    for key in [
+        "sigma_max",
+        "sigma_min",
+        "tau",
+        "von_mises",
+        "tresca",
+        "principal_1",
+        "principal_3",
+        "utilisation",
+    ] {
+        let extreme = &wheel["extremes"][key];
+        assert!(extreme["value"].is_number(), "{key}");
+        assert_eq!(extreme["at"].as_array().unwrap().len(), 2);
+        assert!(extreme["piece"].is_string());
+    }
+    let probe = &wheel["probes"][0];
+    for key in ["sigma", "tau_x", "tau_y", "von_mises"] {
+        assert!(probe[key].is_number(), "{key}");
+    }
+    let cut = &wheel["cuts"][0];
+    // At mid-height the flow is V Q / I, Q = 80·12·94 + 8·88·44 (common practice, no source).
+    let flow = cut["shear_flow"].as_f64().unwrap();
+    let q = 80.0 * 12.0 * 94.0 + 8.0 * 88.0 * 44.0;
+    let i = results["properties"]["second_moment_x"]["value"]
+        .as_f64()
+        .unwrap();
+    assert!(
+        (flow.abs() - 8.0 * q / i).abs() < 1e-8 * flow.abs(),
+        "{flow}"
+    );
+    assert!(cut["normal_force"].is_number());
+}
+
+#[test]
+fn a_yield_stress_that_is_asked_for_and_missing_is_an_error() {
+    let folder = tempfile::tempdir().unwrap();
+    let file = folder.path().join("bar.section.toml");
+    fs::write(
+        &file,
+        "title = \"Bar (invented)\"\n[material.alloy]\nE = 70000\nnu = 0.33\n\
+         [[piece]]\nname = \"bar\"\nbar = { at = [0, 0], b = 10, h = 60 }\n\
+         [[action]]\nname = \"pull\"\nN = 5\n",
+    )
+    .unwrap();
+    program()
+        .args(["solve", "--json"])
+        .arg(&file)
+        .assert()
+        .success();
+    let output = program()
+        .args(["solve", "--json", "--to-yield"])
+        .arg(&file)
+        .assert()
+        .code(2)
+        .stdout("");
+    let message = String::from_utf8(output.get_output().stderr.clone()).unwrap();
+    assert!(
+        message.contains("bar.section.toml") && message.contains("yield"),
+        "{message}"
+    );
+}
+
+#[test]
+fn actions_write_tables_fields_and_pictures() {
+    let folder = tempfile::tempdir().unwrap();
+    program()
+        .args(["solve", "--quiet", "--png", "60", "--out"])
+        .arg(folder.path())
+        .arg(demo("ramp-channel"))
+        .assert()
+        .success();
+    for name in [
+        "stresses.csv",
+        "field-wheel.csv",
+        "field-wheel.vtu",
+        "stress-wheel-von-mises.svg",
+        "stress-wheel-sigma.svg",
+        "stress-wheel-tau.svg",
+        "stress-envelope-von-mises.svg",
+        "cut-web-at-mid-height-wheel.svg",
+        "cut-web-at-mid-height-wheel.csv",
+        "section.png",
+    ] {
+        assert!(folder.path().join(name).exists(), "{name}");
+    }
+    for entry in fs::read_dir(folder.path()).unwrap() {
+        let path = entry.unwrap().path();
+        if path.extension().is_some_and(|e| e == "svg") {
+            assert!(
+                fs::metadata(&path).unwrap().len() < 400_000,
+                "{}",
+                path.display()
+            );
+        }
+    }
+}
+
 #[test]
 fn settings_out_of_range_are_refused() {
     for args in [

@@ -58,6 +58,7 @@ pub(crate) fn sample_solution() -> Solution {
 fn results() -> Results {
     let run = Run {
         read: 0.001,
+        actions: 0.25,
         write: 0.002,
         total: 0.05,
         peak_memory: Some(12_345_678),
