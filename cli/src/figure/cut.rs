@@ -51,30 +51,54 @@ pub fn draw(
     let right = width - MARGIN - if beside { SKETCH + 5.0 } else { 0.0 };
     let top = page.cursor;
     let factor = stress_per_force(units);
-    let unit = units.stress;
-    for (name, value) in [
-        (
-            "σ",
-            (|s: &CutSample| s.stress.sigma) as fn(&CutSample) -> f64,
-        ),
-        ("τ_n", |s: &CutSample| s.normal_shear),
-    ] {
-        let runs: Vec<Vec<Point>> = result
-            .runs
+    let along = |value: fn(&CutSample) -> f64| -> Vec<Vec<Point>> {
+        let run = |run: &Vec<CutSample>| {
+            run.iter()
+                .map(|s| Point::new(s.distance, factor * value(s)))
+                .collect()
+        };
+        result.runs.iter().map(run).collect()
+    };
+    let size = result
+        .runs
+        .iter()
+        .flatten()
+        .map(|s| factor * s.stress.von_mises())
+        .fold(0.0, f64::max);
+    let (shown, nought): (Vec<_>, Vec<_>) = [
+        ("σ", along(|s| s.stress.sigma)),
+        ("τ_n", along(|s| s.normal_shear)),
+    ]
+    .into_iter()
+    .partition(|(_, runs)| {
+        let greatest = runs.iter().flatten().map(|p| p.y.abs()).fold(0.0, f64::max);
+        greatest > 1e-7 * size
+    });
+    let left = MARGIN
+        + shown
             .iter()
-            .map(|run| {
-                run.iter()
-                    .map(|s| Point::new(s.distance, factor * value(s)))
-                    .collect()
-            })
-            .collect();
-        plot(&mut page, right, &format!("{name} in {unit}"), &runs);
+            .map(|(_, runs)| numbers(runs))
+            .fold(0.0, f64::max)
+        + 1.8;
+    for (name, runs) in &shown {
+        plot(
+            &mut page,
+            (left, right),
+            &format!("{name} in {}", units.stress),
+            runs,
+        );
     }
-    page.cursor += 1.1 * SMALL;
+    page.cursor += 0.4 * SMALL;
     let caption = format!("distance along the cut in {}", units.length);
     let at = Point::new(right, page.cursor);
     page.text(at, &Label::small(&caption).anchored(Anchor::End));
     page.cursor += 0.5 * SMALL;
+    for (name, _) in &nought {
+        page.cursor += 1.2 * LABEL;
+        let text = format!("{name} is zero along the cut.");
+        page.text(Point::new(MARGIN, page.cursor), &Label::new(&text));
+        page.cursor += 0.3 * LABEL;
+    }
     if beside {
         let area = Rect::new(
             width - MARGIN - SKETCH,
@@ -101,22 +125,30 @@ pub fn draw(
     page.finish(&notes, CAUTION)
 }
 
-/// One plot below the cursor, from the left margin to `right`; moves the cursor below its numbers.
-fn plot(page: &mut Page, right: f64, quantity: &str, runs: &[Vec<Point>]) {
-    let all = || runs.iter().flatten();
-    let fold = |of: fn(&Point) -> f64, start: f64, with: fn(f64, f64) -> f64| {
-        all().map(of).fold(start, with)
-    };
+/// Levels of a plot, which has its zero line.
+fn levels(runs: &[Vec<Point>]) -> Levels {
+    let all = || runs.iter().flatten().map(|p| p.y);
+    Levels::between(all().fold(0.0, f64::min), all().fold(0.0, f64::max))
+}
+
+/// Width of a plot's numbers.
+fn numbers(runs: &[Vec<Point>]) -> f64 {
+    levels(runs)
+        .printed()
+        .iter()
+        .map(|t| text::width(t, SMALL, false))
+        .fold(0.0, f64::max)
+}
+
+/// One plot below the cursor, its frame from `left` to `right`; moves the cursor below its numbers.
+fn plot(page: &mut Page, (left, right): (f64, f64), quantity: &str, runs: &[Vec<Point>]) {
+    let all = || runs.iter().flatten().map(|p| p.x);
     let (x0, x1) = (
-        fold(|p| p.x, f64::INFINITY, f64::min),
-        fold(|p| p.x, f64::NEG_INFINITY, f64::max),
+        all().fold(f64::INFINITY, f64::min),
+        all().fold(f64::NEG_INFINITY, f64::max),
     );
-    let low = fold(|p| p.y, 0.0, f64::min);
-    let high = fold(|p| p.y, 0.0, f64::max);
-    let levels = Levels::between(low, high);
+    let levels = levels(runs);
     let printed = levels.printed();
-    let room = |t: &String| text::width(t, SMALL, false);
-    let left = MARGIN + printed.iter().map(room).fold(0.0, f64::max) + 1.8;
     page.cursor += 0.78 * LABEL;
     let caption = match levels.power() {
         0 => quantity.to_string(),
@@ -179,7 +211,7 @@ fn plot(page: &mut Page, right: f64, quantity: &str, runs: &[Vec<Point>]) {
         }
     }
     label_extremes(page, frame, &on_page, runs);
-    page.cursor = frame.y1 + 1.0 + 1.2 * SMALL + 1.5;
+    page.cursor = frame.y1 + 1.0 + 1.2 * SMALL + 2.5;
 }
 
 fn polyline(points: &[Point]) -> String {

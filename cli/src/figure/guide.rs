@@ -12,7 +12,7 @@ use super::view::View;
 
 /// How far guides run beyond what is drawn, mm.
 const BEYOND: f64 = 3.5;
-const HEAD: f64 = 3.0;
+const HEAD: f64 = 4.0;
 const CHAIN: &str = "3.2 0.7 0.6 0.7";
 
 /// What a line says.

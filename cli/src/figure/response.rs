@@ -188,7 +188,7 @@ impl Scene<'_> {
         let (what, symbol, values) = match shown {
             Shown::VonMises => (
                 "Von Mises stress √(σ² + 3τ²)",
-                "σ_v",
+                "von Mises stress",
                 sigma
                     .iter()
                     .zip(tau)
@@ -287,7 +287,7 @@ impl Scene<'_> {
             kind: "Envelope of all actions",
             title: self.title,
             subtitle: &subtitle,
-            symbol: "σ_v",
+            symbol: "von Mises stress",
             unit: self.units.stress,
             units: self.units,
             domain: self.domain,
@@ -325,7 +325,12 @@ pub fn described(units: &Units, response: &Response) -> String {
     let parts: Vec<String> = all
         .iter()
         .filter(|(_, value, _)| *value != 0.0)
-        .map(|(symbol, value, unit)| format!("{symbol} = {} {unit}", digits::short(*value, 4)))
+        .map(|(symbol, value, unit)| {
+            // Neither equals sign nor unit may begin a line.
+            let nb = '\u{a0}';
+            let unit = unit.replace(' ', "\u{a0}");
+            format!("{symbol}{nb}={nb}{}{nb}{unit}", digits::short(*value, 4))
+        })
         .collect();
     if parts.is_empty() {
         "no force".into()

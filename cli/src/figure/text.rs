@@ -74,7 +74,7 @@ pub fn runs_width(runs: &[Run], size: f64, bold: bool) -> f64 {
 fn advance(c: char) -> f64 {
     match c {
         'i' | 'j' | 'l' | '\'' => 0.28,
-        ' ' | '.' | ',' | '·' => 0.32,
+        ' ' | '\u{a0}' | '.' | ',' | '·' => 0.32,
         ':' | ';' | '|' | 'I' | '/' => 0.34,
         '(' | ')' | '-' | 't' | 'f' | 'r' | '[' | ']' => 0.42,
         '⁰'..='⁹' | '¹' | '²' | '³' | '⁻' => 0.46,
@@ -97,7 +97,8 @@ fn advance(c: char) -> f64 {
 pub fn wrap(text: &str, size: f64, limit: f64) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
     let mut line = String::new();
-    for word in text.split_whitespace() {
+    let breaks = |c: char| c.is_whitespace() && c != '\u{a0}';
+    for word in text.split(breaks).filter(|word| !word.is_empty()) {
         let longer = if line.is_empty() {
             word.to_string()
         } else {
