@@ -207,8 +207,8 @@ impl Scene<'_> {
         };
         let subtitle = format!("{what} in {unit} under {forces}.");
         let error = format!(
-            "Error of the shear stress in energy: at most {} %.",
-            digits::short(100.0 * response.energy_error, 2)
+            "Error of the shear stress in energy: at most {}.",
+            digits::percent_up(response.energy_error)
         );
         let field = Field {
             kind: &response.name,

@@ -166,7 +166,7 @@ pub fn markup(runs: &[Run], size: f64) -> String {
             (false, false) => out.push_str(&text),
             (true, false) => {
                 // Readers drop the space that begins an element: it is made by moving on.
-                let bare = text.trim_start_matches(' ');
+                let bare = text.trim_start_matches([' ', '\u{a0}']);
                 let shift = if bare == text { 0.05 } else { 0.32 };
                 out.push_str(&format!(
                     r#"<tspan dx="{:.2}" dy="{:.2}">{bare}</tspan>"#,

@@ -133,3 +133,11 @@ fn short_numbers_drop_trailing_zeros() {
     assert_eq!(short(2.5e7, 4), "25×10⁶");
     assert_eq!(superscript(-12), "⁻¹²");
 }
+
+#[test]
+fn bounds_of_errors_round_up() {
+    assert_eq!(percent_up(0.0), "0 %");
+    assert_eq!(percent_up(0.001_01), "0.11 %");
+    assert_eq!(percent_up(0.123_4), "13 %");
+    assert_eq!(percent_up(2.0e-5), "0.002 %");
+}

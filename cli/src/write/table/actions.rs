@@ -125,7 +125,7 @@ fn governing_row(
     if used {
         row.push(response.load_factor.map_or("–".into(), short));
     }
-    row.push(percent(response.energy_error));
+    row.push(digits::percent_up(response.energy_error));
     row
 }
 
@@ -220,7 +220,19 @@ fn columns(
     }
     let hard = |text: &str| text.replace(' ', "\u{a0}");
     let head = |text: &str| style(Cell::new(hard(text)), Attribute::Dim, look);
-    table.add_row(heads.iter().map(|(h, _)| head(h)).collect::<Vec<_>>());
+    let indent = |h: &str| {
+        if h == heads[0].0 {
+            format!("  {h}")
+        } else {
+            h.into()
+        }
+    };
+    table.add_row(
+        heads
+            .iter()
+            .map(|(h, _)| head(&indent(h)))
+            .collect::<Vec<_>>(),
+    );
     if heads.iter().any(|(_, unit)| !unit.is_empty()) {
         table.add_row(heads.iter().map(|(_, unit)| head(unit)).collect::<Vec<_>>());
     }
@@ -276,17 +288,6 @@ fn plain(x: f64, digits: i32) -> String {
     digits::short(x, digits).replace('−', "-")
 }
 
-fn percent(share: f64) -> String {
-    if share == 0.0 {
-        "0 %".into()
-    } else {
-        // Rounded up: it is a bound.
-        let digit = 10f64.powf((100.0 * share).log10().floor() - 1.0);
-        let up = (100.0 * share / digit).ceil() * digit;
-        format!("{} %", plain(up, 2))
-    }
-}
-
 #[cfg(test)]
 mod tests {
     #![allow(clippy::unwrap_used)]
@@ -319,14 +320,6 @@ mod tests {
             }
             assert!(!text.contains('\u{a0}') && !text.contains('\u{1b}'));
         }
-    }
-
-    #[test]
-    fn bounds_of_errors_round_up() {
-        assert_eq!(percent(0.0), "0 %");
-        assert_eq!(percent(0.001_01), "0.11 %");
-        assert_eq!(percent(0.123_4), "13 %");
-        assert_eq!(percent(2.0e-5), "0.002 %");
     }
 
     #[test]
