@@ -4,6 +4,7 @@
 use sectile_mesh::{Point, Vector};
 
 use super::marks::{SHEAR, arrowhead};
+use super::outline::Shape;
 use super::page::{INK, Page, Pen};
 use super::place::Ground;
 use super::rect::Rect;
@@ -11,8 +12,10 @@ use super::surface::Surface;
 use super::view::View;
 
 /// How far guides run beyond what is drawn, mm.
-const BEYOND: f64 = 3.5;
-const HEAD: f64 = 4.0;
+const BEYOND: f64 = 4.5;
+const HEAD: f64 = 3.6;
+/// Step at which a guide looks for material, mm.
+const STEP: f64 = 0.25;
 const CHAIN: &str = "3.2 0.7 0.6 0.7";
 
 /// What a line says.
@@ -100,27 +103,51 @@ impl Guide {
     pub fn note(&self) -> &'static str {
         match self.meaning {
             Meaning::NeutralAxis => "Chain line: neutral axis.",
-            Meaning::LineOfAction => "Chain line with arrow: line of action of the shear force.",
+            Meaning::LineOfAction => {
+                "Chain line with arrow: line of action of the shear force, not drawn over material."
+            }
         }
     }
 
-    /// Draws it across `drawn` (page) and a little beyond; labels keep off it. Whether it is to be seen.
+    /// Draws it across `drawn` (page) and a little beyond, not over material, which it would hide where
+    /// it runs along a wall; labels keep off it. Whether it is to be seen.
     pub fn draw(&self, page: &mut Page, ground: &mut Ground, view: &View, drawn: Rect) -> bool {
         let u = Vector::new(self.along.x, -self.along.y);
         let Some((a, b)) = clipped(view.point(self.through), u, drawn.grown(BEYOND)) else {
             return false;
         };
-        match self.meaning {
-            Meaning::NeutralAxis => page.line(a, b, Pen::line(INK, 0.2).dashed(CHAIN)),
+        let (end, pen) = match self.meaning {
+            Meaning::NeutralAxis => (b, Pen::line(INK, 0.2).dashed(CHAIN)),
             Meaning::LineOfAction => {
-                page.line(a, b, Pen::line("#ffffff", 0.6));
-                page.line(a, b - u * HEAD, Pen::line(SHEAR, 0.3).dashed(CHAIN));
                 arrowhead(page, b, u, HEAD, SHEAR);
+                (b - u * HEAD, Pen::line(SHEAR, 0.3).dashed(CHAIN))
             }
+        };
+        for (p, q) in bare(a, end, ground.shape) {
+            page.line(p, q, pen);
         }
         ground.leaders.push((a, b));
         true
     }
+}
+
+/// The stretches from `a` to `b` that have no material.
+fn bare(a: Point, b: Point, shape: Option<&Shape>) -> Vec<(Point, Point)> {
+    let steps = (a.distance(b) / STEP).ceil().max(1.0) as usize;
+    let mut out: Vec<(Point, Point)> = Vec::new();
+    let mut open = false;
+    for k in 0..steps {
+        let at = |t: f64| a.lerp(b, t / steps as f64);
+        let (from, to) = (at(k as f64), at(k as f64 + 1.0));
+        let free = !shape.is_some_and(|s| s.covers(from) || s.covers(to));
+        match out.last_mut() {
+            Some(last) if free && open => last.1 = to,
+            _ if free => out.push((from, to)),
+            _ => {}
+        }
+        open = free;
+    }
+    out
 }
 
 /// The part of the line through `p` along `u` inside `r`.
@@ -162,6 +189,23 @@ mod tests {
         ] {
             assert_eq!(Guide::neutral_axis(&surface, &field), None);
         }
+    }
+
+    #[test]
+    fn material_is_not_covered() {
+        let domain = samples::annulus(50.0, 50.0, 40.0, 20.0);
+        let square = Rect::new(0.0, 0.0, 100.0, 100.0);
+        let shape = Shape::new(&domain, &View::fit(square, square));
+        let p = Point::new;
+        let runs = bare(p(0.0, 50.0), p(100.0, 50.0), Some(&shape));
+        let ends: Vec<[f64; 2]> = runs.iter().map(|(p, q)| [p.x, q.x]).collect();
+        assert_eq!(ends.len(), 3, "{ends:?}");
+        for (found, expected) in ends.iter().zip([[0.0, 10.0], [30.0, 70.0], [90.0, 100.0]]) {
+            for k in 0..2 {
+                assert!((found[k] - expected[k]).abs() < 2.0 * STEP, "{ends:?}");
+            }
+        }
+        assert_eq!(bare(p(0.0, 0.0), p(9.0, 0.0), None).len(), 1);
     }
 
     #[test]
