@@ -8,7 +8,7 @@ use clap::Args;
 use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
 use sectile_solver::stress::extreme::DEFAULT_EXCLUSION;
-use sectile_solver::stress::field::UnitFields;
+use sectile_solver::stress::field::{UnitFields, weighted_points};
 
 use super::Outcome;
 use super::progress::LevelProgress;
@@ -329,11 +329,12 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
     )];
     let response_slugs = slugs(responses.list.iter().map(|r| r.name.as_str()));
     let nodes = UnitFields::new(&answer.solution, answer.solution.order);
+    let points = weighted_points(&answer.solution, &responses.fields);
     for (response, slug) in responses.list.iter().zip(&response_slugs).take(MOST_FIELDS) {
         let Some(nodes) = &nodes else { continue };
         out.push((
             format!("field-{slug}.csv"),
-            actions::field_csv(units, &names, &answer.solution, nodes, &response.forces)
+            actions::field_csv(units, &names, &answer.solution, &points, &response.forces)
                 .into_bytes(),
         ));
         out.push((

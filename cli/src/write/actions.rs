@@ -5,7 +5,7 @@
 use sectile_solver::solution::Solution;
 use sectile_solver::stress::cut::CutResult;
 use sectile_solver::stress::extreme::Extreme;
-use sectile_solver::stress::field::UnitFields;
+use sectile_solver::stress::field::WeightedPoint;
 use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::state::Stress;
@@ -33,11 +33,12 @@ pub const STRESSES: [&str; 13] = [
     "remark",
 ];
 /// The columns of `field-<action>.csv`.
-pub const FIELD: [&str; 12] = [
+pub const FIELD: [&str; 13] = [
     "triangle",
     "piece",
     "x",
     "y",
+    "weight",
     "sigma",
     "tau_x",
     "tau_y",
@@ -156,40 +157,24 @@ fn extreme_row(
     ]
 }
 
-/// The stress at every lattice point of every triangle, to nine digits: a point that several triangles
-/// share comes once for each, with the value on that side.
+/// The stress at the solver's integration points, to nine digits. `weight` is the point's share of
+/// the area: `Σ weight·sigma` is the axial force, `Σ weight·sigma·(y − y_c)` the moment M_x, and so on.
 #[must_use]
 pub fn field_csv(
     units: &Units,
     names: &Names,
     solution: &Solution,
-    fields: &UnitFields,
+    points: &[WeightedPoint],
     forces: &SectionForces,
 ) -> String {
-    let per = fields.lattice.points.len().max(1);
     let mut table = Table::new(&FIELD);
-    for (i, (at, stress)) in fields
-        .positions
-        .iter()
-        .zip(fields.stresses(forces))
-        .enumerate()
-    {
-        let s = scaled(&stress, stress_per_force(units));
+    for point in points {
+        let s = scaled(&point.unit.under(forces), stress_per_force(units));
         let [first, third] = s.principal();
-        let [
-            x,
-            y,
-            sigma,
-            tau_x,
-            tau_y,
-            tau,
-            von_mises,
-            tresca,
-            first,
-            third,
-        ] = [
-            at.x,
-            at.y,
+        let numbers = [
+            point.at.x,
+            point.at.y,
+            point.weight,
             s.sigma,
             s.tau.x,
             s.tau.y,
@@ -200,17 +185,30 @@ pub fn field_csv(
             third,
         ]
         .map(nine_digits);
-        let triangle = i / per;
         let piece = solution
             .mesh
             .piece
-            .get(triangle)
+            .get(point.triangle as usize)
             .map_or("", |&p| names.piece(p));
+        let [
+            x,
+            y,
+            weight,
+            sigma,
+            tau_x,
+            tau_y,
+            tau,
+            von_mises,
+            tresca,
+            first,
+            third,
+        ] = numbers;
         table.row([
-            triangle.to_string(),
+            point.triangle.to_string(),
             piece.into(),
             x,
             y,
+            weight,
             sigma,
             tau_x,
             tau_y,

@@ -192,12 +192,14 @@ impl Search<'_> {
         let solved = self.evaluator.solved;
         let table = PointTable::single(&solved.tables, p, self.ready);
         let at = self.evaluator.at(self.ready, &table, 0);
-        // A coordinate that is zero but for rounding is zero.
+        // Coordinates keep the digits that rounding leaves, so that 0 and 200 are just that.
+        let digits = 11 - solved.frame.scale.log10().floor() as i32;
+        let fine = 10.0_f64.powi(digits.abs());
         let snapped = |c: f64| {
-            if c.abs() < 1e-12 * solved.frame.scale {
-                0.0
+            if digits >= 0 {
+                (c * fine).round() / fine
             } else {
-                c
+                (c / fine).round() * fine
             }
         };
         let place = solved.frame.outward(Point::new(at.x, at.y));

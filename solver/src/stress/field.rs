@@ -62,6 +62,53 @@ pub struct UnitFields {
     pub superposition: Superposition,
 }
 
+/// A point of a rule that integrates over the section, with its unit stresses.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct WeightedPoint {
+    /// The triangle that it lies in.
+    pub triangle: u32,
+    /// Where, in the axes of the section file.
+    pub at: Point,
+    /// Its share of the area, length²: sums of weight times stress are section forces.
+    pub weight: f64,
+    /// Unit stresses there.
+    pub unit: UnitStress,
+}
+
+/// The solver's own integration points: the fields' sums over them give the section forces back to
+/// rounding. Empty for a section in separate parts.
+#[must_use]
+pub fn weighted_points(solution: &Solution, fields: &UnitFields) -> Vec<WeightedPoint> {
+    let Some(evaluator) = Evaluator::new(solution) else {
+        return Vec::new();
+    };
+    let solved = evaluator.solved;
+    let tables = &solved.tables;
+    let rules = [&tables.straight.table.rule, &tables.curved.table.rule];
+    let points = rules.map(|r| PointTable::new(tables, r.points.clone()));
+    (0..evaluator.triangles())
+        .into_par_iter()
+        .flat_map_iter(|t| {
+            let ready = evaluator.ready(t);
+            let k = usize::from(!evaluator.map(t).is_straight());
+            rules[k]
+                .weights
+                .iter()
+                .enumerate()
+                .map(|(p, w)| {
+                    let at = evaluator.at(&ready, &points[k], p);
+                    WeightedPoint {
+                        triangle: t as u32,
+                        at: solved.frame.outward(Point::new(at.x, at.y)),
+                        weight: w * at.det * solved.frame.scale.powi(2),
+                        unit: fields.superposition.unit_stress(solved, &at),
+                    }
+                })
+                .collect::<Vec<_>>()
+        })
+        .collect()
+}
+
 impl UnitFields {
     /// The fields on the lattice with `divisions` of each side; `None` for a section in separate
     /// parts.

@@ -6,6 +6,7 @@ use sectile_mesh::Point;
 use sectile_solver::quantity::Quantity;
 use sectile_solver::solution::Solution;
 use sectile_solver::stress::extreme::{Quotable, extremes, load_factor_to_yield};
+use sectile_solver::stress::field::{UnitFields, weighted_points};
 use sectile_solver::stress::{cut, probe};
 
 /// A channel with three actions, the last a combination.
@@ -175,15 +176,28 @@ fn stresses_have_every_measure_of_every_action_and_the_envelope() {
 fn fields_read_back_and_their_components_agree() {
     let sample = Sample::new();
     let response = &sample.responses.list[1];
+    let points = weighted_points(&sample.solution, &sample.responses.fields);
     let text = field_csv(
         &sample.units,
         &sample.names(),
         &sample.solution,
-        &sample.responses.fields,
+        &points,
         &response.forces,
     );
     let rows = rows(&text, &FIELD);
-    assert_eq!(rows.len(), sample.responses.fields.positions.len());
+    assert_eq!(rows.len(), points.len());
+    // The sums are the action's forces, in the file's units of stress times length².
+    let factor = crate::write::units::stress_per_force(&sample.units);
+    let total = |name: &str| -> f64 {
+        rows.iter()
+            .map(|r| float(r, &FIELD, "weight") * float(r, &FIELD, name) / factor)
+            .sum()
+    };
+    let f = response.forces;
+    let size = f.n.abs() + f.vx.abs() + f.vy.abs() + 1e-3;
+    assert!((total("sigma") - f.n).abs() < 1e-5 * size);
+    assert!((total("tau_x") - f.vx).abs() < 1e-5 * size);
+    assert!((total("tau_y") - f.vy).abs() < 1e-5 * size);
     let largest = rows
         .iter()
         .map(|r| float(r, &FIELD, "von_mises"))
