@@ -133,7 +133,8 @@ pub(crate) fn solve(
         progress(&level);
         levels.push(level);
         let reached = worst.1 <= settings.tolerance;
-        let next = if reached {
+        let rounding = !reached && limited_by_rounding(&aims, &result, settings.tolerance);
+        let next = if reached || rounding {
             None
         } else {
             refine(&mesh, &result, &aims, order, settings)
@@ -146,7 +147,7 @@ pub(crate) fn solve(
             continue;
         }
         if !reached {
-            notes.push(not_reached(&levels, settings));
+            notes.push(not_reached(&levels, settings, rounding));
         }
         properties.extend(outward(&shear, &moments, &scaled, &frame));
         properties.sort_by_key(|(q, _)| *q);
@@ -233,21 +234,39 @@ pub fn exclusion_radius(corner: &ReentrantCorner) -> f64 {
     0.1 * corner.wall
 }
 
-fn not_reached(levels: &[Level], settings: &Settings) -> Note {
+fn not_reached(levels: &[Level], settings: &Settings, rounding: bool) -> Note {
     let last = levels.last();
+    let reason = if rounding {
+        "Rounding in double precision is what is left of it: a finer mesh would not help."
+            .to_owned()
+    } else {
+        format!(
+            "The limit of {} unknowns stopped the refinement; a larger --max-unknowns makes the bounds \
+             narrower.",
+            settings.max_unknowns
+        )
+    };
     Note {
         kind: "tolerance-not-reached",
         text: format!(
-            "The tolerance of {:e} was not reached with {} unknowns (limit {}): {} stands at {:.1e}. \
-             The bounds given are true all the same; a larger --max-unknowns makes them narrower.",
+            "The tolerance of {:e} was not reached with {} unknowns: {} stands at {:.1e}. {reason} The \
+             bounds given are true all the same.",
             settings.tolerance,
             last.map_or(0, |l| l.unknowns),
-            settings.max_unknowns,
             last.map_or("", |l| l.worst.key()),
             last.map_or(0.0, |l| l.worst_error),
         ),
         at: None,
     }
+}
+
+/// Whether the gaps of every figure outside the tolerance are well within it: what is left is rounding.
+fn limited_by_rounding(aims: &[Aim], result: &LevelResult, tolerance: f64) -> bool {
+    let gaps = result.total.gaps();
+    aims.iter().filter(|a| a.error > tolerance).all(|a| {
+        let share: f64 = a.weights.iter().zip(gaps).map(|(w, g)| w * g).sum();
+        share < GAP_SHARE * tolerance
+    })
 }
 
 fn scaled_moments(m: &AreaMoments, frame: &Frame) -> AreaMoments {
@@ -378,14 +397,14 @@ fn refine(
         })
     };
     let most = shares.iter().fold(0.0_f64, |m, &s| m.max(s));
+    let count = shares.len() as f64;
     if most <= 0.0 {
         return None;
     }
     let mut target = most;
-    let limit = GROWTH * shares.len() as f64;
     for _ in 0..200 {
-        let (sum, count) = predicted(target);
-        if sum <= 0.5 || count > limit {
+        let (sum, predicted) = predicted(target);
+        if sum <= 0.5 && predicted >= LEAST_GROWTH * count || predicted > GROWTH * count {
             break;
         }
         target *= 0.7;
@@ -416,6 +435,10 @@ fn refine(
 const MOST_BISECTIONS: u8 = 4;
 /// Largest predicted growth of the number of triangles in one turn.
 const GROWTH: f64 = 3.0;
+/// Least predicted growth: a turn costs a factorisation, so it must be worth it.
+const LEAST_GROWTH: f64 = 1.1;
+/// Below this part of the tolerance the gaps are not what keeps a figure outside of it.
+const GAP_SHARE: f64 = 0.5;
 
 /// The shear properties in the units and axes of the domain.
 fn outward(
