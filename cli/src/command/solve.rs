@@ -14,6 +14,7 @@ use super::Outcome;
 use super::progress::LevelProgress;
 use super::respond::respond;
 use crate::figure;
+use crate::figure::style::{Drawing, Style};
 use crate::read::{ReadSection, section_from_path, show};
 use crate::response::{Names, Responses};
 use crate::write::json::{Results, Run};
@@ -55,6 +56,9 @@ pub struct SolveArgs {
     /// Print width of the figures, in mm.
     #[arg(long, default_value = "160mm", value_parser = print_width, value_name = "MM")]
     pub width: f64,
+    /// Draw fields as lines of equal value with the values on them, in place of bands of colour.
+    #[arg(long)]
+    pub contours: bool,
     /// Keep extremes of stress away from sharp re-entrant corners by this share of the wall there.
     #[arg(long, default_value_t = DEFAULT_EXCLUSION, value_parser = share, value_name = "SHARE")]
     pub corner_distance: f64,
@@ -265,12 +269,20 @@ fn write_folder(
     let write_start = Instant::now();
     let section = &answer.read.section;
     let mut written: Vec<(String, Vec<u8>)> = Vec::new();
+    let style = Style {
+        width_mm: args.width,
+        drawing: if args.contours {
+            Drawing::Lines
+        } else {
+            Drawing::Bands
+        },
+    };
     let mut figures = figure::all(
         &section.title,
         &section.units,
         &answer.read.domain,
         &answer.solution,
-        args.width,
+        style,
     );
     if let Some(responses) = &answer.responses {
         figures.extend(figure::responses(
@@ -280,7 +292,7 @@ fn write_folder(
             &answer.solution,
             &answer.names(),
             responses,
-            args.width,
+            style,
         ));
         written.extend(response_files(answer, responses));
     }

@@ -108,7 +108,7 @@ fn dimension(page: &mut Page, a: Point, b: Point, text: &str) -> Rect {
     }
     let upright = d.y.abs() > d.x.abs();
     let mut label = Label::new(text).anchored(Anchor::Middle);
-    label.upright = upright;
+    label.turn = if upright { 90.0 } else { 0.0 };
     let m = a.lerp(b, 0.5);
     let gap = 0.9;
     let at = if upright {

@@ -8,17 +8,20 @@ use super::SIZE_LIMIT;
 use super::arrows;
 use super::bands::Cut;
 use super::colour::{self, Rgb};
+use super::contour::{self, Contour};
 use super::extreme::{Extreme, extreme, mark_extremes};
 use super::guide::Guide;
 use super::legend::Scale;
 use super::levels::Levels;
 use super::marks::{self, Mark};
 use super::outline::{self, Shape};
-use super::page::{Finished, INK, MARGIN, Page, Pen};
+use super::page::{Finished, INK, Label, MARGIN, Page, Pen};
 use super::path::{FinePath, simplified, simplified_loop};
 use super::place::Ground;
 use super::rect::Rect;
+use super::style::{Drawing, Style};
 use super::surface::Surface;
+use super::text::{self, LABEL};
 use super::view::View;
 use crate::section::Units;
 use crate::write::{CAUTION, digits};
@@ -69,20 +72,22 @@ pub struct Field<'a> {
 
 /// Draws the field.
 #[must_use]
-pub fn draw(field: &Field, width: f64) -> Finished {
+pub fn draw(field: &Field, style: Style) -> Finished {
     let mut last = None;
     // Finer than a printer's dot first; coarser where the file would grow too large.
     for tolerance in [0.008, 0.02, 0.05, 0.1, 0.2] {
-        let finished = attempt(field, width, tolerance);
+        let finished = attempt(field, style, tolerance);
         if finished.svg.len() <= SIZE_LIMIT {
             return finished;
         }
         last = Some(finished);
     }
-    last.unwrap_or_else(|| attempt(field, width, 0.5))
+    last.unwrap_or_else(|| attempt(field, style, 0.5))
 }
 
-fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
+fn attempt(field: &Field, style: Style, tolerance: f64) -> Finished {
+    let width = style.width_mm;
+    let lines = style.drawing == Drawing::Lines;
     let mut page = Page::new(width, field.kind, field.title, field.subtitle);
     let extent = outline::extent(field.domain);
     let sight = extent.grown(1.5 * extent.width().hypot(extent.height()));
@@ -122,7 +127,7 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
         open_above,
     };
 
-    let beside = bounds.height() > 0.7 * bounds.width() && width >= 100.0;
+    let beside = !lines && bounds.height() > 0.7 * bounds.width() && width >= 100.0;
     let right = width - MARGIN - if beside { STANDING + 4.0 } else { 0.0 };
     // Labels of extremes stand around the section where they can: room for them on all sides.
     let area = Rect::new(
@@ -135,9 +140,8 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     let drawn = view.rect(bounds);
     let top_of_drawing = page.cursor;
     let shape = Shape::new(field.domain, &view);
-    paint(
-        &mut page, field, &levels, &colours, &view, &shape, tolerance,
-    );
+    let bands = (!lines).then_some(colours.as_slice());
+    let contours = paint(&mut page, field, &levels, bands, &view, &shape, tolerance);
     let bottom = drawn.y1 + 7.0;
 
     let mut ground = Ground {
@@ -181,7 +185,21 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
         &mut notes,
     );
 
-    if beside {
+    if lines {
+        // Rings about sharp corners stay whole.
+        let rings = field.excluded.iter().map(|c| {
+            let r = (c.radius * view.scale).max(0.5);
+            Rect::about(view.point(c.centre), r)
+        });
+        ground.taken.extend(rings);
+        let places = contour::places(&contours, &levels, &mut ground);
+        contour::write(&mut page, &levels, &places);
+        page.cursor = bottom + 0.5;
+        for line in text::wrap(&scale.in_words(), LABEL, width - 2.0 * MARGIN) {
+            page.cursor += 1.2 * LABEL;
+            page.text(Point::new(MARGIN, page.cursor), &Label::new(&line));
+        }
+    } else if beside {
         let column = Rect::new(
             width - MARGIN - STANDING,
             top_of_drawing + 1.0,
@@ -199,7 +217,12 @@ fn attempt(field: &Field, width: f64, tolerance: f64) -> Finished {
     let at = Point::new(MARGIN, page.cursor);
     marks::scale_bar(&mut page, at, view.scale, field.units.length);
     page.cursor += 0.5;
-    excluded_note(field, open_above, &mut notes);
+    let above = match (open_above, lines) {
+        (false, _) => "",
+        (true, false) => " The pointed end of the scale stands for all that is above it.",
+        (true, true) => " Nearer to them the field rises beyond the lines that are drawn.",
+    };
+    excluded_note(field, above, &mut notes);
     // The short ones share a line.
     let (long, short): (Vec<String>, Vec<String>) =
         notes.into_iter().partition(|n| n.starts_with(RINGS));
@@ -248,16 +271,17 @@ fn colours(levels: &Levels, signed: bool) -> Vec<Rgb> {
         .collect()
 }
 
-/// Bands, lines between them, the outline, arrows.
+/// Bands where there are colours for them, the lines between them, the outline, arrows over bands.
+/// Returns the lines.
 fn paint(
     page: &mut Page,
     field: &Field,
     levels: &Levels,
-    colours: &[Rgb],
+    bands: Option<&[Rgb]>,
     view: &View,
     shape: &Shape,
     tolerance: f64,
-) {
+) -> Vec<Contour> {
     let quantum = 0.01_f64.max(0.5 * tolerance);
     let on_page = Surface {
         points: field
@@ -270,33 +294,46 @@ fn paint(
         rim: field.surface.rim.clone(),
     };
     // Under everything the true outline in the lowest colour: chords of the bands leave no paper.
-    let base = colours[0].hex();
-    page.path(outline::boundary_path(field.domain, view), Pen::fill(&base));
+    if let Some(colours) = bands {
+        let base = colours[0].hex();
+        page.path(outline::boundary_path(field.domain, view), Pen::fill(&base));
+    }
+    let mut contours = Vec::new();
     let (mut solid, mut dashed) = (FinePath::new(quantum), FinePath::new(quantum));
     let mut nought = FinePath::new(quantum);
     for i in 1..levels.bands() {
         let cut = Cut::new(&on_page, field.values, levels.edge(i));
-        let mut path = FinePath::new(quantum);
-        for points in cut.region() {
-            path.closed(&simplified_loop(&points, tolerance));
+        if let Some(colours) = bands {
+            let mut path = FinePath::new(quantum);
+            for points in cut.region() {
+                path.closed(&simplified_loop(&points, tolerance));
+            }
+            if !path.is_empty() {
+                page.fine_path(path.finish(), quantum, Pen::fill(&colours[i].hex()));
+            }
         }
-        if !path.is_empty() {
-            page.fine_path(path.finish(), quantum, Pen::fill(&colours[i].hex()));
-        }
-        let path = match levels.first + i as i64 {
+        let multiple = levels.first + i as i64;
+        let path = match multiple {
             0 => &mut nought,
             k if k < 0 => &mut dashed,
             _ => &mut solid,
         };
         for points in cut.lines() {
             path.open(&simplified(&points, tolerance));
+            contours.push(Contour { multiple, points });
         }
     }
-    let thin = Pen::line(INK, if field.signed { 0.12 } else { 0.07 });
+    // Lines that stand alone are heavier than those between bands.
+    let (thin, heavy) = match (bands, field.signed) {
+        (None, _) => (0.18, 0.45),
+        (Some(_), true) => (0.12, 0.3),
+        (Some(_), false) => (0.07, 0.3),
+    };
+    let thin = Pen::line(INK, thin);
     for (path, pen) in [
         (solid, thin),
         (dashed, thin.dashed("0.9 0.6")),
-        (nought, Pen::line(INK, 0.3)),
+        (nought, Pen::line(INK, heavy)),
     ] {
         if !path.is_empty() {
             page.fine_path(path.finish(), quantum, pen);
@@ -310,14 +347,15 @@ fn paint(
         outline::boundary_path(field.domain, view),
         Pen::line(INK, 0.28),
     );
-    if let Some(direction) = field.direction {
+    if let (Some(direction), Some(_)) = (field.direction, bands) {
         let turned: Vec<Vector> = direction.iter().map(|d| Vector::new(d.x, -d.y)).collect();
         let greatest = levels.edge(levels.bands());
         arrows::draw(page, &on_page, &turned, greatest, shape);
     }
+    contours
 }
 
-fn excluded_note(field: &Field, open_above: bool, notes: &mut Vec<String>) {
+fn excluded_note(field: &Field, above: &str, notes: &mut Vec<String>) {
     if field.excluded.is_empty() {
         return;
     }
@@ -334,8 +372,6 @@ fn excluded_note(field: &Field, open_above: bool, notes: &mut Vec<String>) {
          sought farther than {distance} {} from them.",
         field.units.length
     );
-    if open_above {
-        text.push_str(" The pointed end of the scale stands for all that is above it.");
-    }
+    text.push_str(above);
     notes.push(text);
 }

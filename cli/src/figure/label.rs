@@ -32,8 +32,8 @@ pub struct Label<'a> {
     pub colour: &'a str,
     /// Whether underscores set subscripts.
     pub rich: bool,
-    /// Turned by 90° anticlockwise about its point.
-    pub upright: bool,
+    /// Turned about its point, degrees anticlockwise.
+    pub turn: f64,
     /// On white, so that it can be read on any ground.
     pub backed: bool,
 }
@@ -49,7 +49,7 @@ impl<'a> Label<'a> {
             bold: false,
             colour: INK,
             rich: true,
-            upright: false,
+            turn: 0.0,
             backed: false,
         }
     }
@@ -98,10 +98,13 @@ impl<'a> Label<'a> {
             Anchor::End => -w,
         };
         let (up, down) = (0.78 * self.size, 0.26 * self.size);
-        if self.upright {
-            Rect::new(at.x - up, at.y - start - w, at.x + down, at.y - start)
-        } else {
-            Rect::new(at.x + start, at.y - up, at.x + start + w, at.y + down)
-        }
+        let flat = Rect::new(start, -up, start + w, down);
+        let (s, c) = self.turn.to_radians().sin_cos();
+        // The page's y runs down.
+        let turned = |x: f64, y: f64| Point::new(at.x + x * c + y * s, at.y - x * s + y * c);
+        [flat.x0, flat.x1]
+            .into_iter()
+            .flat_map(|x| [turned(x, flat.y0), turned(x, flat.y1)])
+            .fold(Rect::EMPTY, Rect::with)
     }
 }

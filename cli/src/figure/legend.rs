@@ -36,6 +36,16 @@ impl Scale<'_> {
         }
     }
 
+    /// What the lines and the numbers on them are, and the step between them, for a drawing without bands.
+    #[must_use]
+    pub fn in_words(&self) -> String {
+        format!(
+            "Lines of equal {}; from line to line {}.",
+            self.caption(),
+            self.levels.number(1)
+        )
+    }
+
     fn band(&self, page: &mut Page, i: usize, rect: Rect, lying: bool) {
         let hex = self.colours[i].hex();
         let pen = Pen::line(INK, 0.1).filled(&hex);

@@ -82,6 +82,14 @@ impl Levels {
     /// The edges in print, in units of `10^power`, all to the same decimals.
     #[must_use]
     pub fn printed(&self) -> Vec<String> {
+        (self.first..=self.first + self.bands() as i64)
+            .map(|k| self.number(k))
+            .collect()
+    }
+
+    /// `multiple` steps in print, in units of `10^power`.
+    #[must_use]
+    pub fn number(&self, multiple: i64) -> String {
         let unit = 10f64.powi(self.power());
         let step = self.step / unit;
         let decimals = (0..12)
@@ -90,19 +98,16 @@ impl Levels {
                 (shifted - shifted.round()).abs() < 1e-9 * shifted.abs().max(1.0)
             })
             .unwrap_or(12) as usize;
-        (0..=self.bands())
-            .map(|i| {
-                let text = format!("{:.*}", decimals, self.edge(i) / unit);
-                if text
-                    .trim_matches(|c| matches!(c, '-' | '0' | '.'))
-                    .is_empty()
-                {
-                    "0".into()
-                } else {
-                    text.replace('-', "−")
-                }
-            })
-            .collect()
+        let value = multiple as f64 * self.step;
+        let text = format!("{:.*}", decimals, value / unit);
+        if text
+            .trim_matches(|c| matches!(c, '-' | '0' | '.'))
+            .is_empty()
+        {
+            "0".into()
+        } else {
+            text.replace('-', "−")
+        }
     }
 }
 

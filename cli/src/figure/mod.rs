@@ -7,6 +7,7 @@ pub mod arrows;
 pub mod bands;
 pub mod centres;
 pub mod colour;
+pub mod contour;
 pub mod cut;
 pub mod dimension;
 pub mod extreme;
@@ -26,6 +27,7 @@ pub mod rect;
 pub mod response;
 pub mod section;
 pub mod stress;
+pub mod style;
 pub mod surface;
 pub mod text;
 pub mod view;
@@ -48,6 +50,7 @@ use sectile_solver::solution::exclusion_radius;
 
 use crate::response::{Names, Responses};
 use crate::section::Units;
+use style::Style;
 use surface::Sharing;
 
 /// Print width where none is asked for, mm.
@@ -71,16 +74,16 @@ pub const FILES: &[&str] = &[
 ];
 
 /// All figures of a solved section: file name and SVG text. Fields that the solution does not have
-/// (those of a section in separate parts) are left out. `width_mm` is raised to [`NARROWEST`].
+/// (those of a section in separate parts) are left out. A width below [`NARROWEST`] is raised to it.
 #[must_use]
 pub fn all(
     title: &str,
     units: &Units,
     domain: &Domain,
     solution: &Solution,
-    width_mm: f64,
+    style: Style,
 ) -> Vec<(String, String)> {
-    finished(title, units, domain, solution, width_mm)
+    finished(title, units, domain, solution, style)
         .into_iter()
         .map(|(name, figure)| (name.to_string(), figure.svg))
         .collect()
@@ -100,7 +103,7 @@ pub fn responses(
     solution: &Solution,
     names: &Names,
     responses: &Responses,
-    width_mm: f64,
+    style: Style,
 ) -> Vec<(String, String)> {
     response::all(
         title,
@@ -109,19 +112,11 @@ pub fn responses(
         solution,
         names,
         responses,
-        printable(width_mm),
+        style.printable(),
     )
     .into_iter()
     .map(|(name, figure)| (name, figure.svg))
     .collect()
-}
-
-fn printable(width_mm: f64) -> f64 {
-    if width_mm.is_finite() {
-        width_mm.max(NARROWEST)
-    } else {
-        PRINT_WIDTH
-    }
 }
 
 fn finished(
@@ -129,9 +124,10 @@ fn finished(
     units: &Units,
     domain: &Domain,
     solution: &Solution,
-    width_mm: f64,
+    style: Style,
 ) -> Vec<(&'static str, Finished)> {
-    let width = printable(width_mm);
+    let style = style.printable();
+    let width = style.width_mm;
     let lattice = Lattice::new(divisions(solution));
     let positions = sample::positions(solution, &lattice);
     let sharing = Sharing::new(&solution.mesh, &lattice);
@@ -154,7 +150,7 @@ fn finished(
         known(stress.len()).then(|| {
             let mean = sharing.mean_vectors(&stress);
             stress::draw(
-                force, title, units, domain, &surface, &mean, &excluded, centre, width,
+                force, title, units, domain, &surface, &mean, &excluded, centre, style,
             )
         })
     };
@@ -181,7 +177,7 @@ fn finished(
             let warping = sample::warping(solution, &lattice);
             known(warping.len()).then(|| {
                 let values = sharing.mean(&warping);
-                warping::draw(title, units, domain, &surface, &values, centre, width)
+                warping::draw(title, units, domain, &surface, &values, centre, style)
             })
         }
         "shear-torque.svg" => stress(UnitForce::Torque),

@@ -237,9 +237,10 @@ impl Page {
         } else {
             ""
         };
-        let turn = if label.upright {
+        let turn = if label.turn != 0.0 {
             format!(
-                r#" transform="rotate(-90 {} {})""#,
+                r#" transform="rotate({} {} {})""#,
+                number(-label.turn),
                 number(at.x),
                 number(at.y)
             )

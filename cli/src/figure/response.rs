@@ -16,6 +16,7 @@ use super::field::{self, Field};
 use super::guide::Guide;
 use super::marks::Mark;
 use super::page::Finished;
+use super::style::Style;
 use super::surface::{Sharing, Surface};
 use super::{cut, divisions};
 use crate::response::{Names, Response, Responses};
@@ -64,7 +65,7 @@ pub fn all(
     solution: &Solution,
     names: &Names,
     responses: &Responses,
-    width: f64,
+    style: Style,
 ) -> Vec<(String, Finished)> {
     let Some(fields) = UnitFields::new(solution, divisions(solution)) else {
         return Vec::new();
@@ -90,7 +91,7 @@ pub fn all(
             .get(Quantity::ShearCentreX)
             .zip(solution.get(Quantity::ShearCentreY))
             .map(|(x, y)| Point::new(x.value, y.value)),
-        width,
+        style,
     };
     let action_slugs = slug::slugs(responses.list.iter().map(|r| r.name.as_str()));
     let cut_slugs = slug::slugs(names.cuts.iter().map(|c| c.name.as_str()));
@@ -114,7 +115,7 @@ pub fn all(
             let Some(line) = names.cuts.get(*c) else {
                 continue;
             };
-            let figure = cut::draw(title, units, domain, line, response, result, width);
+            let figure = cut::draw(title, units, domain, line, response, result, style.width_mm);
             out.push((format!("{}.svg", cut_files[*c][i]), figure));
         }
     }
@@ -131,7 +132,7 @@ struct Scene<'a> {
     fields: UnitFields,
     excluded: Vec<Circle>,
     shear_centre: Option<Point>,
-    width: f64,
+    style: Style,
 }
 
 impl Scene<'_> {
@@ -240,7 +241,7 @@ impl Scene<'_> {
                 &error
             },
         };
-        Some(field::draw(&field, self.width))
+        Some(field::draw(&field, self.style))
     }
 
     /// At each point the largest von Mises stress over all responses.
@@ -302,7 +303,7 @@ impl Scene<'_> {
             guides: &[],
             remark: &remark,
         };
-        Some(field::draw(&field, self.width))
+        Some(field::draw(&field, self.style))
     }
 }
 

@@ -8,11 +8,12 @@ use sectile_solver::sample::UnitForce;
 use super::field::{self, Field};
 use super::marks::Mark;
 use super::page::Finished;
+use super::style::Style;
 use super::surface::Surface;
 use crate::section::Units;
 use crate::write::units::{stress_per_force, stress_per_moment};
 
-/// Draws |τ| with arrows along τ. `stress` is per length³ for a torque, per length² for a force.
+/// Draws |τ|, in bands with arrows along τ. `stress` is per length³ for a torque, per length² for a force.
 #[must_use]
 pub fn draw(
     force: UnitForce,
@@ -23,7 +24,7 @@ pub fn draw(
     stress: &[Vector],
     excluded: &[Circle],
     shear_centre: Option<Point>,
-    width: f64,
+    style: Style,
 ) -> Finished {
     let (symbol, action, factor) = match force {
         UnitForce::Torque => (
@@ -72,5 +73,5 @@ pub fn draw(
         guides: &[],
         remark: "",
     };
-    field::draw(&field, width)
+    field::draw(&field, style)
 }

@@ -11,9 +11,24 @@ use sectile_solver::sample::{Lattice, UnitForce};
 use sectile_solver::stress::measure::Measure;
 
 use super::page::Finished;
+use super::style::Drawing;
 use super::surface::{Sharing, Surface};
 use super::*;
 use crate::write::actions::tests::Sample;
+
+fn bands(width_mm: f64) -> Style {
+    Style {
+        width_mm,
+        drawing: Drawing::Bands,
+    }
+}
+
+fn lines(width_mm: f64) -> Style {
+    Style {
+        width_mm,
+        drawing: Drawing::Lines,
+    }
+}
 
 fn units() -> Units {
     Units {
@@ -248,7 +263,7 @@ fn warping_figures() {
             &surface,
             &values,
             Some(Point::new(b / 2.0, h / 2.0)),
-            160.0,
+            bands(160.0),
         );
         sound(&format!("warping-{b}"), &figure);
     }
@@ -272,7 +287,7 @@ fn stress_figures() {
         &stress,
         &[],
         Some(Point::default()),
-        160.0,
+        bands(160.0),
     );
     sound("stress-annulus", &figure);
 
@@ -305,7 +320,7 @@ fn stress_figures() {
             &stress,
             &excluded,
             Some(Point::new(100.0, 15.0)),
-            width,
+            bands(width),
         );
         sound(&format!("stress-rectangle-{width}"), &figure);
         assert!(figure.svg.contains("Dashed rings"));
@@ -348,7 +363,13 @@ fn solved_sections() {
     ] {
         let solution = samples::solved(&domain);
         for width in [60.0, 160.0] {
-            let figures = finished("An invented bar", &units(), &domain, &solution, width);
+            let figures = finished(
+                "An invented bar",
+                &units(),
+                &domain,
+                &solution,
+                bands(width),
+            );
             assert_eq!(figures.len(), FILES.len());
             for (file, figure) in &figures {
                 sound(
@@ -397,7 +418,7 @@ fn responding() -> Vec<(&'static str, Domain, Sample)> {
     .collect()
 }
 
-fn drawn(domain: &Domain, sample: &Sample, width: f64) -> Vec<(String, Finished)> {
+fn drawn(domain: &Domain, sample: &Sample, style: Style) -> Vec<(String, Finished)> {
     response::all(
         "An invented bar",
         &sample.units,
@@ -405,7 +426,7 @@ fn drawn(domain: &Domain, sample: &Sample, width: f64) -> Vec<(String, Finished)
         &sample.solution,
         &sample.names(),
         &sample.responses,
-        width,
+        style,
     )
 }
 
@@ -413,7 +434,7 @@ fn drawn(domain: &Domain, sample: &Sample, width: f64) -> Vec<(String, Finished)
 fn responses_have_their_figures() {
     for (name, domain, sample) in responding() {
         for width in [60.0, 160.0] {
-            let figures = drawn(&domain, &sample, width);
+            let figures = drawn(&domain, &sample, bands(width));
             let names: Vec<&str> = figures.iter().map(|(n, _)| n.as_str()).collect();
             assert_eq!(
                 names,
@@ -448,6 +469,74 @@ fn responses_have_their_figures() {
     }
 }
 
+/// The texts that are turned, which in figures of fields are those on lines.
+fn on_lines(svg: &str) -> Vec<&str> {
+    let texts = svg.split("<text ").skip(1);
+    texts
+        .filter(|t| t.contains("rotate("))
+        .map(|t| &t[t.find('>').unwrap() + 1..t.find('<').unwrap()])
+        .collect()
+}
+
+/// The step that a figure in lines states.
+fn stated_step(svg: &str) -> f64 {
+    let rest = svg.split("from line to line ").nth(1).unwrap();
+    let end = rest.find(|c: char| c != '.' && !c.is_ascii_digit());
+    rest[..end.unwrap()].trim_end_matches('.').parse().unwrap()
+}
+
+#[test]
+fn fields_in_lines_carry_their_levels() {
+    for (name, domain, sample) in responding() {
+        for width in [60.0, 160.0] {
+            let draw = || {
+                let solution = &sample.solution;
+                let mut all: Vec<(String, Finished)> =
+                    finished("An invented bar", &units(), &domain, solution, lines(width))
+                        .into_iter()
+                        .map(|(n, f)| (n.to_string(), f))
+                        .collect();
+                all.extend(drawn(&domain, &sample, lines(width)));
+                all
+            };
+            let figures = draw();
+            let mut written = 0;
+            for (file, figure) in &figures {
+                sound(
+                    &format!("lines-{name}-{width}-{}", file.trim_end_matches(".svg")),
+                    figure,
+                );
+                if !figure.svg.contains("Lines of equal") {
+                    assert!(
+                        ["section", "mesh", "cut"]
+                            .iter()
+                            .any(|f| file.starts_with(f))
+                            || figure.svg.contains("does not warp"),
+                        "{file}"
+                    );
+                    continue;
+                }
+                let step = if width > 100.0 {
+                    stated_step(&figure.svg)
+                } else {
+                    continue;
+                };
+                for text in on_lines(&figure.svg) {
+                    let value: f64 = text.replace('−', "-").parse().unwrap();
+                    let multiple = value / step;
+                    assert!((multiple - multiple.round()).abs() < 1e-9, "{file}: {text}");
+                    assert!(multiple.abs() < 12.5, "{file}: {text}");
+                    written += 1;
+                }
+            }
+            assert!(width < 100.0 || written > 8, "{name}: {written}");
+            for ((_, once), (_, again)) in figures.iter().zip(&draw()) {
+                assert_eq!(once.svg, again.svg);
+            }
+        }
+    }
+}
+
 #[test]
 fn of_many_responses_those_that_govern_are_drawn() {
     let (_, domain, mut sample) = responding().swap_remove(0);
@@ -473,7 +562,7 @@ fn of_many_responses_those_that_govern_are_drawn() {
     for i in (0..sample.responses.list.len()).filter(|i| !chosen.contains(i)) {
         assert!(value(i) <= least);
     }
-    let figures = drawn(&domain, &sample, 160.0);
+    let figures = drawn(&domain, &sample, bands(160.0));
     assert!(figures.len() <= 1 + 4 * response::MOST);
     let (name, envelope) = &figures[0];
     sound(name, envelope);
@@ -483,7 +572,7 @@ fn of_many_responses_those_that_govern_are_drawn() {
 #[test]
 fn the_quoted_extreme_is_that_of_the_tables() {
     let (_, domain, sample) = responding().swap_remove(0);
-    let figures = drawn(&domain, &sample, 160.0);
+    let figures = drawn(&domain, &sample, bands(160.0));
     for (file, measure) in [
         ("stress-wheel-at-midspan-von-mises.svg", Measure::VonMises),
         ("stress-wheel-at-midspan-sigma.svg", Measure::SigmaMax),
@@ -502,7 +591,7 @@ fn the_quoted_extreme_is_that_of_the_tables() {
 fn separate_parts_have_the_figures_that_need_no_torsion() {
     let domain = samples::two_parts();
     let solution = samples::solved(&domain);
-    let figures = finished("Two flats", &units(), &domain, &solution, 160.0);
+    let figures = finished("Two flats", &units(), &domain, &solution, bands(160.0));
     let names: Vec<&str> = figures.iter().map(|(name, _)| *name).collect();
     assert_eq!(names, ["section.svg", "mesh.svg"]);
     for (name, figure) in &figures {

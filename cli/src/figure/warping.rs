@@ -7,6 +7,7 @@ use super::field::{self, Field};
 use super::marks::Mark;
 use super::outline;
 use super::page::Finished;
+use super::style::Style;
 use super::surface::Surface;
 use crate::section::Units;
 use crate::write::digits::superscript;
@@ -23,7 +24,7 @@ pub fn draw(
     surface: &Surface,
     values: &[f64],
     shear_centre: Option<Point>,
-    width: f64,
+    style: Style,
 ) -> Finished {
     let extent = outline::extent(domain);
     let unit = format!("{}{}", units.length, superscript(2));
@@ -52,5 +53,5 @@ pub fn draw(
         guides: &[],
         remark: "",
     };
-    field::draw(&field, width)
+    field::draw(&field, style)
 }
