@@ -210,7 +210,8 @@ fn handbook_concentration(r: f64, area: f64) -> f64 {
     let d = 2.0 * (SQRT_2 * (1.0 + r) - r) / (1.0 + SQRT_2);
     let shape = d / (1.0 + PI * PI * d.powi(4) / (16.0 * area * area));
     let corner = 0.118 * (1.0 + d / (2.0 * r)).ln() + 0.238 * d / (2.0 * r);
-    shape * (1.0 + corner * (2.0 * FRAC_PI_2 / PI).tanh())
+    let turn = FRAC_PI_2;
+    shape * (1.0 + corner * (2.0 * turn / PI).tanh())
 }
 
 /// Force along y, ν = 1/4, at the centre and at the ends of the neutral axis: series summed for this
