@@ -69,6 +69,9 @@ fn read_back(text: &str) -> UnstructuredGridPiece {
     *piece
 }
 
+/// What a point array holds.
+type Measure = fn(&Stress) -> f64;
+
 fn array(piece: &UnstructuredGridPiece, name: &str) -> Vec<f64> {
     let found = piece
         .data
@@ -134,7 +137,7 @@ fn fields_read_back_with_their_sums() {
 
         let factor = stress_per_force(units);
         let stresses = fields.stresses(&FORCES);
-        let measures: [(&str, fn(&Stress) -> f64); 6] = [
+        let measures: [(&str, Measure); 6] = [
             ("sigma", |s| s.sigma),
             ("tau", |s| s.shear()),
             ("von_mises", |s| s.von_mises()),
