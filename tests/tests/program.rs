@@ -324,6 +324,24 @@ fn actions_write_tables_fields_and_pictures() {
 }
 
 #[test]
+fn contours_draw_lines_instead_of_bands() {
+    let draw = |options: &[&str]| {
+        let folder = tempfile::tempdir().unwrap();
+        program()
+            .args(["solve", "--quiet", "--out"])
+            .arg(folder.path())
+            .args(options)
+            .arg(demo("facade-rail"))
+            .assert()
+            .success();
+        fs::read_to_string(folder.path().join("shear-torque.svg")).unwrap()
+    };
+    let (bands, lines) = (draw(&[]), draw(&["--contours"]));
+    assert!(lines.contains("Lines of equal") && !bands.contains("Lines of equal"));
+    assert!(lines.len() < bands.len());
+}
+
+#[test]
 fn settings_out_of_range_are_refused() {
     for args in [
         ["--tolerance", "0"],

@@ -303,6 +303,54 @@ fn circle_under_shear_meets_the_exact_field() {
     }
 }
 
+/// Rectangle of depth 2a and width 2b under V along the depth: at the centre and at the ends of the
+/// neutral axis. The problem and its table for ν = 1/4 are those of S. P. Timoshenko, J. N. Goodier,
+/// Theory of Elasticity, ch. 11 (0.983, 0.940, 0.856, 0.805 and 1.033, 1.126, 1.396, 1.988 times
+/// 1.5 V/A for a/b = 2, 1, 1/2, 1/4; from memory); the single series that gives other ν is derived
+/// here: the parabola `V (a² − y²)/(2I)` plus curl φ with `Δφ = ν/(1+ν) V x/I`, φ zero on the edge,
+/// x in sines of nπx/b.
+#[test]
+fn rectangle_under_shear_meets_timoshenkos_table_at_every_poisson_ratio() {
+    let table = [
+        (2.0, 0.983, 1.033),
+        (1.0, 0.940, 1.126),
+        (0.5, 0.856, 1.396),
+        (0.25, 0.805, 1.988),
+    ];
+    for (a, printed_centre, printed_edge) in table {
+        for nu in [0.0, 0.25, 0.4] {
+            let (mut centre, mut edge) = (1.0, 1.0);
+            for n in 1..4000_i32 {
+                let k = f64::from(n) * std::f64::consts::PI;
+                // Over 1.5 V/A = V a²/(2I): 2 ν/(1+ν) · 2/(n²π²) · (1 − sech(nπa)) / a², b = 1.
+                let term = nu / (1.0 + nu) * 4.0 / (k * k * a * a) * (1.0 - 1.0 / (k * a).cosh());
+                centre -= if n % 2 == 1 { term } else { -term };
+                edge += term;
+            }
+            if nu == 0.25 {
+                assert!((centre - printed_centre).abs() < 6e-4, "{a}: {centre}");
+                assert!((edge - printed_edge).abs() < 6e-4, "{a}: {edge}");
+            }
+            let outline = corners(&[[-1., -a], [1., -a], [1., a], [-1., a]]);
+            let (_, solution) = solved(outline, nu, 1e-8);
+            let fields = UnitFields::new(&solution, 2).unwrap();
+            let force = SectionForces {
+                vy: 4.0 * a / 1.5,
+                ..SectionForces::default()
+            };
+            for (x, expected) in [(0.0, centre), (1.0, edge)] {
+                let found = at_point(&solution, &fields, &force, Point::new(x, 0.0));
+                let tau = found[0].stress.tau.y;
+                // The edge's series falls like 1/n²: 4000 terms leave 1e-4 of it.
+                assert!(
+                    (tau - expected).abs() < 1e-3 * expected,
+                    "a/b = {a}, ν = {nu}, x = {x}: {tau} for {expected}"
+                );
+            }
+        }
+    }
+}
+
 /// Rectangle under T: the largest stress is in the middle of the long side, from Saint-Venant's series
 /// (2 × 1: 0.930060269797 G θ′ with J = 0.457363354239), and zero at the corners.
 #[test]
