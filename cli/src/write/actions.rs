@@ -33,7 +33,7 @@ pub const STRESSES: [&str; 13] = [
     "remark",
 ];
 /// The columns of `field-<action>.csv`.
-pub const FIELD: [&str; 13] = [
+pub const FIELD: [&str; 22] = [
     "triangle",
     "piece",
     "x",
@@ -47,6 +47,15 @@ pub const FIELD: [&str; 13] = [
     "tresca",
     "principal_1",
     "principal_3",
+    "sigma_axial",
+    "sigma_bending",
+    "sigma_warping",
+    "tau_x_shear",
+    "tau_y_shear",
+    "tau_x_torsion",
+    "tau_y_torsion",
+    "tau_x_warping",
+    "tau_y_warping",
 ];
 /// The columns of `cut-<cut>-<action>.csv`.
 pub const CUT: [&str; 13] = [
@@ -159,6 +168,8 @@ fn extreme_row(
 
 /// The stress at the solver's integration points, to nine digits. `weight` is the point's share of
 /// the area: `Σ weight·sigma` is the axial force, `Σ weight·sigma·(y − y_c)` the moment M_x, and so on.
+/// Behind the combined stress and its measures come its parts: σ of N, of M_x with M_y and of B, τ of
+/// V_x with V_y, of T and of T_w.
 #[must_use]
 pub fn field_csv(
     units: &Units,
@@ -168,9 +179,14 @@ pub fn field_csv(
     forces: &SectionForces,
 ) -> String {
     let mut table = Table::new(&FIELD);
+    let factor = stress_per_force(units);
+    let [n, vx, vy, mx, my, t, b, tw] = forces.parts();
+    let (shear, bending) = (vx + vy, mx + my);
     for point in points {
-        let s = scaled(&point.unit.under(forces), stress_per_force(units));
+        let under = |f: &SectionForces| scaled(&point.unit.under(f), factor);
+        let s = under(forces);
         let [first, third] = s.principal();
+        let [by_shear, by_torsion, by_warping] = [shear, t, tw].map(|f| under(&f).tau);
         let numbers = [
             point.at.x,
             point.at.y,
@@ -183,41 +199,28 @@ pub fn field_csv(
             s.tresca(),
             first,
             third,
-        ]
-        .map(nine_digits);
+            under(&n).sigma,
+            under(&bending).sigma,
+            under(&b).sigma,
+            by_shear.x,
+            by_shear.y,
+            by_torsion.x,
+            by_torsion.y,
+            by_warping.x,
+            by_warping.y,
+        ];
         let piece = solution
             .mesh
             .piece
             .get(point.triangle as usize)
             .map_or("", |&p| names.piece(p));
-        let [
-            x,
-            y,
-            weight,
-            sigma,
-            tau_x,
-            tau_y,
-            tau,
-            von_mises,
-            tresca,
-            first,
-            third,
-        ] = numbers;
-        table.row([
-            point.triangle.to_string(),
-            piece.into(),
-            x,
-            y,
-            weight,
-            sigma,
-            tau_x,
-            tau_y,
-            tau,
-            von_mises,
-            tresca,
-            first,
-            third,
-        ]);
+        let mut row: [String; FIELD.len()] = Default::default();
+        row[0] = point.triangle.to_string();
+        row[1] = piece.into();
+        for (cell, number) in row[2..].iter_mut().zip(numbers) {
+            *cell = nine_digits(number);
+        }
+        table.row(row);
     }
     table.text()
 }

@@ -206,6 +206,14 @@ fn fields_read_back_and_their_components_agree() {
     for row in &rows {
         let get = |name: &str| float(row, &FIELD, name);
         let slack = 1e-7 * largest;
+        for (whole, parts) in [
+            ("sigma", ["sigma_axial", "sigma_bending", "sigma_warping"]),
+            ("tau_x", ["tau_x_shear", "tau_x_torsion", "tau_x_warping"]),
+            ("tau_y", ["tau_y_shear", "tau_y_torsion", "tau_y_warping"]),
+        ] {
+            let sum: f64 = parts.iter().map(|p| get(p)).sum();
+            assert!((get(whole) - sum).abs() < slack, "{whole}");
+        }
         assert!((get("tau") - get("tau_x").hypot(get("tau_y"))).abs() < slack);
         let von_mises = (get("sigma").powi(2) + 3.0 * get("tau").powi(2)).sqrt();
         assert!((get("von_mises") - von_mises).abs() < slack);
