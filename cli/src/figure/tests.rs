@@ -529,7 +529,7 @@ fn fields_in_lines_carry_their_levels() {
                     written += 1;
                 }
             }
-            assert!(width < 100.0 || written > 8, "{name}: {written}");
+            assert!(width < 100.0 || written > 12, "{name}: {written}");
             for ((_, once), (_, again)) in figures.iter().zip(&draw()) {
                 assert_eq!(once.svg, again.svg);
             }
