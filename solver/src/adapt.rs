@@ -219,10 +219,9 @@ fn corner_note(corner: &ReentrantCorner) -> Note {
         kind: "sharp-corner",
         text: format!(
             "Sharp re-entrant corner of {:.0}°: the calculated shear stress grows there without limit, \
-             so points within {:.3} of it are left out of the extremes. Give the corner its real radius \
-             with `round` to obtain the stress in it.",
+             so points close to it (a tenth of the wall, unless another share is asked for) are left out \
+             of the extremes. Give the corner its real radius with `round` to obtain the stress in it.",
             corner.interior_angle.to_degrees(),
-            exclusion_radius(corner),
         ),
         at: Some(corner.at),
     }

@@ -328,9 +328,6 @@ fn write_folder(
     files::write_all(folder, &answer.source, &named).map_err(|e| e.to_string())
 }
 
-/// Fields are written for this many actions; `stresses.csv` has the extremes of all.
-const MOST_FIELDS: usize = 12;
-
 /// Tables and fields of the responses.
 fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8>)> {
     let units = &answer.read.section.units;
@@ -342,7 +339,9 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
     let response_slugs = slugs(responses.list.iter().map(|r| r.name.as_str()));
     let nodes = UnitFields::new(&answer.solution, answer.solution.order);
     let points = weighted_points(&answer.solution, &responses.fields);
-    for (response, slug) in responses.list.iter().zip(&response_slugs).take(MOST_FIELDS) {
+    // The same ones that get figures.
+    for i in figure::response::chosen(responses) {
+        let (response, slug) = (&responses.list[i], &response_slugs[i]);
         let Some(nodes) = &nodes else { continue };
         out.push((
             format!("field-{slug}.csv"),
