@@ -41,10 +41,16 @@ pub struct Section {
     pub units: Units,
     /// Its materials; with none in the file, one without a name (E = 1, ν = 0.3) and a note.
     pub materials: Vec<Material>,
+    /// The material whose moduli the properties refer to, where the file names one.
+    pub reference: Option<usize>,
     /// Whether the file has no material, so that results must say what was assumed.
     pub assumed_material: bool,
     /// Its pieces, lengths in `units.length`.
     pub pieces: Vec<Piece>,
+    /// What pieces that touch are to each other.
+    pub contact: Contact,
+    /// What joins them; with [`Contact::Seams`] only.
+    pub seams: Vec<SeamInput>,
     /// Its load cases.
     pub actions: Vec<Action>,
     /// Sums of them.
@@ -53,6 +59,65 @@ pub struct Section {
     pub probes: Vec<Probe>,
     /// Lines along which stresses are wanted.
     pub cuts: Vec<Cut>,
+}
+
+/// What pieces that touch along a line are to each other.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Contact {
+    /// One solid.
+    Fused,
+    /// Two, unless a seam joins them.
+    Seams,
+}
+
+/// A seam that joins two pieces.
+#[derive(Clone, Debug, PartialEq)]
+pub struct SeamInput {
+    /// Its name, unlike that of any other seam or piece.
+    pub name: String,
+    /// Indices of the two pieces.
+    pub between: [usize; 2],
+    /// Which corner or faying line is meant, where there are several: the nearest one.
+    pub near: Option<Point>,
+    /// Fillet or groove.
+    pub kind: SeamKind,
+    /// Whether there is such a seam at both ends of the faying line.
+    pub both: bool,
+    /// Fit-up: so far the pieces may be apart at the root of a fillet, in `units.length`.
+    pub gap: f64,
+    /// Index of the material of a fillet's weld metal.
+    pub material: usize,
+    /// The throat stress that it may be given, in `units.stress`.
+    pub allowable: Option<f64>,
+    /// Force per length along x and y that the seam carries beside the shear flow, in `units.force`
+    /// over `units.length`; the sense does not matter for the demand.
+    pub direct: [f64; 2],
+    /// Length and pitch of an intermittent seam.
+    pub intermittent: Option<Intermittent>,
+}
+
+/// The kind of a seam; lengths in `units.length`.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum SeamKind {
+    /// Weld metal in an inside corner.
+    Fillet {
+        /// Its legs on the first and on the second piece.
+        legs: [f64; 2],
+    },
+    /// Pieces fused where they touch.
+    Groove {
+        /// Over this length from one end of the faying line; `None`: over all of it.
+        depth: Option<f64>,
+    },
+}
+
+/// An intermittent seam: parts of one length at one pitch, in `units.length`.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Intermittent {
+    /// Length of each part.
+    pub length: f64,
+    /// From the start of one part to the start of the next; at least the length.
+    pub pitch: f64,
 }
 
 /// A load case: section forces.

@@ -157,7 +157,7 @@ fn other_words(word: &str) -> &'static [&'static str] {
         "diameter" => &["d"],
         "radius" | "fillet" | "rounding" => &["round", "r"],
         "width" | "breadth" => &["b"],
-        "height" | "depth" => &["h"],
+        "height" | "depth" => &["h", "groove"],
         "poisson" => &["nu"],
         "v" => &["nu", "Vy"],
         "axial" | "normal" | "fz" | "nz" | "p" => &["N"],
@@ -169,7 +169,7 @@ fn other_words(word: &str) -> &'static [&'static str] {
         "young" | "modulus" => &["E"],
         "g" => &["shear"],
         "fy" => &["yield", "Vy"],
-        "strength" => &["yield"],
+        "strength" => &["yield", "allowable"],
         "rho" | "weight" => &["density"],
         "rotate" | "rotation" | "angle" => &["turn"],
         "flip" | "reflect" => &["mirror"],
@@ -180,10 +180,19 @@ fn other_words(word: &str) -> &'static [&'static str] {
         "shape" | "type" | "kind" => &["form"],
         "start" => &["from"],
         "end" => &["to"],
-        "part" | "parts" | "pieces" => &["piece"],
+        "part" | "parts" | "pieces" => &["piece", "between"],
         "load" | "loads" | "case" | "cases" => &["action", "factors"],
         "actions" | "sum" | "coefficients" => &["action", "factors"],
         "line" | "section" | "slice" => &["cut"],
+        "weld" | "welds" | "joint" | "seams" => &["seam", "fillet"],
+        "leg" | "legs" | "size" | "throat" | "a" | "z" => &["fillet"],
+        "penetration" | "butt" | "bevel" => &["groove"],
+        "spacing" | "every" | "step" => &["pitch"],
+        "fitup" | "fit_up" | "root_opening" | "opening" | "root" | "clearance" => &["gap"],
+        "ends" => &["at"],
+        "filler" | "metal" | "electrode" => &["material"],
+        "limit" | "resistance" | "allowed" => &["allowable"],
+        "line_load" | "flow" => &["direct"],
         _ => &[],
     }
 }
@@ -288,6 +297,16 @@ impl Reader {
             _ => force,
         };
         let amount = self.converted(value, what, self.unit(dimension), consistent)?;
+        self.measurable(amount, value, what)
+    }
+
+    /// A force per length of either sign, in the unit of force over that of length.
+    pub(super) fn line_load(&mut self, value: &Value<'_>, what: &str) -> Option<f64> {
+        let amount = self.quantity(value, what, Dimension::LineLoad)?;
+        self.measurable(amount, value, what)
+    }
+
+    fn measurable(&mut self, amount: f64, value: &Value<'_>, what: &str) -> Option<f64> {
         if amount.abs() <= LARGEST_ACTION {
             return Some(amount);
         }
@@ -432,6 +451,11 @@ impl Reader {
                     .times_length(self.unit(Dimension::Length));
             }
             Dimension::Stress => self.units.stress,
+            Dimension::LineLoad => {
+                return self
+                    .unit(Dimension::Force)
+                    .over_length(self.unit(Dimension::Length));
+            }
             Dimension::Density => return Unit::KG_PER_M3,
             Dimension::Angle => return Unit::DEGREE,
             Dimension::Slope => return Unit::PER_CENT,

@@ -1,47 +1,21 @@
 //! Entries of the section file that this version knows and does not answer yet.
 
-use toml_span::Value;
 use toml_span::value::Table;
 
 use super::fault::Fault;
-use super::fields::{Reader, span};
-
-/// Keys of the top level, what they are for, and how their entries are headed.
-const LATER: &[(&str, &str, &str)] = &[
-    ("seam", "seams", "[[seam]]"),
-    ("span", "a member and its loads", "[span]"),
-];
+use super::fields::Reader;
 
 /// The keys of such entries.
-pub(super) const KEYS: &[&str] = &["seam", "span", "contact"];
+pub(super) const KEYS: &[&str] = &["span"];
 
-/// A fault for each kind of entry that the file has of these.
+/// A fault if the file has such an entry.
 pub(super) fn refuse(reader: &mut Reader, top: &Table<'_>) {
-    for (name, purpose, heading) in LATER {
-        if let Some((key, value)) = top.get_key_value(*name) {
-            // One fault a kind, at its first entry.
-            let first = value.as_array().and_then(|list| list.first());
-            let range = first.map_or(key.span.into(), span);
-            reader.faults.push(Fault::at(
-                range,
-                "not answered yet",
-                format!("this version does not answer {heading} ({purpose}) yet"),
-                format!("remove every {heading} to get the section's properties"),
-            ));
-        }
-    }
-    if let Some(value) = top.get("contact") {
-        contact(reader, value);
-    }
-}
-
-fn contact(reader: &mut Reader, value: &Value<'_>) {
-    if reader.choice(value, "`contact`", &["seams"]).is_some() {
+    if let Some((key, _)) = top.get_key_value("span") {
         reader.faults.push(Fault::at(
-            span(value),
+            key.span.into(),
             "not answered yet",
-            "this version does not answer contact = \"seams\" yet",
-            "remove the line to get the properties of the section with touching pieces fused",
+            "this version does not answer [span] (a member and its loads) yet",
+            "remove every [span] to get the section's properties",
         ));
     }
 }

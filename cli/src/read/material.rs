@@ -8,7 +8,9 @@ use toml_span::Value;
 use super::excerpt::hidden;
 use super::fault::Fault;
 use super::fields::{Fields, Reader, span};
+use super::near::nearest;
 use super::quantity::Dimension;
+use super::syntax::printable;
 
 const KEYS: &[&str] = &["E", "nu", "shear", "yield", "density"];
 
@@ -67,6 +69,37 @@ pub(super) fn read_all(reader: &mut Reader, value: &Value<'_>) -> Vec<Material> 
             ..read(reader, value).unwrap_or_else(assumed)
         })
         .collect()
+}
+
+/// The index of the material that `value` names; `what` is the key in words.
+pub(super) fn named(
+    reader: &mut Reader,
+    value: &Value<'_>,
+    what: &str,
+    materials: &[Material],
+) -> Option<usize> {
+    let text = reader.text(value, what)?;
+    let found = materials.iter().position(|known| known.name == text);
+    if found.is_none() {
+        let known: Vec<&str> = materials.iter().map(|known| known.name.as_str()).collect();
+        reader.faults.push(Fault::at(
+            span(value),
+            "not in this file",
+            format!("there is no material \"{}\"", printable(text)),
+            match nearest(text, &known) {
+                Some(near) => format!(
+                    "the nearest known one is \"{}\"; or add a table [material.{}]",
+                    printable(near),
+                    printable(text)
+                ),
+                None => format!(
+                    "add a table [material.{}] with E and nu, or remove the line",
+                    printable(text)
+                ),
+            },
+        ));
+    }
+    found
 }
 
 /// Where the names of the materials are written, in the order of the file.

@@ -19,6 +19,7 @@ mod probe;
 mod profile;
 pub mod quantity;
 mod ring;
+mod seam;
 mod shape;
 pub mod show;
 mod syntax;
@@ -29,12 +30,13 @@ use sectile_mesh::domain::{self, Domain};
 use sectile_mesh::outline::piece::Piece;
 use sectile_solver::material::Material;
 
-use crate::section::{Action, Combination, Cut, Probe, Section};
+use crate::section::{Action, Combination, Contact, Cut, Probe, SeamInput, Section};
 use fault::{Fault, Faults};
 use fields::{Fields, Reader};
 use geometry::{PieceText, Sources};
 use names::Names;
 use places::Places;
+use seam::SeamText;
 use syntax::printable;
 
 pub use file::section_from_path;
@@ -44,7 +46,10 @@ const KEYS: &[&str] = &[
     "title",
     "units",
     "material",
+    "reference",
+    "contact",
     "piece",
+    "seam",
     "action",
     "combination",
     "probe",
@@ -140,9 +145,32 @@ fn read(
         }
         return None;
     };
+    let reference = fields
+        .get("reference")
+        .and_then(|value| material::named(reader, value, "the reference material", &materials));
     let pieces = piece::read_all(reader, value, &materials);
-    let complete = pieces.iter().all(Option::is_some);
-    let (pieces, texts): (Vec<Piece>, Vec<PieceText>) = pieces.into_iter().flatten().unzip();
+    let contact = seam::contact(reader, &fields);
+    let seams = fields
+        .get("seam")
+        .map(|value| seam::read_all(reader, value, &pieces, &materials))
+        .unwrap_or_default();
+    let complete =
+        pieces.iter().all(|read| read.piece.is_some()) && seams.iter().all(Option::is_some);
+    let (pieces, texts): (Vec<Piece>, Vec<PieceText>) =
+        pieces.into_iter().filter_map(|read| read.piece).unzip();
+    let (seams, seam_texts): (Vec<SeamInput>, Vec<SeamText>) = seams.into_iter().flatten().unzip();
+    if contact == Contact::Seams && reader.faults.is_empty() {
+        let range = match seam_texts.first() {
+            Some(seam) => Some(seam.head.clone()),
+            None => fields.key_span("contact"),
+        };
+        reader.faults.push(Fault::at(
+            range.unwrap_or_default(),
+            "not answered yet",
+            "this version does not answer seams yet",
+            "remove them to get the properties of the section with touching pieces fused",
+        ));
+    }
     refuse_several_materials(reader, &pieces, &texts, &materials);
     let domain = if sure_of_units {
         regions(reader, &pieces, &texts, complete)
@@ -160,8 +188,11 @@ fn read(
             } else {
                 materials
             },
+            reference,
             assumed_material,
             pieces,
+            contact,
+            seams,
             actions: loads.0,
             combinations: loads.1,
             probes,

@@ -8,10 +8,10 @@ use sectile_solver::material::Material;
 use toml_span::Value;
 
 use super::fault::Fault;
-use super::fields::{Fields, Reader, span};
+use super::fields::{Fields, Reader};
 use super::geometry::PieceText;
 use super::names::{Names, tables};
-use super::near::{listed, nearest};
+use super::near::listed;
 use super::ring::{self, RingText};
 use super::syntax::printable;
 use super::{place, profile, shape};
@@ -22,21 +22,26 @@ const KEYS: &[&str] = &[
 /// Of these a piece has exactly one.
 const SHAPES: &[&str] = &["outline", "plate", "tube", "bar", "profile"];
 
-/// A piece and where it is written.
-pub(super) type Read = (Piece, PieceText);
+/// A piece as far as it could be read.
+pub(super) struct Read {
+    /// Its name, which seams may use whatever else is wrong.
+    pub(super) name: String,
+    /// The piece and where it is written, if it is without fault.
+    pub(super) piece: Option<(Piece, PieceText)>,
+}
 
-/// All pieces in the order of the file; `None` for each that is faulty.
+/// All pieces in the order of the file.
 pub(super) fn read_all(
     reader: &mut Reader,
     value: &Value<'_>,
     materials: &[Material],
-) -> Vec<Option<Read>> {
+) -> Vec<Read> {
     let mut names = Names::new("pieces");
     tables(reader, value, "piece")
         .unwrap_or_default()
         .iter()
         .enumerate()
-        .map(|(i, value)| read(reader, value, i, materials, &mut names))
+        .filter_map(|(i, value)| read(reader, value, i, materials, &mut names))
         .collect()
 }
 
@@ -49,8 +54,19 @@ fn read(
 ) -> Option<Read> {
     let fields = Fields::open(reader, value, "a piece", KEYS)?;
     let (name, head) = names.of(reader, &fields, index);
-    let material = material(reader, &fields, &name, materials);
-    let body = body(reader, &fields, &name);
+    let piece = piece(reader, &fields, &name, head, materials);
+    Some(Read { name, piece })
+}
+
+fn piece(
+    reader: &mut Reader,
+    fields: &Fields<'_>,
+    name: &str,
+    head: Range<usize>,
+    materials: &[Material],
+) -> Option<(Piece, PieceText)> {
+    let material = material(reader, fields, name, materials);
+    let body = body(reader, fields, name);
     let holes = fields.get("holes").map(|value| holes(reader, value));
     let placing = fields.get("place").map(|value| place::read(reader, value));
 
@@ -66,7 +82,7 @@ fn read(
     }
     Some((
         Piece {
-            name,
+            name: name.to_owned(),
             outline,
             material: material?,
         },
@@ -99,27 +115,7 @@ fn material(
         ));
         return None;
     };
-    let text = reader.text(value, "the material of a piece")?;
-    let found = known.iter().position(|known| *known == text);
-    if found.is_none() {
-        reader.faults.push(Fault::at(
-            span(value),
-            "not in this file",
-            format!("there is no material \"{}\"", printable(text)),
-            match nearest(text, &known) {
-                Some(near) => format!(
-                    "the nearest known one is \"{}\"; or add a table [material.{}]",
-                    printable(near),
-                    printable(text)
-                ),
-                None => format!(
-                    "add a table [material.{}] with E and nu, or remove the line",
-                    printable(text)
-                ),
-            },
-        ));
-    }
-    found
+    super::material::named(reader, value, "the material of a piece", materials)
 }
 
 /// The piece's shape before its own holes and its placing.

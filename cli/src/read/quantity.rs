@@ -20,6 +20,8 @@ pub enum Dimension {
     Bimoment,
     /// Force over area: stress, and the moduli of a material.
     Stress,
+    /// Force over length: a line load.
+    LineLoad,
     /// Mass over volume.
     Density,
     /// Angle.
@@ -29,7 +31,7 @@ pub enum Dimension {
 }
 
 /// A unit: `numerator / denominator` of the base unit of its dimension (0.1 mm, N, N·0.1 mm,
-/// N·(0.1 mm)², Pa, kg/m³, degree, per cent).
+/// N·(0.1 mm)², Pa, N/(0.1 mm), kg/m³, degree, per cent).
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Unit {
     /// What it measures.
@@ -51,6 +53,9 @@ const BIMOMENTS: &[&str] = &[
     "N m2", "kN m2", "MN m2", "N mm2", "kN mm2", "kN cm2", "lbf in2", "lbf ft2", "kip in2",
     "kip ft2",
 ];
+const LINE_LOADS: &[&str] = &[
+    "N/mm", "N/m", "kN/mm", "kN/m", "MN/m", "lbf/in", "lbf/ft", "kip/in", "kip/ft",
+];
 const DENSITIES: &[&str] = &["kg/m3", "g/cm3", "t/m3", "lb/ft3", "lb/in3"];
 const ANGLES: &[&str] = &["deg", "rad"];
 const SLOPES: &[&str] = &["%", "deg"];
@@ -65,6 +70,7 @@ impl Dimension {
             Self::Moment => "a moment",
             Self::Bimoment => "a bimoment",
             Self::Stress => "a stress",
+            Self::LineLoad => "a force per length",
             Self::Density => "a density",
             Self::Angle => "an angle",
             Self::Slope => "a slope",
@@ -80,6 +86,7 @@ impl Dimension {
             Self::Moment => MOMENTS,
             Self::Bimoment => BIMOMENTS,
             Self::Stress => STRESSES,
+            Self::LineLoad => LINE_LOADS,
             Self::Density => DENSITIES,
             Self::Angle => ANGLES,
             Self::Slope => SLOPES,
@@ -95,6 +102,7 @@ impl Dimension {
             Self::Moment => "12.5 kN m",
             Self::Bimoment => "1.2 kN m2",
             Self::Stress => "210 GPa",
+            Self::LineLoad => "20 N/mm",
             Self::Density => "7850 kg/m3",
             Self::Angle => "30 deg",
             Self::Slope => "14 %",
@@ -151,7 +159,11 @@ impl Unit {
             _ => {
                 return length(name)
                     .map_or_else(
-                        || moment(name).or_else(|| bimoment(name)),
+                        || {
+                            moment(name)
+                                .or_else(|| bimoment(name))
+                                .or_else(|| line_load(name))
+                        },
                         |tenths| Some((Dimension::Length, tenths, 1.0)),
                     )
                     .map(|(dimension, numerator, denominator)| Self {
@@ -180,6 +192,16 @@ impl Unit {
             dimension,
             numerator: self.numerator * arm.numerator,
             denominator: self.denominator * arm.denominator,
+        }
+    }
+
+    /// This unit of force over the unit of length `side`.
+    #[must_use]
+    pub fn over_length(self, side: Self) -> Self {
+        Self {
+            dimension: Dimension::LineLoad,
+            numerator: self.numerator * side.denominator,
+            denominator: self.denominator * side.numerator,
         }
     }
 
@@ -234,6 +256,18 @@ fn bimoment(name: &str) -> Option<(Dimension, f64, f64)> {
     let (force, arm) = moment_parts(plain)?;
     let (force, arm) = (Unit::named(force)?, length(arm)?);
     Some((Dimension::Bimoment, force.numerator * arm * arm, 1.0))
+}
+
+/// A unit of force over length: a unit of force, `/`, a unit of length.
+fn line_load(name: &str) -> Option<(Dimension, f64, f64)> {
+    let (force, side) = name.split_once('/')?;
+    let force = FORCES.iter().find(|known| **known == force.trim_end())?;
+    let force = Unit::named(force)?;
+    Some((
+        Dimension::LineLoad,
+        force.numerator,
+        length(side.trim_start())?,
+    ))
 }
 
 /// What is wrong with a text that should be a quantity: message and remedy.
@@ -407,6 +441,9 @@ mod tests {
         assert_eq!(to("3kNm²", "N m2"), 3000.0);
         assert_eq!(to("1 kip ft2", "kip in^2"), 144.0);
         assert_eq!(to("1 kip", "lbf"), 1000.0);
+        assert_eq!(to("20 N/mm", "kN/mm"), 0.02);
+        assert_eq!(to("20 N / mm", "kN/m"), 20.0);
+        assert!((to("12 lbf/ft", "lbf/in") - 1.0).abs() < 1e-15);
         assert_eq!(to("7.85 g/cm3", "kg/m3"), 7850.0);
         assert!((to("1 rad", "deg") - 57.295_779_513_082_32).abs() < 1e-13);
         let slope = quantity("14 %", Dimension::Slope, Unit::PER_CENT).unwrap();
@@ -419,6 +456,10 @@ mod tests {
     fn what_is_no_length_says_so() {
         for (text, part) in [
             ("12.5 kN m", "is a moment, but a length belongs here"),
+            (
+                "20 N/mm",
+                "is a force per length, but a length belongs here",
+            ),
             ("12,5 mm", "comma"),
             ("12", "has no unit"),
             ("mm", "does not start with a number"),
