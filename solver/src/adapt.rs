@@ -15,6 +15,7 @@ use crate::figure::Figure;
 use crate::geometry::Frame;
 use crate::level::{LevelResult, solve_level, unknowns};
 use crate::material::Material;
+use crate::plastic;
 use crate::problem::COUNT;
 use crate::property::area::{AreaMoments, area_moments};
 use crate::property::bending::exact_properties;
@@ -57,6 +58,11 @@ pub(crate) fn solve(
     let start = Instant::now();
     let moments = area_moments(domain);
     let mut properties = exact_properties(domain, &moments, material, metres);
+    let yields: Vec<Option<f64>> = materials.iter().map(|m| m.yield_stress).collect();
+    let plastic = plastic::analyse(domain, &yields, 0, moments.centroid);
+    if let Some(plastic) = &plastic {
+        properties.extend(plastic::quantities::properties(plastic, &moments));
+    }
     clock.bounds += start.elapsed().as_secs_f64();
 
     let start = Instant::now();

@@ -14,6 +14,7 @@ mod kernel;
 mod level;
 pub mod material;
 mod ordering;
+pub mod plastic;
 mod problem;
 mod property;
 pub mod quantity;

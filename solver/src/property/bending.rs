@@ -3,7 +3,6 @@
 use sectile_mesh::domain::Domain;
 
 use super::area::{AreaMoments, perimeters};
-use super::plastic::plastic_axes;
 use crate::figure::Figure;
 use crate::material::Material;
 use crate::quantity::Quantity;
@@ -84,26 +83,5 @@ pub fn exact_properties(
         let lost = 1.0 + (polar / moment).min(1e12) * 0.1 + 0.1 * m.reach / distance;
         out.push((quantity, Figure::exact(w, w * lost)));
     }
-    let [about_x, about_y] = plastic_axes(domain, c);
-    let size = (right - left).max(top - bottom);
-    let scale = |z: f64| z + 1e-2 * a * size;
-    out.push((
-        Quantity::PlasticModulusX,
-        Figure::exact(about_x.modulus, scale(about_x.modulus)),
-    ));
-    out.push((
-        Quantity::PlasticModulusY,
-        Figure::exact(about_y.modulus, scale(about_y.modulus)),
-    ));
-    // The halving line is found from areas: where the section is thin there, rounding moves it more.
-    let line = 10.0 * (size + m.reach);
-    out.push((
-        Quantity::PlasticCentroidX,
-        Figure::exact(c.x + about_y.position, line),
-    ));
-    out.push((
-        Quantity::PlasticCentroidY,
-        Figure::exact(c.y + about_x.position, line),
-    ));
     out
 }

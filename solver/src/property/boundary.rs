@@ -44,15 +44,19 @@ impl EdgeSide {
         }
     }
 
-    /// The side after a turn by +90° about the origin: `(x, y) → (−y, x)`.
+    /// The side in axes of which the first runs along the unit vector `along`.
     #[must_use]
-    pub fn quarter_turned(&self) -> Self {
-        let turn = |p: Point| Point::new(-p.y, p.x);
+    pub fn seen_along(&self, along: Vector) -> Self {
+        let across = along.perpendicular();
+        let see = |p: Point| {
+            let v = p - Point::default();
+            Point::new(v.dot(along), v.dot(across))
+        };
         Self {
-            from: turn(self.from),
-            to: turn(self.to),
+            from: see(self.from),
+            to: see(self.to),
             arc: self.arc.map(|mut a| {
-                a.circle.centre = turn(a.circle.centre);
+                a.circle.centre = see(a.circle.centre);
                 a
             }),
         }
@@ -163,5 +167,25 @@ pub fn edge_sides(domain: &Domain) -> Vec<EdgeSide> {
                 _ => None,
             }
         })
+        .collect()
+}
+
+/// Every side across which a weight of the pieces jumps, with that jump `w_left − w_right` (no material
+/// weighs nothing): `Σ jump ∫ g dy` over them is `Σ_pieces w ∮ g dy` around each piece.
+#[must_use]
+pub fn weighted_sides(domain: &Domain, weight: impl Fn(u32) -> f64) -> Vec<(EdgeSide, f64)> {
+    let of = |hand: Option<u32>| hand.map_or(0.0, &weight);
+    domain
+        .sides
+        .iter()
+        .map(|s| {
+            let side = EdgeSide {
+                from: domain.points[s.from as usize],
+                to: domain.points[s.to as usize],
+                arc: s.arc,
+            };
+            (side, of(s.left) - of(s.right))
+        })
+        .filter(|(_, jump)| *jump != 0.0)
         .collect()
 }

@@ -3,5 +3,4 @@
 pub mod area;
 pub mod bending;
 pub mod boundary;
-pub mod plastic;
 pub mod shear;

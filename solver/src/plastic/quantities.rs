@@ -1,0 +1,30 @@
+//! Full plasticity as properties.
+
+use super::Plastic;
+use crate::figure::Figure;
+use crate::property::area::AreaMoments;
+use crate::quantity::Quantity;
+
+/// The properties of a section with the moments `m`, about whose centroid `plastic` was analysed.
+#[must_use]
+pub(crate) fn properties(plastic: &Plastic, m: &AreaMoments) -> Vec<(Quantity, Figure)> {
+    let [left, right, bottom, top] = m.extent;
+    let size = (right - left).max(top - bottom);
+    let [about_x, about_y] = plastic.axes;
+    let [z_x, z_y] = plastic.moduli();
+    let modulus = |z: f64| Figure::exact(z, z + 1e-2 * m.area * size);
+    // The halving line is found from areas: where the section is thin there, rounding moves it more.
+    let line = |at: f64| Figure::exact(at, 10.0 * (size + m.reach));
+    vec![
+        (Quantity::PlasticModulusX, modulus(z_x)),
+        (Quantity::PlasticModulusY, modulus(z_y)),
+        (
+            Quantity::PlasticCentroidX,
+            line(m.centroid.x + about_y.offset),
+        ),
+        (
+            Quantity::PlasticCentroidY,
+            line(m.centroid.y + about_x.offset),
+        ),
+    ]
+}
