@@ -3,7 +3,7 @@
 use std::f64::consts::{PI, TAU};
 
 use crate::domain::fan::{between, fans};
-use crate::domain::{Domain, DomainSide};
+use crate::domain::{Domain, DomainSide, TOLERANCE, beyond};
 use crate::point::Point;
 use crate::tree::{Extent, Tree};
 
@@ -16,7 +16,8 @@ pub struct ReentrantCorner {
     pub at: Point,
     /// Angle of the material, radians, more than π.
     pub interior_angle: f64,
-    /// Distance to the nearest side of the edge that does not meet the corner: the scale of the wall.
+    /// Distance to the nearest side of the edge that does not meet the corner, nor lies on it as the
+    /// other hand of a slit does: the scale of the wall.
     pub wall: f64,
 }
 
@@ -24,7 +25,8 @@ pub struct ReentrantCorner {
 const STRAIGHT: f64 = 1e-3;
 
 /// The sharp re-entrant corners of a domain in the order of its points. Angles are between tangents:
-/// the ends of a rounding are no corners. Where several pieces meet their angles add up.
+/// the ends of a rounding are no corners. Where several pieces meet their angles add up; around the end of
+/// a slit they make a full turn.
 #[must_use]
 pub fn reentrant_corners(domain: &Domain) -> Vec<ReentrantCorner> {
     let free: Vec<&DomainSide> = domain
@@ -34,6 +36,7 @@ pub fn reentrant_corners(domain: &Domain) -> Vec<ReentrantCorner> {
         .collect();
     let boxes: Vec<Extent> = free.iter().map(|s| s.extent(&domain.points)).collect();
     let tree = Tree::new(&boxes);
+    let other_hand = TOLERANCE * domain.size();
     let mut corners = Vec::new();
     for (i, fan) in fans(domain).into_iter().enumerate() {
         let angle: f64 = (0..fan.len())
@@ -47,7 +50,7 @@ pub fn reentrant_corners(domain: &Domain) -> Vec<ReentrantCorner> {
                 if s.from == i as u32 || s.to == i as u32 {
                     f64::INFINITY
                 } else {
-                    s.distance(&domain.points, at)
+                    beyond(s.distance(&domain.points, at), other_hand)
                 }
             });
             let wall = if wall.is_finite() { wall } else { size(domain) };

@@ -53,7 +53,7 @@ pub fn connect(
         }
         sides.push(side);
     }
-    let loop_is_outer = number_loops(&vertices, &mut sides);
+    let loop_is_outer = number_loops(&vertices, &triangles, &mut sides);
     Mesh {
         vertices,
         triangles,
@@ -79,32 +79,51 @@ fn longest_first(t: &mut [u32; 3], vertices: &[Point]) {
 }
 
 /// Numbers the boundary loops, sides that share a boundary vertex being in one loop, and says of each
-/// whether it is an outer edge: with material to the left it encloses a positive area.
-fn number_loops(vertices: &[Point], sides: &mut [MeshSide]) -> Vec<bool> {
+/// whether it is an outer edge: of each connected part the loop that encloses the greatest area with
+/// material to its left. A closed slit encloses none but for the divisions of its hands.
+fn number_loops(vertices: &[Point], triangles: &[[u32; 3]], sides: &mut [MeshSide]) -> Vec<bool> {
     let mut leader: Vec<u32> = (0..vertices.len() as u32).collect();
     for side in sides.iter().filter(|s| s.right == NONE) {
-        let (a, b) = (
-            find(&mut leader, side.vertices[0]),
-            find(&mut leader, side.vertices[1]),
-        );
-        leader[a.max(b) as usize] = a.min(b);
+        unite(&mut leader, side.vertices[0], side.vertices[1]);
     }
     let mut number = vec![NONE; vertices.len()];
     let mut area = Vec::new();
-    let mut reference = Vec::new();
+    let mut reference: Vec<u32> = Vec::new();
     for side in sides.iter_mut().filter(|s| s.right == NONE) {
-        let root = find(&mut leader, side.vertices[0]) as usize;
-        if number[root] == NONE {
-            number[root] = area.len() as u32;
+        let root = find(&mut leader, side.vertices[0]);
+        if number[root as usize] == NONE {
+            number[root as usize] = area.len() as u32;
             area.push(0.0);
-            reference.push(vertices[root]);
+            reference.push(root);
         }
-        side.boundary = number[root];
-        let l = number[root] as usize;
-        let [a, b] = side.vertices.map(|v| vertices[v as usize] - reference[l]);
+        side.boundary = number[root as usize];
+        let l = side.boundary as usize;
+        let [a, b] = side
+            .vertices
+            .map(|v| vertices[v as usize] - vertices[reference[l] as usize]);
         area[l] += a.cross(b);
     }
-    area.iter().map(|&a| a > 0.0).collect()
+    for t in triangles {
+        unite(&mut leader, t[0], t[1]);
+        unite(&mut leader, t[0], t[2]);
+    }
+    let mut outer = vec![NONE; vertices.len()];
+    for (l, &v) in reference.iter().enumerate() {
+        let largest = &mut outer[find(&mut leader, v) as usize];
+        if *largest == NONE || area[l] > area[*largest as usize] {
+            *largest = l as u32;
+        }
+    }
+    let mut is_outer = vec![false; area.len()];
+    for l in outer.into_iter().filter(|&l| l != NONE) {
+        is_outer[l as usize] = true;
+    }
+    is_outer
+}
+
+fn unite(leader: &mut [u32], a: u32, b: u32) {
+    let (a, b) = (find(leader, a), find(leader, b));
+    leader[a.max(b) as usize] = a.min(b);
 }
 
 fn find(leader: &mut [u32], mut x: u32) -> u32 {

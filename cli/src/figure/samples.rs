@@ -22,6 +22,7 @@ pub fn domain(rings: &[Vec<(Point, Option<Arc>)>]) -> Domain {
         piece_names: vec!["body".into()],
         piece_materials: vec![0],
         parts: 1,
+        seams: Vec::new(),
     };
     for ring in rings {
         let first = domain.points.len() as u32;
@@ -34,6 +35,7 @@ pub fn domain(rings: &[Vec<(Point, Option<Arc>)>]) -> Domain {
                 arc: *arc,
                 left: Some(0),
                 right: None,
+                faying: false,
             });
         }
     }
@@ -137,6 +139,7 @@ pub fn two_pieces() -> Domain {
         arc: None,
         left,
         right,
+        faying: false,
     };
     Domain {
         points: vec![
@@ -159,6 +162,7 @@ pub fn two_pieces() -> Domain {
         piece_names: vec!["left".into(), "right".into()],
         piece_materials: vec![0, 0],
         parts: 1,
+        seams: Vec::new(),
     }
 }
 

@@ -8,6 +8,7 @@ use sectile_mesh::outline::piece::Piece;
 use sectile_mesh::outline::side::Side;
 
 use super::fault::Fault;
+use super::joint;
 use super::ring::RingText;
 
 /// Where a piece is written.
@@ -119,6 +120,8 @@ impl<'a> Sources<'a> {
                 format!("piece \"{}\" encloses no area", self.name(piece)),
                 "check the corners: they lie in line, or the outline crosses itself and its parts cancel",
             ),
+            Found::Seam { seam, ref fault } => joint::fault(self, seam, fault),
+            Found::PiecesHanging { ref pieces } => joint::hanging(self, pieces),
         }
     }
 
@@ -140,7 +143,7 @@ impl<'a> Sources<'a> {
         }
     }
 
-    fn name(self, piece: usize) -> String {
+    pub(super) fn name(self, piece: usize) -> String {
         self.pieces
             .get(piece)
             .map_or_else(String::new, |piece| super::syntax::printable(&piece.name))
@@ -151,7 +154,7 @@ impl<'a> Sources<'a> {
         ring.map_or(0..0, |ring| ring.whole.clone())
     }
 
-    fn head(self, piece: usize) -> Range<usize> {
+    pub(super) fn head(self, piece: usize) -> Range<usize> {
         self.texts.get(piece).map_or(0..0, |text| text.head.clone())
     }
 

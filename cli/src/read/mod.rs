@@ -8,6 +8,7 @@ pub mod fault;
 mod fields;
 pub mod file;
 mod geometry;
+mod joint;
 mod later;
 mod material;
 mod names;

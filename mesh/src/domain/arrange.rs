@@ -1,7 +1,7 @@
 //! The arrangement of the pieces' sides, and what can be wrong with it.
 
 use super::cut::{cut, join};
-use super::edge::{Edge, edges_of};
+use super::edge::{Edge, distance, edges_of};
 use super::fault::Fault;
 use super::hole::misplaced_holes;
 use super::meeting::{limit_crossings, meetings};
@@ -20,6 +20,28 @@ const SECOND_OPINION_LIMIT: usize = 300;
 
 /// See [`super::build`].
 pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
+    let Fused { domain, .. } = fuse(pieces, &[])?;
+    let faults = pinches(&domain.points, &domain.sides, pieces.len());
+    if faults.is_empty() {
+        Ok(domain)
+    } else {
+        Err(faults)
+    }
+}
+
+/// Pieces fused along all that they share, points in which they only touch among it.
+pub struct Fused {
+    /// The planar graph.
+    pub domain: Domain,
+    /// The length within which points are one.
+    pub tolerance: f64,
+}
+
+/// The arrangement of the pieces, sides cut at `stops` besides.
+///
+/// # Errors
+/// Every fault found.
+pub fn fuse(pieces: &[Piece], stops: &[Point]) -> Result<Fused, Vec<Fault>> {
     let tolerance = tolerance(pieces);
     let mut faults = unsound(pieces, tolerance);
     if !faults.is_empty() {
@@ -51,24 +73,32 @@ pub fn arrange(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
         return Err(faults);
     }
 
+    for (edge, cuts) in edges.iter().zip(&mut cuts) {
+        cuts.extend(
+            stops
+                .iter()
+                .filter(|&&p| distance(&edge.side, p) <= tolerance),
+        );
+    }
     let (points, parts) = cut(&edges, &cuts, tolerance);
     let (sides, stacked) = join(&parts, tolerance);
     faults.extend(overlaps(
         pieces, &edges, &parts, &sides, &stacked, tolerance,
     ));
-    if faults.is_empty() {
-        faults.extend(pinches(&points, &sides, pieces.len()));
-    }
     if !faults.is_empty() {
         return Err(faults);
     }
     let parts = connected_parts(pieces.len(), &sides);
-    Ok(Domain {
-        points,
-        sides,
-        piece_names: pieces.iter().map(|p| p.name.clone()).collect(),
-        piece_materials: pieces.iter().map(|p| p.material).collect(),
-        parts,
+    Ok(Fused {
+        domain: Domain {
+            points,
+            sides,
+            piece_names: pieces.iter().map(|p| p.name.clone()).collect(),
+            piece_materials: pieces.iter().map(|p| p.material).collect(),
+            parts,
+            seams: Vec::new(),
+        },
+        tolerance,
     })
 }
 

@@ -33,7 +33,8 @@ pub fn contacts(a: &Side, b: &Side, tolerance: f64) -> Vec<Point> {
 }
 
 /// Points that the lines or circles of two sides have in common; none if they are the same.
-fn carriers_meet(a: &Side, b: &Side, tolerance: f64) -> Vec<Point> {
+#[must_use]
+pub fn carriers_meet(a: &Side, b: &Side, tolerance: f64) -> Vec<Point> {
     match (a.arc, b.arc) {
         (None, None) => {
             let (d, e) = (a.to - a.from, b.to - b.from);

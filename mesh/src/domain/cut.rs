@@ -142,6 +142,7 @@ pub fn join(parts: &[Part], tolerance: f64) -> (Vec<DomainSide>, Vec<Stacked>) {
                 arc: part.arc,
                 left: Some(part.piece),
                 right: None,
+                faying: false,
             });
             continue;
         };

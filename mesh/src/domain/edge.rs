@@ -86,7 +86,9 @@ fn parts(side: &Side) -> Vec<Side> {
         .collect()
 }
 
-fn reversed(side: &Side) -> Side {
+/// A side from its last to its first point.
+#[must_use]
+pub fn reversed(side: &Side) -> Side {
     Side {
         from: side.to,
         to: side.from,
@@ -148,6 +150,30 @@ pub fn distance(side: &Side, p: Point) -> f64 {
         Some(arc) => (p.distance(arc.circle.centre) - arc.circle.radius).abs(),
     };
     along.min(ends)
+}
+
+/// The point of a side that is nearest to `p`.
+#[must_use]
+pub fn foot(side: &Side, p: Point) -> Point {
+    let on_carrier = match side.arc {
+        None => {
+            let d = side.to - side.from;
+            side.from + d * ((p - side.from).dot(d) / d.dot(d))
+        }
+        Some(arc) => {
+            let c = arc.circle.centre;
+            c + Vector::at_angle((p - c).angle()) * arc.circle.radius
+        }
+    };
+    let mut nearest = if p.distance(side.from) <= p.distance(side.to) {
+        side.from
+    } else {
+        side.to
+    };
+    if parameter(side, on_carrier).is_some() && on_carrier.distance(p) < nearest.distance(p) {
+        nearest = on_carrier;
+    }
+    nearest
 }
 
 /// The middle of a side.

@@ -44,20 +44,22 @@ pub fn fans(domain: &Domain) -> Vec<Vec<Leaving>> {
             });
         }
     }
+    // Of a slit's hands that leave its end the one with the slit to its left comes first.
+    let rank = |l: &Leaving| u8::from(domain.sides[l.side].faying && l.left.is_some());
     for fan in &mut fans {
-        fan.sort_by(|a, b| a.angle.total_cmp(&b.angle));
+        fan.sort_by(|a, b| a.angle.total_cmp(&b.angle).then(rank(a).cmp(&rank(b))));
     }
     fans
 }
 
 /// The angle from one side to the next anticlockwise, radians in [0, 2π]. Of two tangent sides the one
-/// that bends more to the left comes later.
+/// that bends more to the left comes later; two on one line are the hands of a slit.
 #[must_use]
 pub fn between(a: &Leaving, b: &Leaving) -> f64 {
     let angle = (b.angle - a.angle).rem_euclid(TAU);
     if angle > TANGENT && angle < TAU - TANGENT {
         angle
-    } else if b.curvature > a.curvature {
+    } else if b.curvature > a.curvature || (b.curvature == a.curvature && a.left.is_none()) {
         0.0
     } else {
         TAU

@@ -44,6 +44,17 @@ pub fn pinches(points: &[Point], sides: &[DomainSide], pieces: usize) -> Vec<Fau
 /// Number of parts that no side connects.
 #[must_use]
 pub fn connected_parts(pieces: usize, sides: &[DomainSide]) -> usize {
+    let leader = leaders(pieces, sides, |_, _| true);
+    (0..pieces).filter(|&i| leader[i] == i).count()
+}
+
+/// For each piece the first piece that chosen sides connect it to.
+#[must_use]
+pub fn leaders(
+    pieces: usize,
+    sides: &[DomainSide],
+    connects: impl Fn(usize, &DomainSide) -> bool,
+) -> Vec<usize> {
     let mut leader: Vec<usize> = (0..pieces).collect();
     fn find(leader: &mut [usize], mut x: usize) -> usize {
         while leader[x] != x {
@@ -52,11 +63,13 @@ pub fn connected_parts(pieces: usize, sides: &[DomainSide]) -> usize {
         }
         x
     }
-    for side in sides {
-        if let (Some(a), Some(b)) = (side.left, side.right) {
+    for (s, side) in sides.iter().enumerate() {
+        if let (Some(a), Some(b)) = (side.left, side.right)
+            && connects(s, side)
+        {
             let (a, b) = (find(&mut leader, a as usize), find(&mut leader, b as usize));
             leader[a.max(b)] = a.min(b);
         }
     }
-    (0..pieces).filter(|&i| leader[i] == i).count()
+    (0..pieces).map(|i| find(&mut leader, i)).collect()
 }

@@ -7,7 +7,8 @@ use crate::point::{Point, Vector};
 use crate::tree::Extent;
 
 impl DomainSide {
-    fn side(&self, points: &[Point]) -> Side {
+    /// Its geometry.
+    pub(crate) fn side(&self, points: &[Point]) -> Side {
         Side {
             from: points[self.from as usize],
             to: points[self.to as usize],

@@ -1,11 +1,11 @@
 //! Where the material is: whether a point lies in it, how far its edge is, whether a line crosses it.
 
 use super::contact::contacts;
-use super::edge::{Edge, distance, winding};
+use super::edge::{Edge, distance, foot, winding};
 use super::fault::Place;
 use super::{Domain, DomainSide, TOLERANCE};
 use crate::outline::side::Side;
-use crate::point::{Point, Vector};
+use crate::point::Point;
 
 impl Domain {
     /// Whether `p` lies in the material or no farther than `tolerance` (a length) from it.
@@ -112,31 +112,6 @@ impl Domain {
             })
             .collect()
     }
-}
-
-/// The point of a side that is nearest to `p`.
-fn foot(side: &Side, p: Point) -> Point {
-    let on_carrier = match side.arc {
-        None => {
-            let d = side.to - side.from;
-            side.from + d * ((p - side.from).dot(d) / d.dot(d))
-        }
-        Some(arc) => {
-            let c = arc.circle.centre;
-            c + Vector::at_angle((p - c).angle()) * arc.circle.radius
-        }
-    };
-    let mut nearest = if p.distance(side.from) <= p.distance(side.to) {
-        side.from
-    } else {
-        side.to
-    };
-    if super::edge::parameter(side, on_carrier).is_some()
-        && on_carrier.distance(p) < nearest.distance(p)
-    {
-        nearest = on_carrier;
-    }
-    nearest
 }
 
 #[cfg(test)]

@@ -19,8 +19,8 @@ struct Part {
     /// Height of the arc over its chord.
     rise: f64,
     ends: [u32; 2],
-    /// Whether there is material to the left and right.
-    material: [bool; 2],
+    /// The pieces to its left and right.
+    pieces: [Option<u32>; 2],
     /// Whether it lies in a sharp corner, whose sides are divided alike.
     cut_off: bool,
 }
@@ -33,7 +33,13 @@ impl Part {
 
     /// Whether a point lies on a side of the chord where there is material.
     fn faces(&self, p: Point) -> bool {
-        self.material[usize::from((self.b - self.a).cross(p - self.a) < 0.0)]
+        self.pieces[usize::from((self.b - self.a).cross(p - self.a) < 0.0)].is_some()
+    }
+
+    /// Whether some piece has both parts on its edge.
+    fn has_piece_of(&self, other: &Part) -> bool {
+        let mut pieces = self.pieces.iter().flatten();
+        pieces.any(|&p| other.pieces.contains(&Some(p)))
     }
 }
 
@@ -64,10 +70,12 @@ pub fn crowded_parts(
         })
         .collect();
     let tree = Tree::new(&boxes);
+    // Across a slit the hands lie on each other, and nothing comes of it.
+    let slit = !domain.seams.is_empty();
     let mut crowded = Vec::new();
     for (i, p) in parts.iter().enumerate().filter(|(_, p)| p.rise > 0.0) {
         tree.overlapping(&boxes[i], &mut |j| {
-            if i != j && crowds(p, &parts[j]) {
+            if i != j && (!slit || p.has_piece_of(&parts[j])) && crowds(p, &parts[j]) {
                 crowded.push((p.side, p.index));
             }
         });
@@ -123,7 +131,7 @@ fn parts(domain: &Domain, parameters: &[Vec<f64>], sharp_ends: &[[Option<u32>; 2
                 b: next.0,
                 rise,
                 ends: [last.1, next.1],
-                material: [side.left.is_some(), side.right.is_some()],
+                pieces: [side.left, side.right],
                 cut_off: (index == 0 && sharp_ends[s][0].is_some())
                     || (t == 1.0 && sharp_ends[s][1].is_some()),
             });

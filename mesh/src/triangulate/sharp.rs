@@ -6,8 +6,8 @@
 //! [`super::ladder`]): what is left to refine has an obtuse angle at either cut.
 
 use super::MeshError;
-use crate::domain::Domain;
 use crate::domain::fan::{between, fans};
+use crate::domain::{Domain, TOLERANCE, beyond};
 use crate::tree::{Extent, Tree};
 
 /// Corners below this angle are sharp, radians. Delaunay refinement is sure to end well from 60° on
@@ -88,7 +88,8 @@ pub fn sharp_corners(domain: &Domain, max_area: Option<f64>) -> Result<Vec<Sharp
     Ok(list)
 }
 
-/// Keeps the cuts at half the distance to sides that do not meet the corner.
+/// Keeps the cuts at half the distance to sides that do not meet the corner, nor lie on it as the other
+/// hand of a slit does.
 fn keep_clear(domain: &Domain, list: &mut [Sharp]) {
     if list.is_empty() {
         return;
@@ -96,6 +97,7 @@ fn keep_clear(domain: &Domain, list: &mut [Sharp]) {
     let points = &domain.points;
     let boxes: Vec<Extent> = domain.sides.iter().map(|s| s.extent(points)).collect();
     let tree = Tree::new(&boxes);
+    let other_hand = TOLERANCE * domain.size();
     for sharp in list {
         let at = points[sharp.point as usize];
         let others = tree.nearest(at, |s| {
@@ -103,7 +105,7 @@ fn keep_clear(domain: &Domain, list: &mut [Sharp]) {
             if side.from == sharp.point || side.to == sharp.point {
                 f64::INFINITY
             } else {
-                side.distance(points, at)
+                beyond(side.distance(points, at), other_hand)
             }
         });
         sharp.distance = sharp.distance.min(0.5 * others);

@@ -9,4 +9,5 @@ mod check;
 mod corners;
 mod faults;
 mod meshes;
+mod seams;
 mod shapes;
