@@ -181,13 +181,27 @@ fn fillets(
     for corner in &corners {
         match lay(between, legs, corner, tolerance) {
             Ok(metal) => works.push(Work::Fillet(metal, corner.gap)),
-            Err(found) => faults.extend(found),
+            Err(found) => {
+                for fault in found {
+                    if !faults.iter().any(|f| repeats(f, &fault)) {
+                        faults.push(fault);
+                    }
+                }
+            }
         }
     }
     if faults.is_empty() {
         Ok(works)
     } else {
         Err(faults)
+    }
+}
+
+/// Whether a fault says no more than another: the same misfit at the other leg or the other end.
+fn repeats(known: &SeamFault, new: &SeamFault) -> bool {
+    match (known, new) {
+        (SeamFault::Misfit { cause: a, .. }, SeamFault::Misfit { cause: b, .. }) => a == b,
+        _ => known == new,
     }
 }
 

@@ -98,9 +98,23 @@ fn lattice() -> impl Strategy<Value = Ring> {
     })
 }
 
+/// Up to three such loops as pieces.
+pub fn lattice_pieces() -> impl Strategy<Value = Vec<Piece>> {
+    prop::collection::vec(lattice(), 1..4).prop_map(|rings| {
+        let outline = |outer| Outline {
+            outer,
+            holes: Vec::new(),
+        };
+        rings
+            .into_iter()
+            .map(|outer| piece("lattice", outline(outer)))
+            .collect()
+    })
+}
+
 /// Courses of blocks like a wall's, each course with widths of its own, some blocks missing, some cut in
 /// two along a diagonal, all turned: pieces that share sides and parts of sides at any angle.
-fn wall() -> impl Strategy<Value = Vec<Piece>> {
+pub fn wall() -> impl Strategy<Value = Vec<Piece>> {
     let block = (0.05..1.0_f64, 0..5_u8);
     let course = (0.05..1.0_f64, prop::collection::vec(block, 1..4));
     let courses = prop::collection::vec(course, 1..4);
@@ -200,11 +214,7 @@ proptest! {
     }
 
     #[test]
-    fn lattice_pieces_never_panic(rings in prop::collection::vec(lattice(), 1..4)) {
-        let pieces: Vec<Piece> = rings
-            .into_iter()
-            .map(|outer| piece("lattice", Outline { outer, holes: Vec::new() }))
-            .collect();
+    fn lattice_pieces_never_panic(pieces in lattice_pieces()) {
         hold(&pieces, false);
         for p in &pieces {
             hold(std::slice::from_ref(p), false);

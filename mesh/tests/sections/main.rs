@@ -9,5 +9,7 @@ mod check;
 mod corners;
 mod faults;
 mod meshes;
+mod seam_faults;
 mod seams;
+mod seams_by_chance;
 mod shapes;

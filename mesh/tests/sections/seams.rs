@@ -11,13 +11,13 @@ use sectile_mesh::domain::seam::{SeamKind, SeamRequest};
 use sectile_mesh::domain::{Domain, build, build_seamed};
 use sectile_mesh::grade::grade_to;
 use sectile_mesh::mesh::{Mesh, NONE};
-use sectile_mesh::outline::piece::Piece;
+use sectile_mesh::outline::piece::{Outline, Piece, Ring};
 use sectile_mesh::outline::shape::{circle, tube};
 use sectile_mesh::quality::{defects, least_angle};
 use sectile_mesh::triangulate::{Sizing, triangulate};
 
 use crate::check::{check_mesh, check_triangulation, exact_area};
-use crate::shapes::{i_section, moved, of_rings, piece, point, rectangle};
+use crate::shapes::{arc, i_section, line, moved, of_rings, piece, point, rectangle};
 
 pub fn fillet(between: [usize; 2], leg: f64) -> SeamRequest {
     SeamRequest {
@@ -53,7 +53,7 @@ pub fn both(request: SeamRequest) -> SeamRequest {
 }
 
 /// What every seamed section keeps; `metal`: the area of the weld metal.
-fn check(name: &str, pieces: &[Piece], domain: &Domain, metal: f64) -> Mesh {
+pub fn check(name: &str, pieces: &[Piece], domain: &Domain, metal: f64) -> Mesh {
     let mesh = triangulate(domain, &Sizing::default()).unwrap();
     let area = exact_area(pieces) + metal;
     check_triangulation(name, &mesh, domain, area);
@@ -185,7 +185,7 @@ fn slit(domain: &Domain) -> f64 {
 }
 
 /// Two flats 100 × 10, the upper one moved by `offset` to the right.
-fn flats(offset: f64) -> Vec<Piece> {
+pub fn flats(offset: f64) -> Vec<Piece> {
     vec![
         piece("lower", rectangle(0.0, 0.0, 100.0, 10.0)),
         piece("upper", rectangle(offset, 10.0, 100.0 + offset, 20.0)),
@@ -401,29 +401,26 @@ fn a_tee_with_fillets_on_both_sides_of_its_web() {
     }
 }
 
+/// A part of a ring about the origin.
+pub fn ring_part(r0: f64, r1: f64, from: f64, to: f64) -> Outline {
+    let turn = |r: f64, a: f64| point(r * a.cos(), r * a.sin());
+    let o = point(0.0, 0.0);
+    let sides = vec![
+        arc(o, turn(r1, from), turn(r1, to), to - from),
+        line(turn(r1, to), turn(r0, to)),
+        arc(o, turn(r0, to), turn(r0, from), from - to),
+        line(turn(r0, from), turn(r1, from)),
+    ];
+    of_rings(Ring { sides }, Vec::new())
+}
+
 #[test]
 fn slits_along_arcs() {
-    // A curved plate on another: both quarter rings, welded at both ends by grooves.
-    let ring = |r0: f64, r1: f64, from: f64, to: f64| {
-        let turn = |r: f64, a: f64| point(r * a.cos(), r * a.sin());
-        use crate::shapes::{arc, line};
-        let o = point(0.0, 0.0);
-        of_rings(
-            sectile_mesh::outline::piece::Ring {
-                sides: vec![
-                    arc(o, turn(r1, from), turn(r1, to), to - from),
-                    line(turn(r1, to), turn(r0, to)),
-                    arc(o, turn(r0, to), turn(r0, from), from - to),
-                    line(turn(r0, from), turn(r1, from)),
-                ],
-            },
-            Vec::new(),
-        )
-    };
+    // A curved plate on another, welded at both ends by grooves.
     for sweep in [0.3, 1.0, 2.0, 3.5, 5.0] {
         let pieces = vec![
-            piece("inner", ring(40.0, 50.0, 0.2, 0.2 + sweep)),
-            piece("outer", ring(50.0, 58.0, 0.2, 0.2 + sweep)),
+            piece("inner", ring_part(40.0, 50.0, 0.2, 0.2 + sweep)),
+            piece("outer", ring_part(50.0, 58.0, 0.2, 0.2 + sweep)),
         ];
         let depth = 0.2 * sweep * 50.0;
         let domain = build_seamed(&pieces, &[both(groove([0, 1], Some(depth)))]).unwrap();
@@ -437,7 +434,7 @@ fn slits_along_arcs() {
         let (from, to) = (0.5 * PI - 0.5 * cover, 0.5 * PI + 0.5 * cover);
         let pieces = vec![
             piece("bar", of_rings(circle(point(0.0, 0.0), 100.0), Vec::new())),
-            piece("pad", ring(50.0, 58.0, from, to)),
+            piece("pad", ring_part(50.0, 58.0, from, to)),
         ];
         let domain = build_seamed(&pieces, &[both(fillet([0, 1], 5.0))]).unwrap();
         // Between a leg of 5 along the circle and one along its radius.
@@ -460,8 +457,8 @@ fn slits_along_arcs() {
     // Two half shells around a core, joined to it by grooves at one of their edges.
     let pieces = vec![
         piece("core", of_rings(circle(point(0.0, 0.0), 100.0), Vec::new())),
-        piece("shell", ring(50.0, 58.0, 0.0, PI)),
-        piece("shell", ring(50.0, 58.0, PI, TAU)),
+        piece("shell", ring_part(50.0, 58.0, 0.0, PI)),
+        piece("shell", ring_part(50.0, 58.0, PI, TAU)),
     ];
     let requests = [
         near(50.0, 0.0, groove([0, 1], Some(20.0))),
