@@ -43,6 +43,7 @@ fn bench(c: &mut Criterion) {
         tolerance: 1e-4,
         order: None,
         max_unknowns: 1_000_000,
+        reference: None,
     };
     let solution =
         solve(&domain, &[steel], 1e-3, &settings, &mut |_| {}).unwrap_or_else(|e| panic!("{e}"));

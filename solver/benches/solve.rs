@@ -61,6 +61,7 @@ fn solved(domain: &Domain, tolerance: f64, order: Option<usize>) -> Solution {
         tolerance,
         order,
         max_unknowns: 2_000_000,
+        reference: None,
     };
     solve(domain, &[steel], 1e-3, &settings, &mut |_| {}).unwrap_or_else(|e| panic!("{e}"))
 }

@@ -15,9 +15,10 @@ use crate::figure::Figure;
 use crate::geometry::Frame;
 use crate::level::{LevelResult, solve_level, unknowns};
 use crate::material::Material;
+use crate::mixture::Mixture;
 use crate::plastic;
 use crate::problem::COUNT;
-use crate::property::area::{AreaMoments, area_moments};
+use crate::property::area::{AreaMoments, area_moments, piece_areas};
 use crate::property::bending::exact_properties;
 use crate::property::shear::{Enclosures, ShearProperties};
 use crate::quantity::Quantity;
@@ -53,13 +54,17 @@ pub(crate) fn solve(
     progress: &mut dyn FnMut(&Level),
 ) -> Result<Solution, SolveError> {
     let order = check(settings)?;
-    let material = the_material(domain, materials)?;
+    let mixture = Mixture::new(domain, materials, settings)?;
     let mut clock = Timings::default();
     let start = Instant::now();
-    let moments = area_moments(domain);
-    let mut properties = exact_properties(domain, &moments, material, metres);
+    let moments = area_moments(domain, |p| mixture.ratios[p as usize].e);
+    let mut properties = exact_properties(domain, &moments, &mixture, materials, metres);
+    let areas = piece_areas(domain);
+    let poisson = mixture.poisson(domain, materials, &areas);
+    let reference = &materials[mixture.reference];
+    let factor = mixture.poisson_factor(reference, poisson);
     let yields: Vec<Option<f64>> = materials.iter().map(|m| m.yield_stress).collect();
-    let plastic = plastic::analyse(domain, &yields, 0, moments.centroid);
+    let plastic = plastic::analyse(domain, &yields, mixture.reference, moments.centroid);
     if let Some(plastic) = &plastic {
         properties.extend(plastic::quantities::properties(plastic, &moments));
     }
@@ -71,6 +76,7 @@ pub(crate) fn solve(
         triangulate(domain, &Sizing::default()).map_err(|e| SolveError::Mesh(e.to_string()))?;
     clock.mesh += start.elapsed().as_secs_f64();
     let mut notes: Vec<Note> = corners.iter().map(corner_note).collect();
+    notes.extend(mixture_notes(domain, &mixture, materials, poisson));
 
     let frame = Frame {
         origin: moments.centroid,
@@ -115,6 +121,7 @@ pub(crate) fn solve(
             &mesh,
             &frame,
             &scaled,
+            &mixture.ratios,
             &tables,
             levels.is_empty(),
             &mut clock,
@@ -124,8 +131,8 @@ pub(crate) fn solve(
         }
         let start = Instant::now();
         let enclosures = Enclosures::new(result.total);
-        let shear = enclosures.properties(&scaled, material.poisson, eigenvalue);
-        let aims = aims(&enclosures, &shear, &scaled, material.poisson, eigenvalue);
+        let shear = enclosures.properties(&scaled, factor, eigenvalue);
+        let aims = aims(&enclosures, &shear, &scaled, factor, eigenvalue);
         let worst = aims
             .iter()
             .max_by(|a, b| a.error.total_cmp(&b.error))
@@ -155,7 +162,21 @@ pub(crate) fn solve(
         if !reached {
             notes.push(not_reached(&levels, settings, rounding));
         }
-        properties.extend(outward(&shear, &moments, &scaled, &frame));
+        let shear_area = if mixture.uniform {
+            scaled.area
+        } else {
+            let sum: f64 = areas
+                .iter()
+                .zip(&mixture.ratios)
+                .map(|(a, r)| a * r.g)
+                .sum();
+            sum / frame.scale.powi(2)
+        };
+        let found = outward(&shear, &moments, &scaled, shear_area, &frame);
+        if mixture.several {
+            properties.extend(stiffnesses(&found, reference));
+        }
+        properties.extend(found);
         properties.sort_by_key(|(q, _)| *q);
         return Ok(Solution {
             mesh,
@@ -169,7 +190,8 @@ pub(crate) fn solve(
             solved: Some(Solved {
                 frame,
                 moments: scaled,
-                poisson: material.poisson,
+                poisson_factor: factor,
+                ratios: mixture.ratios,
                 shear,
                 warping_square: if shear.warping.low > 0.0 {
                     result.total.source_square
@@ -204,20 +226,38 @@ fn check(settings: &Settings) -> Result<usize, SolveError> {
     Ok(order)
 }
 
-/// The one material that every piece has.
-fn the_material<'a>(
+/// What the reader must know where there are several materials.
+fn mixture_notes(
     domain: &Domain,
-    materials: &'a [Material],
-) -> Result<&'a Material, SolveError> {
-    let first = domain.piece_materials.first().copied().unwrap_or(0);
-    if domain.piece_materials.iter().any(|&m| m != first) {
-        return Err(SolveError::Setting(
-            "sections of several materials are not solved by this version".into(),
+    mixture: &Mixture,
+    materials: &[Material],
+    poisson: f64,
+) -> Vec<Note> {
+    if !mixture.several {
+        return Vec::new();
+    }
+    let mut text = format!(
+        "Several materials: area, moments and C_w are weighted by E, J and the shear areas by G, over \
+         those of {}; the centroid is that of E. Stresses are true stresses of each piece, one-sided \
+         where pieces meet. Bonds are taken as perfect: slip, creep, shrinkage and cracks are not \
+         in the figures.",
+        materials[mixture.reference].name
+    );
+    let differs = domain
+        .piece_materials
+        .iter()
+        .any(|&m| materials[m].poisson != poisson);
+    if differs {
+        text.push_str(&format!(
+            " Poisson's ratios differ: flexure takes the mean by EA, {poisson:.3}, in all pieces, and \
+             the stresses by which pieces hinder each other's sideways contraction are left out.",
         ));
     }
-    materials
-        .get(first)
-        .ok_or_else(|| SolveError::Setting("the section has no material".into()))
+    vec![Note {
+        kind: "several-materials",
+        text,
+        at: None,
+    }]
 }
 
 fn corner_note(corner: &ReentrantCorner) -> Note {
@@ -311,10 +351,10 @@ fn aims(
     enclosures: &Enclosures,
     shear: &ShearProperties,
     m: &AreaMoments,
-    poisson: f64,
+    factor: f64,
     eigenvalue: f64,
 ) -> Vec<Aim> {
-    let weights = enclosures.gap_weights(m, poisson, eigenvalue, shear.shear_area.map(|a| a.value));
+    let weights = enclosures.gap_weights(m, factor, eigenvalue, shear.shear_area.map(|a| a.value));
     let polar = (m.xx + m.yy) / m.area;
     let radius = polar_radius(shear, polar).value;
     let floor = 1e-3 * shear.torsion.value * polar;
@@ -445,11 +485,29 @@ const LEAST_GROWTH: f64 = 1.1;
 /// Below this part of the tolerance the gaps are not what keeps a figure outside of it.
 const GAP_SHARE: f64 = 0.5;
 
-/// The shear properties in the units and axes of the domain.
+/// GJ and EC_w from J and C_w, which refer to the reference material.
+fn stiffnesses(found: &[(Quantity, Figure)], reference: &Material) -> Vec<(Quantity, Figure)> {
+    found
+        .iter()
+        .filter_map(|&(quantity, figure)| match quantity {
+            Quantity::TorsionConstant => {
+                Some((Quantity::TorsionStiffness, figure.scaled(reference.shear)))
+            }
+            Quantity::WarpingConstant => {
+                Some((Quantity::WarpingStiffness, figure.scaled(reference.young)))
+            }
+            _ => None,
+        })
+        .collect()
+}
+
+/// The shear properties in the units and axes of the domain; `shear_area`: the area weighted by G, to
+/// which shear coefficients refer.
 fn outward(
     shear: &ShearProperties,
     m: &AreaMoments,
     scaled: &AreaMoments,
+    shear_area: f64,
     frame: &Frame,
 ) -> Vec<(Quantity, Figure)> {
     let s = frame.scale;
@@ -467,7 +525,7 @@ fn outward(
             .snapped()
             .scaled(s)
     };
-    let area = Figure::exact(scaled.area, scaled.area);
+    let area = Figure::exact(shear_area, shear_area);
     vec![
         (Quantity::TorsionConstant, shear.torsion.scaled(s.powi(4))),
         (

@@ -4,6 +4,7 @@ use sectile_mesh::map::TriangleMap;
 
 use crate::geometry::Geometry;
 use crate::kernel::{Kernel, Source, particular_flux};
+use crate::mixture::Ratio;
 use crate::problem::{COUNT, SOURCES, known_field};
 use crate::solution::{Solution, Solved};
 use crate::space::Space;
@@ -55,7 +56,7 @@ impl PointTable {
 }
 
 /// All fields at a point, in the solver's coordinates.
-#[derive(Clone, Copy, Debug, Default)]
+#[derive(Clone, Copy, Debug)]
 pub struct PointFields {
     /// Position relative to the centroid.
     pub x: f64,
@@ -63,6 +64,8 @@ pub struct PointFields {
     pub y: f64,
     /// Determinant of the triangle's map.
     pub det: f64,
+    /// Moduli over the reference's.
+    pub ratio: Ratio,
     /// Warping function about the shear centre, zero mean.
     pub omega: f64,
     /// Its gradient.
@@ -89,6 +92,7 @@ pub struct Ready {
     nodes: Vec<usize>,
     modes: [Vec<f64>; 3],
     triangle: usize,
+    ratio: Ratio,
 }
 
 impl<'a> Evaluator<'a> {
@@ -122,6 +126,7 @@ impl<'a> Evaluator<'a> {
             geometry: &self.geometry,
             space: self.space,
             tables: &self.solved.tables,
+            ratios: &self.solved.ratios,
         };
         let mut nodes = Vec::new();
         self.space.fill_nodes(t, &mut nodes);
@@ -135,6 +140,7 @@ impl<'a> Evaluator<'a> {
                 .sources
                 .map(|s| kernel.modes_of(t, s, Some(torsion))),
             triangle: t,
+            ratio: kernel.ratio(t),
         }
     }
 
@@ -161,12 +167,17 @@ impl<'a> Evaluator<'a> {
             x: at.x,
             y: at.y,
             det: at.det,
-            ..PointFields::default()
+            ratio: ready.ratio,
+            omega: 0.0,
+            omega_gradient: [0.0; 2],
+            primal: [[0.0; 2]; COUNT],
+            dual: [[0.0; 2]; COUNT],
         };
+        let modulus = ready.ratio.g;
         for k in 0..COUNT {
             let h = known_field(k, at.x, at.y);
             let g = at.gradient(gradient[0][k], gradient[1][k]);
-            out.primal[k] = [g[0] + h[0], g[1] + h[1]];
+            out.primal[k] = [modulus * (g[0] + h[0]), modulus * (g[1] + h[1])];
             let c = at.gradient(gradient[2][k], gradient[3][k]);
             out.dual[k] = [c[1], -c[0]];
         }
@@ -179,8 +190,8 @@ impl<'a> Evaluator<'a> {
         if let Source::Warping([mean, a, b]) = data.sources[2] {
             out.omega = omega - mean - a * at.x - b * at.y;
             let tau = out.primal[crate::problem::TORSION];
-            // τ = grad ω + (−y, x).
-            out.omega_gradient = [tau[0] + at.y - a, tau[1] - at.x - b];
+            // τ = g (grad ω + (−y, x)).
+            out.omega_gradient = [tau[0] / modulus + at.y - a, tau[1] / modulus - at.x - b];
         }
         out
     }

@@ -4,6 +4,7 @@ use rayon::prelude::*;
 use sectile_mesh::map::MapPoint;
 
 use crate::geometry::Geometry;
+use crate::mixture::Ratio;
 use crate::problem::{COUNT, PAIRS, SOURCES, known_field};
 use crate::space::Space;
 use crate::tables::{Tables, Tabulated, source_modes, source_total};
@@ -11,14 +12,15 @@ use crate::tables::{Tables, Tabulated, source_modes, source_total};
 /// Values at nodes of the six problems, padded to the width of vector registers.
 pub type NodeValues = [f64; 8];
 
-/// A source of a problem: `f` at a point of the section.
+/// A source of a problem: `f` at a point of the section, e the piece's Young's modulus over the
+/// reference's.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Source {
-    /// `f = x`.
+    /// `f = e x`.
     X,
-    /// `f = y`.
+    /// `f = e y`.
     Y,
-    /// `f = ω − c₀ − c₁ x − c₂ y`, ω the primal torsion field.
+    /// `f = e (ω − c₀ − c₁ x − c₂ y)`, ω the primal torsion field.
     Warping([f64; 3]),
 }
 
@@ -31,6 +33,8 @@ pub struct Kernel<'a> {
     pub space: Space<'a>,
     /// Tables of the order.
     pub tables: &'a Tables,
+    /// Moduli over the reference's, by piece.
+    pub ratios: &'a [Ratio],
 }
 
 /// A problem to be loaded: its source, if it has one, with the fluxes of the spanning tree.
@@ -45,26 +49,26 @@ pub struct Term<'a> {
 /// Loads of several problems on every triangle, shape `[triangle × local × problem]`.
 #[derive(Clone, Debug, Default)]
 pub struct Loads {
-    /// `∫ (f v − h·grad v)`.
+    /// `∫ (f v − g h·grad v)`.
     pub primal: Vec<f64>,
-    /// `∫ (h − τ₀)·curl v`.
+    /// `∫ (h − τ₀/g)·curl v`.
     pub dual: Vec<f64>,
 }
 
 /// Integrals over one triangle, or their sum over all.
 #[derive(Clone, Copy, Debug)]
 pub struct Energies {
-    /// `∫ τ_p·τ_p` by [`PAIRS`].
+    /// `∫ τ_p·τ_p / g` by [`PAIRS`].
     pub primal: [f64; PAIRS.len()],
-    /// `∫ τ*·τ*` by [`PAIRS`].
+    /// `∫ τ*·τ* / g` by [`PAIRS`].
     pub dual: [f64; PAIRS.len()],
-    /// `∫ (τ_p − τ*)·(τ_p − τ*)` by [`PAIRS`].
+    /// `∫ (τ_p − τ*)·(τ_p − τ*) / g` by [`PAIRS`].
     pub gap: [f64; PAIRS.len()],
     /// `∫ ω f` by [`SOURCES`], ω the primal torsion field.
     pub warping_moment: [f64; 3],
     /// `∫ (x τ*_y − y τ*_x)` by [`SOURCES`].
     pub dual_torque: [f64; 3],
-    /// `∫ f²` of the restrained-warping source.
+    /// `∫ f²/e` of the restrained-warping source.
     pub source_square: f64,
     /// By [`SOURCES`]: the square of a bound on the energy of what the projection of the source on
     /// curved triangles leaves out, see [`Kernel::energies`].
@@ -126,6 +130,12 @@ struct Workspace {
 impl<'a> Kernel<'a> {
     fn triangles(&self) -> usize {
         self.space.mesh.triangles.len()
+    }
+
+    /// The moduli of triangle `t` over the reference's.
+    #[must_use]
+    pub fn ratio(&self, t: usize) -> Ratio {
+        self.ratios[self.space.mesh.piece[t] as usize]
     }
 
     fn tabulated(&self, straight: bool) -> &'a Tabulated {
@@ -190,15 +200,17 @@ impl<'a> Kernel<'a> {
             .collect()
     }
 
-    /// `∫ grad N_i · grad N_j` of triangle `t` into `out`, shape `[local × local]`. Since curls are
-    /// turned gradients, it serves both operators.
-    pub fn stiffness(&self, t: usize, curved: &[Option<Vec<f64>>], out: &mut [f64]) {
+    /// `factor ∫ grad N_i · grad N_j` of triangle `t` into `out`, shape `[local × local]`. Since curls
+    /// are turned gradients, it serves both operators: with g for the primal, 1/g for the dual.
+    pub fn stiffness(&self, t: usize, curved: &[Option<Vec<f64>>], factor: f64, out: &mut [f64]) {
         if let Some(k) = &curved[t] {
-            out.copy_from_slice(k);
+            for (o, k) in out.iter_mut().zip(k) {
+                *o = factor * k;
+            }
             return;
         }
         let [a, b, c, d] = self.geometry.map(t).at(0.0, 0.0).jacobian;
-        let det = a * d - b * c;
+        let det = (a * d - b * c) / factor;
         let (xx, xy, yy) = (
             (b * b + d * d) / det,
             -(a * b + c * d) / det,
@@ -211,10 +223,11 @@ impl<'a> Kernel<'a> {
         balance(out, self.space.local_nodes());
     }
 
-    /// Values of a source at the points of a triangle, times the determinant.
+    /// Values of a source at the points of a triangle of modulus ratio `e`, times the determinant.
     fn fill_source(
         &self,
         source: Source,
+        e: f64,
         table: &crate::element::table::Table,
         torsion: Option<&[f64]>,
         work: &mut Workspace,
@@ -233,7 +246,7 @@ impl<'a> Kernel<'a> {
                     omega - c0 - c1 * at.x - c2 * at.y
                 }
             };
-            work.source.push(f * at.det);
+            work.source.push(e * f * at.det);
         }
     }
 
@@ -244,7 +257,7 @@ impl<'a> Kernel<'a> {
             .into_par_iter()
             .map_init(Workspace::default, |work, t| {
                 let tabulated = self.enter(t, work);
-                self.fill_source(source, &tabulated.table, torsion, work);
+                self.fill_source(source, self.ratio(t).e, &tabulated.table, torsion, work);
                 source_modes(&tabulated.table, &work.source, &mut work.modes);
                 source_total(&work.modes)
             })
@@ -256,12 +269,18 @@ impl<'a> Kernel<'a> {
     pub fn modes_of(&self, t: usize, source: Source, torsion: Option<&[f64]>) -> Vec<f64> {
         let mut work = Workspace::default();
         let tabulated = self.enter(t, &mut work);
-        self.fill_source(source, &tabulated.table, torsion, &mut work);
+        self.fill_source(
+            source,
+            self.ratio(t).e,
+            &tabulated.table,
+            torsion,
+            &mut work,
+        );
         source_modes(&tabulated.table, &work.source, &mut work.modes);
         work.modes
     }
 
-    /// `∫ {ω, ω x, ω y, ω²}` of a node field.
+    /// `∫ e {ω, ω x, ω y, ω²}` of a node field.
     #[must_use]
     pub fn moments(&self, field: &[f64]) -> [f64; 4] {
         let parts: Vec<[f64; 4]> = (0..self.triangles())
@@ -269,6 +288,7 @@ impl<'a> Kernel<'a> {
             .map_init(Workspace::default, |work, t| {
                 let table = &self.enter(t, work).table;
                 let n = table.functions;
+                let e = self.ratio(t).e;
                 let mut sum = [0.0; 4];
                 for (q, at) in work.maps.iter().enumerate() {
                     let values = &table.value[q * n..(q + 1) * n];
@@ -278,7 +298,7 @@ impl<'a> Kernel<'a> {
                         .zip(values)
                         .map(|(&i, v)| field[i] * v)
                         .sum();
-                    let w = table.rule.weights[q] * at.det;
+                    let w = e * table.rule.weights[q] * at.det;
                     sum[0] += w * u;
                     sum[1] += w * u * at.x;
                     sum[2] += w * u * at.y;
@@ -295,7 +315,7 @@ impl<'a> Kernel<'a> {
         })
     }
 
-    /// `∫ u v` against every node function: the mass matrix times a node field, over the nodes.
+    /// `∫ e u v` against every node function: the mass matrix times a node field, over the nodes.
     #[must_use]
     pub fn mass_times(&self, field: &[f64]) -> Vec<f64> {
         let mut out = vec![0.0; field.len()];
@@ -303,6 +323,7 @@ impl<'a> Kernel<'a> {
         for t in 0..self.triangles() {
             let table = &self.enter(t, &mut work).table;
             let n = table.functions;
+            let e = self.ratio(t).e;
             for (q, at) in work.maps.iter().enumerate() {
                 let values = &table.value[q * n..(q + 1) * n];
                 let u: f64 = work
@@ -311,7 +332,7 @@ impl<'a> Kernel<'a> {
                     .zip(values)
                     .map(|(&i, v)| field[i] * v)
                     .sum();
-                let w = table.rule.weights[q] * at.det * u;
+                let w = e * table.rule.weights[q] * at.det * u;
                 for (&i, v) in work.nodes.iter().zip(values) {
                     out[i] += w * v;
                 }
@@ -344,9 +365,10 @@ impl<'a> Kernel<'a> {
                 |(work, values, modes), (t, (primal, dual))| {
                     let tabulated = self.enter(t, work);
                     let table = &tabulated.table;
+                    let ratio = self.ratio(t);
                     for k in 0..N {
                         if let Some((source, _)) = terms[k].source {
-                            self.fill_source(source, table, torsion, work);
+                            self.fill_source(source, ratio.e, table, torsion, work);
                             source_modes(table, &work.source, &mut modes[k]);
                             std::mem::swap(&mut values[k], &mut work.source);
                         }
@@ -363,9 +385,9 @@ impl<'a> Kernel<'a> {
                                 f[k] = w * values[k][q];
                                 let s = self.particular(tabulated, q, &flux[t], &modes[k]);
                                 let s = at.piola(s);
-                                a = [a[0] - s[0], a[1] - s[1]];
+                                a = [a[0] - s[0] / ratio.g, a[1] - s[1] / ratio.g];
                             } else {
-                                let g = pull_back(at, a, w);
+                                let g = pull_back(at, a, w * ratio.g);
                                 p[0][k] = -g[0];
                                 p[1][k] = -g[1];
                             }
@@ -440,11 +462,12 @@ impl<'a> Kernel<'a> {
         let tabulated = self.enter(t, work);
         let table = &tabulated.table;
         let n = table.functions;
+        let Ratio { e, g } = self.ratio(t);
         let mut out = Energies::default();
         let straight = self.geometry.map(t).is_straight();
         let mut values: [Vec<f64>; 3] = Default::default();
         for k in 0..3 {
-            self.fill_source(sources[k], table, Some(torsion), work);
+            self.fill_source(sources[k], e, table, Some(torsion), work);
             source_modes(table, &work.source, &mut work.modes);
             std::mem::swap(&mut work.projected[k], &mut work.modes);
             values[k].clone_from(&work.source);
@@ -468,7 +491,7 @@ impl<'a> Kernel<'a> {
                             .sum::<f64>();
                     square += w * r * r;
                 }
-                out.oscillation[k] = constant * square;
+                out.oscillation[k] = constant * square / g;
             }
         }
         for (q, at) in work.maps.iter().enumerate() {
@@ -490,8 +513,8 @@ impl<'a> Kernel<'a> {
             let mut tau_d = [[0.0; 2]; COUNT];
             for k in 0..COUNT {
                 let h = known_field(k, at.x, at.y);
-                let g = at.gradient(sums[0][k], sums[1][k]);
-                tau_p[k] = [g[0] + h[0], g[1] + h[1]];
+                let u = at.gradient(sums[0][k], sums[1][k]);
+                tau_p[k] = [g * (u[0] + h[0]), g * (u[1] + h[1])];
                 let c = at.gradient(sums[2][k], sums[3][k]);
                 tau_d[k] = [c[1], -c[0]];
             }
@@ -505,7 +528,8 @@ impl<'a> Kernel<'a> {
                 out.warping_moment[k] += table.rule.weights[q] * values[k][q] * sums[4][0];
                 out.dual_torque[k] += w * (at.x * tau[1] - at.y * tau[0]);
             }
-            out.source_square += table.rule.weights[q] * values[2][q] * values[2][q] / at.det;
+            out.source_square += table.rule.weights[q] * values[2][q] * values[2][q] / (e * at.det);
+            let w = w / g;
             for (i, &(a, b)) in PAIRS.iter().enumerate() {
                 let (pa, pb, da, db) = (tau_p[a], tau_p[b], tau_d[a], tau_d[b]);
                 out.primal[i] += w * (pa[0] * pb[0] + pa[1] * pb[1]);

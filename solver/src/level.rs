@@ -8,6 +8,7 @@ use sectile_mesh::mesh::Mesh;
 use crate::factor::Factor;
 use crate::geometry::{Frame, Geometry};
 use crate::kernel::{Energies, Kernel, NodeValues, Source, Term};
+use crate::mixture::Ratio;
 use crate::ordering::elimination_order;
 use crate::problem::{COUNT, FLEXURE_X, FLEXURE_Y, POISSON_X, POISSON_Y, RESTRAINED, TORSION};
 use crate::property::area::AreaMoments;
@@ -62,7 +63,8 @@ fn timed<T>(clock: &mut f64, f: impl FnOnce() -> T) -> T {
     out
 }
 
-/// Solves every problem on `mesh`; `m` are the area's moments in the solver's coordinates.
+/// Solves every problem on `mesh`; `m` are the area's weighted moments in the solver's coordinates,
+/// `ratios` the moduli over the reference's by piece.
 ///
 /// # Errors
 /// If memory runs out or a factorisation fails.
@@ -70,6 +72,7 @@ pub fn solve_level(
     mesh: &Mesh,
     frame: &Frame,
     m: &AreaMoments,
+    ratios: &[Ratio],
     tables: &Tables,
     want_eigenvalue: bool,
     clock: &mut Timings,
@@ -80,6 +83,7 @@ pub fn solve_level(
         geometry: &geometry,
         space,
         tables,
+        ratios,
     };
     let order = timed(&mut clock.order, || elimination_order(mesh))?;
     let (free, tied, tree) = timed(&mut clock.assemble, || {
@@ -102,8 +106,16 @@ pub fn solve_level(
     let (matrices, mut rhs) = timed(&mut clock.assemble, || {
         let curved = kernel.curved_stiffness();
         let matrices = join(
-            || free.assemble(&space, |t, k| kernel.stiffness(t, &curved, k)),
-            || tied.assemble(&space, |t, k| kernel.stiffness(t, &curved, k)),
+            || {
+                free.assemble(&space, |t, k| {
+                    kernel.stiffness(t, &curved, kernel.ratio(t).g, k);
+                })
+            },
+            || {
+                tied.assemble(&space, |t, k| {
+                    kernel.stiffness(t, &curved, 1.0 / kernel.ratio(t).g, k);
+                })
+            },
         );
         let [flux_x, flux_y] = &flexure_flux;
         let plain = |problem| Term {

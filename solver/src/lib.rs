@@ -13,6 +13,7 @@ mod geometry;
 mod kernel;
 mod level;
 pub mod material;
+mod mixture;
 mod ordering;
 pub mod plastic;
 mod problem;

@@ -12,6 +12,8 @@ pub enum Group {
     Torsion,
     /// Shear centre, shear areas.
     Shear,
+    /// Stiffnesses of a section of several materials.
+    Stiffness,
 }
 
 /// The physical dimension of a property.
@@ -23,6 +25,8 @@ pub enum Dimension {
     MassPerLength,
     /// Degrees.
     Angle,
+    /// Force times length to this power; the force is the materials' stress times length².
+    ForceLength(i32),
 }
 
 macro_rules! quantities {
@@ -58,10 +62,11 @@ macro_rules! quantities {
     };
 }
 
-use Dimension::{Angle, Length, MassPerLength};
+use Dimension::{Angle, ForceLength, Length, MassPerLength};
 
 quantities! {
     Area "area" "A" Geometry Length(2), "Area, ∫dA";
+    WeightedArea "weighted_area" "A_E" Geometry Length(2), "Several materials: ∫(E/E₀) dA, E₀ of the reference material";
     Perimeter "perimeter" "u" Geometry Length(1), "Length of the outer edge";
     HolePerimeter "perimeter_holes" "u_i" Geometry Length(1), "Length of all hole edges";
     MassPerLength "mass_per_length" "m" Geometry MassPerLength, "Mass per length, from the material's density";
@@ -98,4 +103,9 @@ quantities! {
     PolarRadius "polar_radius" "r_0" Shear Length(1), "Polar radius about the shear centre, r₀² = (I_x + I_y)/A + distance² of centroid and shear centre";
     MonosymmetryX "monosymmetry_x" "β_x" Shear Length(1), "(1/I_x) ∫y(x²+y²) dA − 2 y_s about centroidal axes";
     MonosymmetryY "monosymmetry_y" "β_y" Shear Length(1), "(1/I_y) ∫x(x²+y²) dA − 2 x_s about centroidal axes";
+    AxialStiffness "axial_stiffness" "EA" Stiffness ForceLength(0), "Axial stiffness, ∫E dA";
+    BendingStiffnessX "bending_stiffness_x" "EI_x" Stiffness ForceLength(2), "Bending stiffness about the centroidal x axis, ∫E y² dA";
+    BendingStiffnessY "bending_stiffness_y" "EI_y" Stiffness ForceLength(2), "Bending stiffness about the centroidal y axis, ∫E x² dA";
+    TorsionStiffness "torsion_stiffness" "GJ" Stiffness ForceLength(2), "Torsion stiffness, torque over rate of twist";
+    WarpingStiffness "warping_stiffness" "EC_w" Stiffness ForceLength(4), "Warping stiffness, ∫E ω² dA, ω about the shear centre with zero mean";
 }

@@ -149,7 +149,7 @@ pub(crate) fn weighted(weights: &[f64; COUNT], fields: &[[f64; 2]; COUNT]) -> Ve
 /// V through the shear centre: the flexure fields, with Poisson's part, less the torsion in them. T:
 /// the torsion field over J. T_w: minus the field of restrained warping over C_w.
 pub(crate) fn unit_weights(solved: &Solved) -> [[f64; COUNT]; 4] {
-    let factor = solved.poisson / (1.0 + solved.poisson);
+    let factor = solved.poisson_factor;
     let torsion = solved.shear.torsion.value;
     let length = solved.frame.scale;
     let flexure = unit_flexure(&solved.moments);

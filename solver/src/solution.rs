@@ -9,6 +9,7 @@ use crate::figure::Figure;
 use crate::geometry::Frame;
 use crate::level::Fields;
 use crate::material::Material;
+use crate::mixture::Ratio;
 use crate::property::area::AreaMoments;
 use crate::property::shear::ShearProperties;
 use crate::quantity::Quantity;
@@ -25,6 +26,8 @@ pub struct Settings {
     pub order: Option<usize>,
     /// The loop stops before a mesh whose larger system has more unknowns than this.
     pub max_unknowns: usize,
+    /// The material (index) whose moduli the properties refer to; `None`: the first piece's.
+    pub reference: Option<usize>,
 }
 
 /// One turn of the adaptive loop.
@@ -97,7 +100,10 @@ pub(crate) struct Solved {
     pub frame: Frame,
     /// In the solver's coordinates.
     pub moments: AreaMoments,
-    pub poisson: f64,
+    /// Factor on what Poisson's ratio adds to flexure, see [`Mixture::poisson_factor`].
+    pub poisson_factor: f64,
+    /// Moduli over the reference's, by piece.
+    pub ratios: Vec<Ratio>,
     pub shear: ShearProperties,
     /// `∫ω²` of the primal warping function about the shear centre; zero for a section whose
     /// warping cannot be told from none: it carries no bimoment.

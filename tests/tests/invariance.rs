@@ -127,6 +127,7 @@ fn solve_pieces(pieces: &[Piece], tolerance: f64) -> Solution {
         tolerance,
         order: None,
         max_unknowns: 400_000,
+        reference: None,
     };
     let solution = solve(&domain, &[material], 1.0, &settings, &mut |_| ()).unwrap();
     assert!(solution.reached);
@@ -192,7 +193,7 @@ impl Placement {
 fn power(q: Quantity) -> Option<i32> {
     match q.dimension() {
         Dimension::Length(n) => Some(n),
-        Dimension::MassPerLength | Dimension::Angle => None,
+        Dimension::MassPerLength | Dimension::Angle | Dimension::ForceLength(_) => None,
     }
 }
 

@@ -48,6 +48,7 @@ fn solved(text: &str) -> (ReadSection, Solution) {
         tolerance: 1e-3,
         order: None,
         max_unknowns: 100_000,
+        reference: None,
     };
     let metres = read.section.units.metres();
     let materials = &read.section.materials;

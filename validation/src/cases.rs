@@ -303,7 +303,7 @@ pub fn power(q: Quantity) -> i32 {
     use sectile_solver::quantity::Dimension;
     match q.dimension() {
         Dimension::Length(n) => n,
-        Dimension::MassPerLength | Dimension::Angle => 0,
+        Dimension::MassPerLength | Dimension::Angle | Dimension::ForceLength(_) => 0,
     }
 }
 

@@ -33,6 +33,7 @@ pub fn settings(tolerance: f64) -> Settings {
         tolerance,
         order: None,
         max_unknowns: MAX_UNKNOWNS,
+        reference: None,
     }
 }
 

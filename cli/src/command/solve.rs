@@ -19,7 +19,7 @@ use crate::read::{ReadSection, section_from_path, show};
 use crate::response::{Names, Responses};
 use crate::write::json::{Results, Run};
 use crate::write::slug::{cut_files, slugs};
-use crate::write::{actions, csv, files, table, vtu};
+use crate::write::{actions, csv, files, table, units, vtu};
 
 /// Options of `solve`.
 #[derive(Args, Clone, Debug)]
@@ -133,11 +133,12 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         tolerance: args.tolerance,
         order: args.order,
         max_unknowns: args.max_unknowns,
+        reference: None,
     };
     let mut progress = LevelProgress::new(!args.quiet && stderr().is_terminal());
     let solved = solve(
         &read.domain,
-        &read.section.materials,
+        &units::consistent_materials(&read.section),
         read.section.units.metres(),
         &settings,
         &mut |level: &Level| progress.show(level),

@@ -227,6 +227,7 @@ pub fn solved(domain: &Domain) -> Solution {
         tolerance: 1e-3,
         order: None,
         max_unknowns: 100_000,
+        reference: None,
     };
     solve(domain, &[material], 1e-3, &settings, &mut |_| {}).expect("a sound section")
 }

@@ -141,6 +141,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
     } else {
         table.force_no_tty();
     }
+    let sign = if look.width < 80 { "±" } else { "± " };
     let mut group: Option<Group> = None;
     for (quantity, trust, p) in &printed {
         if group != Some(quantity.group()) {
@@ -154,7 +155,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
         let half = p
             .half_width
             .as_deref()
-            .map(|h| format!("± {}", halves.align(h)))
+            .map(|h| format!("{sign}{}", halves.align(h)))
             .unwrap_or_default();
         let unit = units::pretty(quantity.dimension(), units);
         let unit = match times_power(p.power) {
@@ -180,7 +181,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
         let gap = if look.width < 90 { 1 } else { 2 };
         column.set_padding((0, if index == 5 { 0 } else { gap }));
         column.set_constraint(if index == 0 {
-            ColumnConstraint::LowerBoundary(Width::Fixed(18))
+            ColumnConstraint::LowerBoundary(Width::Fixed(16))
         } else {
             ColumnConstraint::ContentWidth
         });

@@ -1,9 +1,10 @@
 //! Units in print, and how large the declared ones are.
 
+use sectile_solver::material::Material;
 use sectile_solver::quantity::Dimension;
 
 use super::digits::superscript;
-use crate::section::Units;
+use crate::section::{Section, Units};
 
 /// The unit in results files, plain ASCII: `mm4`, `kg/m`, `deg`; empty for a pure number.
 #[must_use]
@@ -14,6 +15,9 @@ pub fn ascii(dimension: Dimension, units: &Units) -> String {
         Dimension::Length(n) => format!("{}{n}", units.length),
         Dimension::MassPerLength => "kg/m".into(),
         Dimension::Angle => "deg".into(),
+        Dimension::ForceLength(0) => units.force.into(),
+        Dimension::ForceLength(1) => format!("{} {}", units.force, units.length),
+        Dimension::ForceLength(n) => format!("{} {}{n}", units.force, units.length),
     }
 }
 
@@ -26,6 +30,9 @@ pub fn pretty(dimension: Dimension, units: &Units) -> String {
         Dimension::Length(n) => format!("{}{}", units.length, superscript(n)),
         Dimension::MassPerLength => "kg/m".into(),
         Dimension::Angle => "°".into(),
+        Dimension::ForceLength(0) => units.force.into(),
+        Dimension::ForceLength(1) => format!("{} {}", units.force, units.length),
+        Dimension::ForceLength(n) => format!("{} {}{}", units.force, units.length, superscript(n)),
     }
 }
 
@@ -86,6 +93,23 @@ pub fn stress_per_force(units: &Units) -> f64 {
 #[must_use]
 pub fn stress_per_moment(units: &Units) -> f64 {
     newton_metres(&units.moment) / (units.metres().powi(3) * pascals(units.stress))
+}
+
+/// The section's materials with their stresses in the file's force per its length²: the units in which
+/// forces and stiffnesses come out consistent.
+#[must_use]
+pub fn consistent_materials(section: &Section) -> Vec<Material> {
+    let stress = stress_per_force(&section.units);
+    section
+        .materials
+        .iter()
+        .map(|m| Material {
+            young: m.young / stress,
+            shear: m.shear / stress,
+            yield_stress: m.yield_stress.map(|y| y / stress),
+            ..m.clone()
+        })
+        .collect()
 }
 
 /// A moment of one unit of force times one unit of length, in the declared units of moment.

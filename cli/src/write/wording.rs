@@ -10,6 +10,7 @@ pub fn name(quantity: Quantity) -> &'static str {
     use Quantity as Q;
     match quantity {
         Q::Area => "Area",
+        Q::WeightedArea => "Area weighted by E",
         Q::Perimeter => "Outer edge, length",
         Q::HolePerimeter => "Hole edges, length",
         Q::MassPerLength => "Mass per length",
@@ -46,6 +47,11 @@ pub fn name(quantity: Quantity) -> &'static str {
         Q::PolarRadius => "Polar radius",
         Q::MonosymmetryX => "Monosymmetry, x",
         Q::MonosymmetryY => "Monosymmetry, y",
+        Q::AxialStiffness => "Axial stiffness",
+        Q::BendingStiffnessX => "Bending stiffness, x",
+        Q::BendingStiffnessY => "Bending stiffness, y",
+        Q::TorsionStiffness => "Torsion stiffness",
+        Q::WarpingStiffness => "Warping stiffness",
     }
 }
 
@@ -57,6 +63,7 @@ pub fn heading(group: Group) -> &'static str {
         Group::Bending => "Bending",
         Group::Torsion => "Torsion and warping",
         Group::Shear => "Shear",
+        Group::Stiffness => "Stiffness",
     }
 }
 

@@ -4,6 +4,7 @@ use sectile_mesh::Point;
 
 use super::*;
 use crate::figure::Figure;
+use crate::mixture::UNIT;
 use crate::property::shear::{Enclosures, ShearProperties};
 use crate::testing::{annulus, grid};
 
@@ -18,6 +19,7 @@ fn moments_of(mesh: &Mesh) -> (Frame, AreaMoments) {
             geometry: &geometry,
             space,
             tables: &tables,
+            ratios: &[UNIT],
         };
         let ones = vec![1.0; space.nodes()];
         let [a, x, y, _] = kernel.moments(&ones);
@@ -84,9 +86,19 @@ fn solved(mesh: &Mesh, order: usize, poisson: f64) -> (Enclosures, ShearProperti
         )
     };
     let tables = Tables::new(order);
-    let result = solve_level(mesh, &frame, &m, &tables, true, &mut Timings::default()).unwrap();
+    let result = solve_level(
+        mesh,
+        &frame,
+        &m,
+        &[UNIT],
+        &tables,
+        true,
+        &mut Timings::default(),
+    )
+    .unwrap();
     let enclosures = Enclosures::new(result.total);
-    let properties = enclosures.properties(&m, poisson, result.eigenvalue.unwrap());
+    let properties =
+        enclosures.properties(&m, poisson / (1.0 + poisson), result.eigenvalue.unwrap());
     (enclosures, properties, result)
 }
 

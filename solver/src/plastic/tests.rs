@@ -108,7 +108,7 @@ fn two_yields() -> Domain {
 }
 
 fn geometric(domain: &Domain) -> Plastic {
-    analyse(domain, &[None], 0, area_moments(domain).centroid).unwrap()
+    analyse(domain, &[None], 0, area_moments(domain, |_| 1.0).centroid).unwrap()
 }
 
 fn surface(domain: &Domain) -> Surface {
@@ -116,7 +116,7 @@ fn surface(domain: &Domain) -> Surface {
 }
 
 fn shape_factors(domain: &Domain) -> [f64; 2] {
-    let m = area_moments(domain);
+    let m = area_moments(domain, |_| 1.0);
     let [left, right, bottom, top] = m.extent;
     let [z_x, z_y] = geometric(domain).moduli();
     [
@@ -173,7 +173,7 @@ fn moduli_and_neutral_axes() {
         [-5.0, 140.0],
     ]);
     let plastic = geometric(&tee);
-    let centroid = area_moments(&tee).centroid;
+    let centroid = area_moments(&tee, |_| 1.0).centroid;
     assert_relative_eq!(
         centroid.y + plastic.axes[0].offset,
         140.0 + 20.0 / 120.0,
@@ -200,7 +200,7 @@ fn moduli_and_neutral_axes() {
         [-50.0, 10.0],
     ]);
     let plastic = geometric(&unequal);
-    let centroid = area_moments(&unequal).centroid;
+    let centroid = area_moments(&unequal, |_| 1.0).centroid;
     assert_relative_eq!(
         centroid.y + plastic.axes[0].offset,
         75.0,
@@ -214,7 +214,7 @@ fn moduli_and_neutral_axes() {
     let half = half_disc();
     let plastic = geometric(&half);
     let theta = super::root::zero(|t| t - t.sin() * t.cos() - FRAC_PI_4, 0.0, PI);
-    let centroid = area_moments(&half).centroid;
+    let centroid = area_moments(&half, |_| 1.0).centroid;
     assert_relative_eq!(
         centroid.x + plastic.axes[1].offset,
         theta.cos(),

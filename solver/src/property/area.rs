@@ -3,12 +3,13 @@
 use sectile_mesh::Point;
 use sectile_mesh::domain::Domain;
 
-use super::boundary::{EdgeSide, edge_sides};
+use super::boundary::{DirectedEdge, EdgeSide, directed_edges, weighted_sides};
 
-/// Area, centroid and moments about the centroid; lengths in the domain's unit.
+/// Area, centroid and moments about the centroid, each part of the area times the weight of its piece;
+/// lengths in the domain's unit.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct AreaMoments {
-    /// `∫ dA`.
+    /// `∫ dA`, weighted as all that follow.
     pub area: f64,
     /// Centroid in the domain's axes.
     pub centroid: Point,
@@ -29,20 +30,20 @@ pub struct AreaMoments {
     pub reach: f64,
 }
 
-/// The moments of a domain.
+/// The moments of a domain; `weight` of a piece.
 ///
 /// Positions are taken relative to the centroid before anything is squared, so a section drawn far
 /// from the origin loses no digits beyond those of its coordinates.
 #[must_use]
-pub fn area_moments(domain: &Domain) -> AreaMoments {
-    let sides = edge_sides(domain);
+pub fn area_moments(domain: &Domain, weight: impl Fn(u32) -> f64) -> AreaMoments {
+    let sides = weighted_sides(domain, weight);
     let mut extent = [
         f64::INFINITY,
         f64::NEG_INFINITY,
         f64::INFINITY,
         f64::NEG_INFINITY,
     ];
-    for e in sides.iter().map(EdgeSide::extent) {
+    for e in sides.iter().map(|(side, _)| side.extent()) {
         extent = [
             extent[0].min(e[0]),
             extent[1].max(e[1]),
@@ -86,60 +87,54 @@ pub fn area_moments(domain: &Domain) -> AreaMoments {
     }
 }
 
-/// `∮ g dy` over the edge, positions relative to `origin`.
+/// The area of each piece.
+#[must_use]
+pub fn piece_areas(domain: &Domain) -> Vec<f64> {
+    let origin = domain.points.first().copied().unwrap_or_default();
+    (0..domain.piece_names.len() as u32)
+        .map(|piece| {
+            let own = weighted_sides(domain, |p| f64::from(u8::from(p == piece)));
+            total(&own, origin, |p| [p.x])[0]
+        })
+        .collect()
+}
+
+/// `∮ g dy` over the edge, positions relative to `origin`, each side times its number.
 fn total<const N: usize>(
-    sides: &[EdgeSide],
+    sides: &[(EdgeSide, f64)],
     origin: Point,
     g: impl Fn(Point) -> [f64; N],
 ) -> [f64; N] {
     let mut sum = [0.0; N];
-    for side in sides {
+    for (side, weight) in sides {
         let part = side.relative_to(origin).integrate_dy(&g);
         for (s, p) in sum.iter_mut().zip(part) {
-            *s += p;
+            *s += weight * p;
         }
     }
     sum
 }
 
-/// Length of the outer edges and of the holes' edges: a closed run of sides is a hole's when it
-/// encloses a negative area (material to the left).
+/// Length of the outer edges and of the holes' edges, without surfaces that lie against each other: a
+/// closed run of free sides is a hole's when it encloses no positive area (material to the left).
 #[must_use]
 pub fn perimeters(domain: &Domain) -> [f64; 2] {
-    let sides = edge_sides(domain);
-    let same = |a: Point, b: Point| a == b;
-    let mut used = vec![false; sides.len()];
-    // Start points in sorted order, to find the side that follows.
-    let key = |p: Point| (p.x, p.y);
-    let mut by_start: Vec<usize> = (0..sides.len()).collect();
-    by_start.sort_by(|&i, &j| {
-        let (a, b) = (key(sides[i].from), key(sides[j].from));
-        a.0.total_cmp(&b.0).then(a.1.total_cmp(&b.1))
-    });
-    let following = |p: Point| {
-        let k = by_start.partition_point(|&i| {
-            let a = key(sides[i].from);
-            a.0.total_cmp(&p.x).then(a.1.total_cmp(&p.y)).is_lt()
-        });
-        by_start.get(k).copied().filter(|&i| same(sides[i].from, p))
-    };
+    // Every point has at most one gap, so at most one free side leaves it with material to its left.
+    let mut leaving: Vec<Option<DirectedEdge>> = vec![None; domain.points.len()];
+    for edge in directed_edges(domain) {
+        leaving[edge.from as usize] = Some(edge);
+    }
     let mut out = [0.0; 2];
-    for first in 0..sides.len() {
-        if used[first] {
-            continue;
-        }
+    for first in 0..leaving.len() {
+        let start = domain.points[first];
         let (mut length, mut area) = (0.0, 0.0);
-        let mut at = Some(first);
-        while let Some(i) = at {
-            if used[i] {
-                break;
+        let mut at = first;
+        while let Some(edge) = leaving[at].take() {
+            if !edge.faying {
+                length += edge.side.length();
             }
-            used[i] = true;
-            length += sides[i].length();
-            area += sides[i]
-                .relative_to(sides[first].from)
-                .integrate_dy(|p| [p.x])[0];
-            at = following(sides[i].to);
+            area += edge.side.relative_to(start).integrate_dy(|p| [p.x])[0];
+            at = edge.to as usize;
         }
         out[usize::from(area < 0.0)] += length;
     }

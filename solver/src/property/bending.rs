@@ -2,33 +2,64 @@
 
 use sectile_mesh::domain::Domain;
 
-use super::area::{AreaMoments, perimeters};
+use super::area::{AreaMoments, perimeters, piece_areas};
 use crate::figure::Figure;
 use crate::material::Material;
+use crate::mixture::Mixture;
 use crate::quantity::Quantity;
 
-/// The exact properties, in the domain's unit of length; `metres` in that unit are needed for the
-/// mass alone.
+/// The exact properties, in the domain's unit of length, from moments weighted by E over the
+/// reference's; `metres` in that unit are needed for the mass alone.
 #[must_use]
 pub fn exact_properties(
     domain: &Domain,
     moments: &AreaMoments,
-    material: &Material,
+    mixture: &Mixture,
+    materials: &[Material],
     metres: f64,
 ) -> Vec<(Quantity, Figure)> {
     let m = moments;
     let (a, c) = (m.area, m.centroid);
     let polar = m.xx + m.yy;
     let [outer, holes] = perimeters(domain);
-    let mut out = vec![
-        (Quantity::Area, Figure::exact(a, a)),
-        (Quantity::Perimeter, Figure::exact(outer, outer)),
-    ];
+    let areas = piece_areas(domain);
+    let area = if mixture.uniform {
+        a
+    } else {
+        areas.iter().sum()
+    };
+    let mut out = vec![(Quantity::Area, Figure::exact(area, area))];
+    if mixture.several {
+        let young = materials[mixture.reference].young;
+        out.extend([
+            (Quantity::WeightedArea, Figure::exact(a, a)),
+            (
+                Quantity::AxialStiffness,
+                Figure::exact(young * a, young * a),
+            ),
+            (
+                Quantity::BendingStiffnessX,
+                Figure::exact(young * m.xx, young * polar),
+            ),
+            (
+                Quantity::BendingStiffnessY,
+                Figure::exact(young * m.yy, young * polar),
+            ),
+        ]);
+    }
+    out.push((Quantity::Perimeter, Figure::exact(outer, outer)));
     if holes > 0.0 {
         out.push((Quantity::HolePerimeter, Figure::exact(holes, holes)));
     }
-    if let Some(density) = material.density {
-        let mass = density * a * metres * metres;
+    let density = |piece: usize| materials[domain.piece_materials[piece]].density;
+    let mass_of = |(piece, area): (usize, &f64)| Some(density(piece)? * area);
+    let mass = if mixture.several {
+        areas.iter().enumerate().map(mass_of).sum()
+    } else {
+        mass_of((0, &area))
+    };
+    if let Some(mass) = mass {
+        let mass: f64 = mass * metres * metres;
         out.push((Quantity::MassPerLength, Figure::exact(mass, mass)));
     }
     out.push((Quantity::CentroidX, Figure::exact(c.x, m.reach)));

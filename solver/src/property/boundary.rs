@@ -3,7 +3,7 @@
 use std::f64::consts::{PI, TAU};
 use std::sync::OnceLock;
 
-use sectile_mesh::domain::Domain;
+use sectile_mesh::domain::{Domain, DomainSide};
 use sectile_mesh::outline::side::Arc;
 use sectile_mesh::{Point, Vector};
 
@@ -142,50 +142,70 @@ fn rule(cell: &'static OnceLock<Vec<(f64, f64)>>, points: usize) -> &'static [(f
     cell.get_or_init(|| gauss_legendre(points))
 }
 
-/// The free sides of a domain, material to the left; interfaces are left out.
+/// A free side with the domain's points that it runs between.
+#[derive(Clone, Copy, Debug)]
+pub struct DirectedEdge {
+    /// The side, material to its left.
+    pub side: EdgeSide,
+    /// Index of its first point.
+    pub from: u32,
+    /// Index of its last point.
+    pub to: u32,
+    /// Whether it lies against another piece to which it is not joined.
+    pub faying: bool,
+}
+
+/// The free sides of a domain with the points that they run between; interfaces are left out.
+pub fn directed_edges(domain: &Domain) -> impl Iterator<Item = DirectedEdge> {
+    domain.sides.iter().filter_map(|s| {
+        let (side, from, to) = match (s.left, s.right) {
+            (Some(_), None) => (along(domain, s), s.from, s.to),
+            (None, Some(_)) => (against(domain, s), s.to, s.from),
+            _ => return None,
+        };
+        Some(DirectedEdge {
+            side,
+            from,
+            to,
+            faying: s.faying,
+        })
+    })
+}
+
+/// The sides across which a quantity that is constant on each piece jumps, with the jump: integrals
+/// over the weighted area are those along these sides, each times its number.
 #[must_use]
-pub fn edge_sides(domain: &Domain) -> Vec<EdgeSide> {
+pub fn weighted_sides(domain: &Domain, weight: impl Fn(u32) -> f64) -> Vec<(EdgeSide, f64)> {
     domain
         .sides
         .iter()
         .filter_map(|s| {
-            let (a, b) = (domain.points[s.from as usize], domain.points[s.to as usize]);
-            match (s.left, s.right) {
-                (Some(_), None) => Some(EdgeSide {
-                    from: a,
-                    to: b,
-                    arc: s.arc,
-                }),
-                (None, Some(_)) => Some(EdgeSide {
-                    from: b,
-                    to: a,
-                    arc: s.arc.map(|mut arc| {
-                        arc.sweep = -arc.sweep;
-                        arc
-                    }),
-                }),
-                _ => None,
-            }
+            let (side, jump) = match (s.left, s.right) {
+                (Some(l), None) => (along(domain, s), weight(l)),
+                (None, Some(r)) => (against(domain, s), weight(r)),
+                (Some(l), Some(r)) => (along(domain, s), weight(l) - weight(r)),
+                (None, None) => return None,
+            };
+            (jump != 0.0).then_some((side, jump))
         })
         .collect()
 }
 
-/// Every side across which a weight of the pieces jumps, with that jump `w_left − w_right` (no material
-/// weighs nothing): `Σ jump ∫ g dy` over them is `Σ_pieces w ∮ g dy` around each piece.
-#[must_use]
-pub fn weighted_sides(domain: &Domain, weight: impl Fn(u32) -> f64) -> Vec<(EdgeSide, f64)> {
-    let of = |hand: Option<u32>| hand.map_or(0.0, &weight);
-    domain
-        .sides
-        .iter()
-        .map(|s| {
-            let side = EdgeSide {
-                from: domain.points[s.from as usize],
-                to: domain.points[s.to as usize],
-                arc: s.arc,
-            };
-            (side, of(s.left) - of(s.right))
-        })
-        .filter(|(_, jump)| *jump != 0.0)
-        .collect()
+fn along(domain: &Domain, s: &DomainSide) -> EdgeSide {
+    EdgeSide {
+        from: domain.points[s.from as usize],
+        to: domain.points[s.to as usize],
+        arc: s.arc,
+    }
+}
+
+fn against(domain: &Domain, s: &DomainSide) -> EdgeSide {
+    EdgeSide {
+        from: domain.points[s.to as usize],
+        to: domain.points[s.from as usize],
+        arc: s.arc.map(|mut arc| {
+            arc.sweep = -arc.sweep;
+            arc
+        }),
+    }
 }

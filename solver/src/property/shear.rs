@@ -145,7 +145,8 @@ impl Enclosures {
         Figure::around(value, 0.5 * root + missed + ROUNDING * size, Trust::Bounded)
     }
 
-    /// The properties, for area moments `m` in the solver's coordinates.
+    /// The properties, for weighted area moments `m` in the solver's coordinates; `factor`: on what
+    /// Poisson's ratio adds, ν/(1+ν) in one material.
     ///
     /// The warping constant needs more care. With `F = ω_h` less its mean and its linear part and
     /// `e = ω_h − ω`, `C_w = 2∫Fω − ∫F² + |e|²` (`|e|` less its mean and linear part): the first term
@@ -153,8 +154,7 @@ impl Enclosures {
     /// section's free membrane. `eigenvalue` is an estimate of μ on the safe side, not a bound: hence
     /// `estimated`, though the lower end is guaranteed.
     #[must_use]
-    pub fn properties(&self, m: &AreaMoments, poisson: f64, eigenvalue: f64) -> ShearProperties {
-        let factor = poisson / (1.0 + poisson);
+    pub fn properties(&self, m: &AreaMoments, factor: f64, eigenvalue: f64) -> ShearProperties {
         let polar = (m.xx + m.yy) / m.area;
         let torsion = self.quadratic([1.0, 0.0], [TORSION, POISSON_X], 1.0);
         let unit = unit_flexure(m);
@@ -207,11 +207,11 @@ impl Enclosures {
     pub fn gap_weights(
         &self,
         m: &AreaMoments,
-        poisson: f64,
+        factor: f64,
         eigenvalue: f64,
         areas: [f64; 2],
     ) -> [[f64; COUNT]; 8] {
-        let factor = (poisson / (1.0 + poisson)).abs();
+        let factor = factor.abs();
         let unit = unit_flexure(m);
         let mut out = [[0.0; COUNT]; 8];
         out[0][TORSION] = 0.5;

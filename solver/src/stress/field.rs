@@ -1,6 +1,7 @@
 //! Unit fields at the lattice points of every triangle, and their superposition.
 //!
-//! Normal stress: `σ = N/A + f_x x + f_y y + B ω/∫ω²` with `(f_x, f_y)` from the full inertia tensor.
+//! Normal stress: `σ = e (N/A + f_x x + f_y y + B ω/∫eω²)` with `(f_x, f_y)` from the full inertia
+//! tensor, area and inertia weighted by `e = E/E₀` of each piece.
 //! Shear stress: the mean of primal and dual field for V_x, V_y, T and T_w. The four unit fields are
 //! combined so that each integrates back to exactly its own force and to none of the others: on
 //! curved triangles the primal fields alone miss that by the error of x in the space.
@@ -21,9 +22,9 @@ use crate::solution::{Solution, Solved};
 pub struct Superposition {
     /// Weights of the problems in the shear stress of unit V_x, V_y, T, T_w.
     weights: [[f64; COUNT]; 4],
-    /// `∫ τ·τ` of the mean unit fields, in the solver's coordinates times length².
+    /// `∫ τ·τ / g` of the mean unit fields, in the solver's coordinates times length².
     energy: [[f64; 4]; 4],
-    /// `∫ (τ_p − τ*)·(τ_p − τ*)` of the unit fields.
+    /// `∫ (τ_p − τ*)·(τ_p − τ*) / g` of the unit fields.
     gap: [[f64; 4]; 4],
     /// Bound on what projections leave out, by unit field.
     oscillation: [f64; 4],
@@ -285,6 +286,7 @@ impl Superposition {
 fn unit_sigma(solved: &Solved, at: &PointFields) -> [f64; 4] {
     let m = &solved.moments;
     let length = solved.frame.scale;
+    let e = at.ratio.e;
     let [about_y, about_x] = unit_flexure(m).map(|f| f[0] * at.x + f[1] * at.y);
     let warping = if solved.warping_square > 0.0 {
         at.omega / solved.warping_square
@@ -292,10 +294,10 @@ fn unit_sigma(solved: &Solved, at: &PointFields) -> [f64; 4] {
         0.0
     };
     [
-        1.0 / m.area / length.powi(2),
-        about_x / length.powi(3),
-        about_y / length.powi(3),
-        warping / length.powi(4),
+        e / m.area / length.powi(2),
+        e * about_x / length.powi(3),
+        e * about_y / length.powi(3),
+        e * warping / length.powi(4),
     ]
 }
 
@@ -325,8 +327,8 @@ impl Integrals {
             self.resultants[3][j] += w * warping;
             for i in 0..4 {
                 let other = (primal[i] + dual[i]) * 0.5;
-                self.energy[i][j] += w * mean.dot(other);
-                self.gap[i][j] += w * gap.dot(primal[i] - dual[i]);
+                self.energy[i][j] += w / at.ratio.g * mean.dot(other);
+                self.gap[i][j] += w / at.ratio.g * gap.dot(primal[i] - dual[i]);
             }
         }
     }

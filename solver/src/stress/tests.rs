@@ -51,6 +51,7 @@ fn solved(outline: Outline, poisson: f64, tolerance: f64) -> (Domain, Solution) 
         tolerance,
         order: None,
         max_unknowns: 500_000,
+        reference: None,
     };
     let solution = solve(&domain, &[material], 1e-3, &settings, &mut |_| {}).unwrap();
     (domain, solution)
