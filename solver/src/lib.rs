@@ -20,6 +20,7 @@ mod problem;
 mod property;
 pub mod quantity;
 pub mod sample;
+pub mod seam;
 pub mod solution;
 mod space;
 pub mod stress;

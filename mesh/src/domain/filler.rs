@@ -118,13 +118,22 @@ impl<'a> Fillers<'a> {
     }
 
     /// The fault of pieces that hang by nothing, by their numbers.
-    pub fn hanging(&self, pieces: &[usize]) -> Fault {
-        Fault::PiecesHanging {
-            pieces: pieces
-                .iter()
-                .copied()
-                .filter(|&p| p < self.before)
-                .collect(),
+    pub fn hanging(&self, hanging: &[usize]) -> Fault {
+        let pieces: Vec<usize> = hanging
+            .iter()
+            .copied()
+            .filter(|&p| p < self.before)
+            .collect();
+        // Metal alone does not touch the pieces along its legs.
+        match hanging.first().filter(|_| pieces.is_empty()) {
+            Some(&metal) => Fault::Seam {
+                seam: self.request_of(metal).unwrap_or(0),
+                fault: SeamFault::Misfit {
+                    at: self.pieces[metal - self.before].outline.outer.sides[0].to,
+                    cause: Misfit::InTheWay,
+                },
+            },
+            None => Fault::PiecesHanging { pieces },
         }
     }
 }

@@ -24,8 +24,14 @@ pub struct Metal {
     pub on: [u32; 2],
     /// Their outlines.
     pub halves: [Outline; 2],
+    /// Its legs on the first and second piece that it joins.
+    pub legs: [f64; 2],
+    /// How far the pieces are apart.
+    pub gap: f64,
     /// Where the throat starts.
     pub root: Point,
+    /// What the throat would be if it started where the lines of the faces meet.
+    pub full_throat: f64,
 }
 
 /// Lays a fillet with the given legs, on the first and second piece `between`, into a corner.
@@ -104,6 +110,9 @@ pub fn lay(
     Ok(Metal {
         on: [first.piece, second.piece],
         halves: [half(first, toes[0]), half(second, toes[1])],
+        legs,
+        gap: corner.gap,
         root,
+        full_throat: (toes[0] - first.start).cross(line).abs() / line.length(),
     })
 }

@@ -58,6 +58,8 @@ pub struct Seam {
     pub throat: Vec<u32>,
     /// Length of the throat on the true line.
     pub throat_length: f64,
+    /// What the throat would be without fit-up: the same but for a fillet with a gap.
+    pub full_throat: f64,
     /// Legs of a fillet on the first and the second piece.
     pub legs: Option<[f64; 2]>,
     /// The fit-up found at a fillet's corner.

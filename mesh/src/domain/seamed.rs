@@ -24,22 +24,21 @@ struct Placed {
 }
 
 enum Work {
-    /// Weld metal, and the fit-up found.
-    Fillet(Metal, f64),
+    Fillet(Metal),
     Groove(Groove),
 }
 
 impl Placed {
     fn metal(&self) -> Option<&Metal> {
         match &self.work {
-            Work::Fillet(metal, _) => Some(metal),
+            Work::Fillet(metal) => Some(metal),
             Work::Groove(_) => None,
         }
     }
 
     fn at(&self) -> Point {
         match &self.work {
-            Work::Fillet(metal, _) => metal.root,
+            Work::Fillet(metal) => metal.root,
             Work::Groove(groove) => groove.at,
         }
     }
@@ -66,7 +65,7 @@ pub fn join_by_seams(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domai
         .iter()
         .filter_map(|seam| match &seam.work {
             Work::Groove(groove) => groove.stop,
-            Work::Fillet(..) => None,
+            Work::Fillet(_) => None,
         })
         .collect();
     let fused = fuse(&all, &stops).map_err(|faults| fillers.tell(&faults))?;
@@ -81,19 +80,17 @@ pub fn join_by_seams(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domai
     let Unfused { mut domain, ends } = unfuse(&fused.domain, &joined);
     domain.parts = 1;
     for (k, seam) in placed.iter().enumerate() {
-        let request = &requests[seam.request];
-        let between = request.between.map(|p| p as u32);
-        let (hands, gap, legs, start) = match (&seam.work, request.kind) {
-            (Work::Fillet(laid, gap), SeamKind::Fillet { legs }) => {
+        let between = requests[seam.request].between.map(|p| p as u32);
+        let (hands, start) = match &seam.work {
+            Work::Fillet(laid) => {
                 let [a, b] = fillers.halves[k].unwrap_or_default();
                 let hands = if laid.on == between { [a, b] } else { [b, a] };
-                (hands, *gap, Some(legs), laid.root)
+                (hands, laid.root)
             }
-            (Work::Groove(groove), _) => {
+            Work::Groove(groove) => {
                 let inner = groove.stretch.last().map_or(groove.outer, |s| s.to);
-                (between, 0.0, None, inner)
+                (between, inner)
             }
-            (Work::Fillet(laid, gap), SeamKind::Groove { .. }) => (between, *gap, None, laid.root),
         };
         let chains = runs(&fused.domain, |s, side| {
             owners[s] == Some(k) && parts(side, hands)
@@ -109,6 +106,7 @@ pub fn join_by_seams(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domai
         } else {
             chain.clone()
         };
+        let length = chain.length(&fused.domain);
         let mut throat: Vec<u32> = Vec::new();
         for &(s, forward) in &chain.sides {
             let [from, to] = ends[s];
@@ -125,9 +123,10 @@ pub fn join_by_seams(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domai
             hands,
             metal: fillers.halves[k].map_or(Vec::new(), |halves| halves.to_vec()),
             throat,
-            throat_length: chain.length(&fused.domain),
-            legs,
-            gap,
+            throat_length: length,
+            full_throat: seam.metal().map_or(length, |metal| metal.full_throat),
+            legs: seam.metal().map(|metal| metal.legs),
+            gap: seam.metal().map_or(0.0, |metal| metal.gap),
             at: seam.at(),
         });
     }
@@ -180,7 +179,7 @@ fn fillets(
     let mut faults = Vec::new();
     for corner in &corners {
         match lay(between, legs, corner, tolerance) {
-            Ok(metal) => works.push(Work::Fillet(metal, corner.gap)),
+            Ok(metal) => works.push(Work::Fillet(metal)),
             Err(found) => {
                 for fault in found {
                     if !faults.iter().any(|f| repeats(f, &fault)) {
@@ -278,7 +277,7 @@ fn owners(
         let between = requests[seam.request].between.map(|p| p as u32);
         for (s, side) in domain.sides.iter().enumerate() {
             let joins = match (&seam.work, fillers.halves[k]) {
-                (Work::Fillet(laid, _), Some([a, b])) => {
+                (Work::Fillet(laid), Some([a, b])) => {
                     parts(side, [a, b])
                         || parts(side, [a, laid.on[0]])
                         || parts(side, [b, laid.on[1]])

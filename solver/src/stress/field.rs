@@ -258,6 +258,14 @@ impl Superposition {
         vx * f.vx + vy * f.vy + t * f.t + tw * f.tw
     }
 
+    /// Sums over the problems, one number each, for unit V_x, V_y, T, T_w: what the numbers measure in
+    /// the solver's coordinates, over length² (forces) or length³ (torques).
+    #[must_use]
+    pub(crate) fn combined(&self, by_problem: &[f64; COUNT]) -> [f64; 4] {
+        self.weights
+            .map(|w| w.iter().zip(by_problem).map(|(w, x)| w * x).sum())
+    }
+
     fn energy_error(&self, f: &SectionForces) -> f64 {
         let v = [f.vx, f.vy, f.t, f.tw];
         let form = |m: &[[f64; 4]; 4]| {
