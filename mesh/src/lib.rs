@@ -8,6 +8,7 @@ pub mod bisect;
 pub mod corners;
 pub mod domain;
 pub mod grade;
+pub mod junction;
 pub mod map;
 pub mod mesh;
 pub mod outline;

@@ -5,12 +5,12 @@ use std::time::Instant;
 
 use sectile_mesh::Point;
 use sectile_mesh::bisect::bisect;
-use sectile_mesh::corners::{ReentrantCorner, reentrant_corners};
 use sectile_mesh::domain::Domain;
 use sectile_mesh::grade::grade_to;
 use sectile_mesh::mesh::Mesh;
 use sectile_mesh::triangulate::{Sizing, triangulate};
 
+use crate::corner::{SingularCorner, singular_corners};
 use crate::figure::Figure;
 use crate::geometry::Frame;
 use crate::level::{LevelResult, solve_level, unknowns};
@@ -71,7 +71,7 @@ pub(crate) fn solve(
     clock.bounds += start.elapsed().as_secs_f64();
 
     let start = Instant::now();
-    let corners = reentrant_corners(domain);
+    let corners = singular_corners(domain, &mixture.ratios);
     let mut mesh =
         triangulate(domain, &Sizing::default()).map_err(|e| SolveError::Mesh(e.to_string()))?;
     clock.mesh += start.elapsed().as_secs_f64();
@@ -260,22 +260,42 @@ fn mixture_notes(
     }]
 }
 
-fn corner_note(corner: &ReentrantCorner) -> Note {
+fn corner_note(corner: &SingularCorner) -> Note {
+    const LEFT_OUT: &str = "the calculated shear stress grows there without limit, so points close to \
+         it (a tenth of the wall, unless another share is asked for) are left out of the extremes.";
+    let degrees = corner.interior_angle.to_degrees();
+    let (kind, text) = if corner.mixed {
+        (
+            "material-corner",
+            format!("Pieces of different stiffness meet at an angle: {LEFT_OUT}"),
+        )
+    } else if degrees > 359.5 {
+        (
+            "slit-end",
+            format!(
+                "End of a slit between pieces, the root of a seam: {LEFT_OUT} Fatigue and fracture \
+                 there are not judged."
+            ),
+        )
+    } else {
+        (
+            "sharp-corner",
+            format!(
+                "Sharp re-entrant corner of {degrees:.0}°: {LEFT_OUT} Give the corner its real radius \
+                 with `round` to obtain the stress in it.",
+            ),
+        )
+    };
     Note {
-        kind: "sharp-corner",
-        text: format!(
-            "Sharp re-entrant corner of {:.0}°: the calculated shear stress grows there without limit, \
-             so points close to it (a tenth of the wall, unless another share is asked for) are left out \
-             of the extremes. Give the corner its real radius with `round` to obtain the stress in it.",
-            corner.interior_angle.to_degrees(),
-        ),
+        kind,
+        text,
         at: Some(corner.at),
     }
 }
 
 /// Distance from a sharp re-entrant corner within which stresses are not quoted: a tenth of the wall.
 #[must_use]
-pub fn exclusion_radius(corner: &ReentrantCorner) -> f64 {
+pub fn exclusion_radius(corner: &SingularCorner) -> f64 {
     0.1 * corner.wall
 }
 
@@ -329,15 +349,13 @@ fn scaled_moments(m: &AreaMoments, frame: &Frame) -> AreaMoments {
     }
 }
 
-/// The first mesh is graded to the re-entrant corners, whose singularity is known: near an interior
-/// angle α the stress grows like `r^(π/α − 1)`, so the energy within r is like `r^(2π/α)`, and what
-/// the smallest triangles hold must be below the tolerance.
-fn grade(mesh: &Mesh, corners: &[ReentrantCorner], tolerance: f64) -> Mesh {
+/// The first mesh is graded to the singular corners, whose exponent λ is known: the energy within r
+/// is like `r^(2λ)`, and what the smallest triangles hold must be below the tolerance.
+fn grade(mesh: &Mesh, corners: &[SingularCorner], tolerance: f64) -> Mesh {
     let targets: Vec<(u32, f64)> = corners
         .iter()
         .map(|c| {
-            let exponent = std::f64::consts::PI / c.interior_angle;
-            let ratio = (10.0 * tolerance).powf(0.5 / exponent).clamp(1e-6, 0.5);
+            let ratio = (10.0 * tolerance).powf(0.5 / c.exponent).clamp(1e-6, 0.5);
             (c.point, c.wall * ratio)
         })
         .collect();

@@ -5,6 +5,7 @@
 //! [`sectile_mesh::domain::Domain`] with materials and gives a [`solution::Solution`].
 
 mod adapt;
+pub mod corner;
 mod element;
 mod evaluate;
 mod factor;

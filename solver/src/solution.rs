@@ -1,10 +1,10 @@
 //! The solved section.
 
 use sectile_mesh::Point;
-use sectile_mesh::corners::ReentrantCorner;
 use sectile_mesh::domain::Domain;
 use sectile_mesh::mesh::Mesh;
 
+use crate::corner::SingularCorner;
 use crate::figure::Figure;
 use crate::geometry::Frame;
 use crate::level::Fields;
@@ -84,8 +84,8 @@ pub struct Solution {
     pub reached: bool,
     /// The properties in the order of [`Quantity::ALL`]; those that do not apply are absent.
     pub properties: Vec<(Quantity, Figure)>,
-    /// The sharp re-entrant corners, where the calculated stress has no limit.
-    pub corners: Vec<ReentrantCorner>,
+    /// The points at which the calculated stress has no limit.
+    pub corners: Vec<SingularCorner>,
     /// Findings.
     pub notes: Vec<Note>,
     /// Seconds by stage.
