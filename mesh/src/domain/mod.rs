@@ -5,25 +5,16 @@ mod arrange;
 mod contact;
 mod cut;
 mod edge;
-mod face;
 pub(crate) mod fan;
 pub mod fault;
-mod faying;
-mod filler;
-mod fillet;
-mod fit_up;
-mod groove;
 mod hole;
-mod inside_corner;
 mod meeting;
 mod overlap;
 mod pinch;
 pub mod seam;
-mod seamed;
 mod side;
 mod sound;
 mod stack;
-mod unfuse;
 mod within;
 
 use crate::outline::piece::Piece;
@@ -96,5 +87,5 @@ pub fn build(pieces: &[Piece]) -> Result<Domain, Vec<Fault>> {
 /// # Errors
 /// Every fault found in the pieces; else in the places of the seams; else in what the seams make of them.
 pub fn build_seamed(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domain, Vec<Fault>> {
-    seamed::join_by_seams(pieces, requests)
+    seam::seamed::join_by_seams(pieces, requests)
 }

@@ -1,11 +1,11 @@
 //! Grooves: faying lines fused over some length.
 
-use super::Domain;
-use super::fault::{Misfit, SeamFault};
 use super::faying::{Run, faying_lines};
 use super::fit_up::apart;
 use super::inside_corner::line_meant;
-use super::seam::SeamRequest;
+use super::request::SeamRequest;
+use crate::domain::Domain;
+use crate::domain::fault::{Misfit, SeamFault};
 use crate::outline::side::Side;
 use crate::point::Point;
 

@@ -2,7 +2,7 @@
 
 use std::collections::BTreeMap;
 
-use super::{Domain, DomainSide};
+use crate::domain::{Domain, DomainSide};
 
 /// A domain with slits.
 pub struct Unfused {

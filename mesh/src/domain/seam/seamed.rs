@@ -1,18 +1,18 @@
 //! Pieces joined by seams and by nothing else.
 
-use super::arrange::{Fused, fuse};
-use super::edge::{distance, middle};
-use super::fan::{Leaving, fans};
-use super::fault::{Fault, Misfit, Obstacle, SeamFault};
 use super::faying::runs;
 use super::filler::Fillers;
 use super::fillet::{Metal, lay};
 use super::groove::{Groove, grooves_meant};
 use super::inside_corner::corners_meant;
-use super::pinch::leaders;
-use super::seam::{Seam, SeamKind, SeamRequest};
+use super::request::{Seam, SeamKind, SeamRequest};
 use super::unfuse::{Unfused, unfuse};
-use super::{Domain, DomainSide};
+use crate::domain::arrange::{Fused, fuse};
+use crate::domain::edge::{distance, middle};
+use crate::domain::fan::{Leaving, fans};
+use crate::domain::fault::{Fault, Misfit, Obstacle, SeamFault};
+use crate::domain::pinch::leaders;
+use crate::domain::{Domain, DomainSide};
 use crate::outline::piece::Piece;
 use crate::point::Point;
 
@@ -44,7 +44,7 @@ impl Placed {
     }
 }
 
-/// See [`super::build_seamed`].
+/// See [`crate::domain::build_seamed`].
 pub fn join_by_seams(pieces: &[Piece], requests: &[SeamRequest]) -> Result<Domain, Vec<Fault>> {
     let touching = fuse(pieces, &[])?;
     let placed = place(&touching, requests, pieces.len())?;

@@ -1,12 +1,12 @@
 //! Inside corners between two pieces: where a fillet may lie, and which one is meant.
 
-use super::Domain;
 use super::face::Face;
-use super::fan::{Leaving, between};
-use super::fault::SeamFault;
 use super::faying::{Run, faying_lines};
 use super::fit_up::{apart, corners_apart};
-use super::seam::SeamRequest;
+use super::request::SeamRequest;
+use crate::domain::Domain;
+use crate::domain::fan::{Leaving, between};
+use crate::domain::fault::SeamFault;
 use crate::point::Point;
 
 /// Free angles between two faces that a fillet is laid in, radians. Common practice speaks of 60° to

@@ -1,11 +1,11 @@
 //! Corners between pieces that a declared fit-up keeps apart.
 
-use super::Domain;
-use super::contact::carriers_meet;
-use super::edge::{distance, foot};
 use super::face::Face;
-use super::fan::Leaving;
 use super::inside_corner::{ANGLES, InsideCorner};
+use crate::domain::Domain;
+use crate::domain::contact::carriers_meet;
+use crate::domain::edge::{distance, foot};
+use crate::domain::fan::Leaving;
 use crate::outline::side::Side;
 use crate::point::{Point, Vector};
 

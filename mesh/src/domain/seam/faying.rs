@@ -2,8 +2,8 @@
 
 use std::collections::BTreeMap;
 
-use super::edge::reversed;
-use super::{Domain, DomainSide};
+use crate::domain::edge::reversed;
+use crate::domain::{Domain, DomainSide};
 use crate::outline::side::Side;
 use crate::point::Point;
 

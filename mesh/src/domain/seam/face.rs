@@ -1,7 +1,7 @@
 //! The side of a piece that a leg of a fillet runs along.
 
-use super::Domain;
-use super::fan::Leaving;
+use crate::domain::Domain;
+use crate::domain::fan::Leaving;
 use crate::outline::side::{Arc, Circle, Side};
 use crate::point::{Point, Vector};
 

@@ -1,8 +1,8 @@
 //! Weld metal as pieces of the domain, and what is wrong with where it lies.
 
-use super::fault::{Fault, Misfit, Obstacle, SeamFault};
 use super::fillet::Metal;
-use super::seam::SeamRequest;
+use super::request::SeamRequest;
+use crate::domain::fault::{Fault, Misfit, Obstacle, SeamFault};
 use crate::outline::piece::Piece;
 
 /// A seam for the fillers: its request, its name and its weld metal.

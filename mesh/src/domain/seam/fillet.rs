@@ -7,8 +7,8 @@
 //! the corner that is off the other face: the leg grows by the gap, as is common practice.
 
 use super::face::Face;
-use super::fault::{Misfit, SeamFault};
 use super::inside_corner::InsideCorner;
+use crate::domain::fault::{Misfit, SeamFault};
 use crate::outline::piece::{Outline, Ring};
 use crate::outline::side::Side;
 use crate::point::Point;
