@@ -2,12 +2,16 @@
 //! figures are made of. Consistent units: the file's force F and length L, stresses F/L².
 
 use sectile_mesh::Point;
+use sectile_mesh::domain::seam::Seam;
+use sectile_solver::seam::demand::Demand;
 use sectile_solver::stress::cut::CutResult;
 use sectile_solver::stress::extreme::{Extreme, Extremes};
 use sectile_solver::stress::field::UnitFields;
 use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::probe::ProbeStress;
+
+use crate::section::{Cut, Probe, SeamInput};
 
 /// The answer to one action or combination.
 #[derive(Clone, Debug, PartialEq)]
@@ -34,6 +38,8 @@ pub struct Response {
     pub probes: Vec<(usize, Vec<ProbeStress>)>,
     /// By index of the cut.
     pub cuts: Vec<(usize, CutResult)>,
+    /// In the order of the domain's seams.
+    pub seams: Vec<Demand>,
 }
 
 /// The answers to all of a file's actions and combinations.
@@ -45,6 +51,8 @@ pub struct Responses {
     pub fields: UnitFields,
     /// The worst of each measure over all of them: which response, and its extreme.
     pub envelope: Vec<(Measure, usize, Extreme)>,
+    /// By seam of the domain, the response that asks most of it.
+    pub seams: Vec<usize>,
     /// Extremes keep off sharp re-entrant corners by this share of the wall.
     pub exclusion: f64,
 }
@@ -55,9 +63,13 @@ pub struct Names<'a> {
     /// Pieces, by index.
     pub pieces: &'a [String],
     /// Probes, by index.
-    pub probes: &'a [crate::section::Probe],
+    pub probes: &'a [Probe],
     /// Cuts, by index.
-    pub cuts: &'a [crate::section::Cut],
+    pub cuts: &'a [Cut],
+    /// The seams that the section has.
+    pub seams: &'a [Seam],
+    /// What the file states of them, by [`Seam::request`].
+    pub stated: &'a [SeamInput],
 }
 
 impl<'a> Names<'a> {
@@ -65,5 +77,32 @@ impl<'a> Names<'a> {
     #[must_use]
     pub fn piece(&self, piece: u32) -> &'a str {
         self.pieces.get(piece as usize).map_or("", |n| n.as_str())
+    }
+
+    /// The seams with what the file states of each.
+    pub fn joints(&self) -> impl Iterator<Item = (&'a Seam, &'a SeamInput)> {
+        let stated = self.stated;
+        self.seams
+            .iter()
+            .filter_map(move |seam| Some((seam, stated.get(seam.request)?)))
+    }
+}
+
+impl Responses {
+    /// The demands that exceed what is allowed: index of the seam and of the response that asks most of
+    /// it.
+    #[must_use]
+    pub fn overstressed(&self) -> Vec<(usize, usize)> {
+        self.seams
+            .iter()
+            .enumerate()
+            .filter(|&(seam, &response)| {
+                let demand = self.list.get(response).and_then(|r| r.seams.get(seam));
+                demand
+                    .and_then(|demand| demand.utilisation)
+                    .is_some_and(|utilisation| utilisation > 1.0)
+            })
+            .map(|(seam, &response)| (seam, response))
+            .collect()
     }
 }

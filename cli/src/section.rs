@@ -1,6 +1,7 @@
 //! A section as its file states it: the plain value that the solver's inputs are taken from.
 
 use sectile_mesh::Point;
+use sectile_mesh::domain::seam::SeamRequest;
 use sectile_mesh::outline::piece::Piece;
 use sectile_solver::material::Material;
 use sectile_solver::stress::forces::SectionForces;
@@ -73,42 +74,16 @@ pub enum Contact {
 /// A seam that joins two pieces.
 #[derive(Clone, Debug, PartialEq)]
 pub struct SeamInput {
-    /// Its name, unlike that of any other seam or piece.
-    pub name: String,
-    /// Indices of the two pieces.
-    pub between: [usize; 2],
-    /// Which corner or faying line is meant, where there are several: the nearest one.
-    pub near: Option<Point>,
-    /// Fillet or groove.
-    pub kind: SeamKind,
-    /// Whether there is such a seam at both ends of the faying line.
-    pub both: bool,
-    /// Fit-up: so far the pieces may be apart at the root of a fillet, in `units.length`.
-    pub gap: f64,
-    /// Index of the material of a fillet's weld metal.
-    pub material: usize,
-    /// The throat stress that it may be given, in `units.stress`.
+    /// What is to be made, lengths in `units.length`; its name is unlike that of any other seam or
+    /// piece.
+    pub request: SeamRequest,
+    /// The stress that its throat may be given, in `units.stress`.
     pub allowable: Option<f64>,
     /// Force per length along x and y that the seam carries beside the shear flow, in `units.force`
-    /// over `units.length`; the sense does not matter for the demand.
+    /// over `units.length`.
     pub direct: [f64; 2],
     /// Length and pitch of an intermittent seam.
     pub intermittent: Option<Intermittent>,
-}
-
-/// The kind of a seam; lengths in `units.length`.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum SeamKind {
-    /// Weld metal in an inside corner.
-    Fillet {
-        /// Its legs on the first and on the second piece.
-        legs: [f64; 2],
-    },
-    /// Pieces fused where they touch.
-    Groove {
-        /// Over this length from one end of the faying line; `None`: over all of it.
-        depth: Option<f64>,
-    },
 }
 
 /// An intermittent seam: parts of one length at one pitch, in `units.length`.

@@ -3,7 +3,9 @@
 use std::f64::consts::PI;
 
 use sectile::read::{ReadSection, section_from_text};
+use sectile::section::Contact;
 use sectile_mesh::Point;
+use sectile_mesh::domain::seam::{SeamKind, SeamRequest};
 use sectile_solver::stress::forces::SectionForces;
 use sectile_tests::{file_name, outline_area, ring_area, section_files};
 
@@ -358,4 +360,88 @@ fn faults_that_later_stages_find_are_told_like_those_of_reading() {
 fn area_of_nose() -> f64 {
     let angle = 2.0 * 0.8_f64.asin();
     800.0 + 0.5 * 625.0 * (angle - angle.sin())
+}
+
+#[test]
+fn seams_are_as_written() {
+    let read = read_file("seams-everything");
+    let section = &read.section;
+    assert_eq!(section.contact, Contact::Seams);
+    assert_eq!(section.reference, Some(0));
+    let [cap, web, splice] = &section.seams[..] else {
+        panic!("{:?}", section.seams);
+    };
+    let request = |name: &str, between, kind| SeamRequest {
+        name: name.into(),
+        between,
+        near: None,
+        kind,
+        both: false,
+        gap: 0.0,
+        material: 0,
+    };
+    let legs = |a, b| SeamKind::Fillet { legs: [a, b] };
+    assert_eq!(
+        cap.request,
+        SeamRequest {
+            both: true,
+            gap: 0.125,
+            material: 1,
+            ..request("cap to flange", [0, 2], legs(0.3125, 0.3125))
+        }
+    );
+    // 1 ksi is 6.894757 MPa (seven digits, from memory).
+    let allowable = cap.allowable.expect("it is given");
+    assert!((allowable - 150.0 / 6.894_757).abs() < 1e-5, "{allowable}");
+    assert!(close(cap.direct[0], 0.1) && close(cap.direct[1], 0.012));
+    let interval = cap.intermittent.expect("it is given");
+    assert_eq!((interval.length, interval.pitch), (3.0, 12.0));
+    assert_eq!(
+        web.request,
+        SeamRequest {
+            near: Some(Point::new(0.25, 0.0)),
+            ..request("seam 2", [1, 0], legs(0.25, 0.375))
+        }
+    );
+    assert_eq!(
+        (web.allowable, web.direct, web.intermittent),
+        (Some(21.0), [0.0; 2], None)
+    );
+    assert_eq!(
+        splice.request,
+        SeamRequest {
+            near: Some(Point::new(-0.25, -8.0)),
+            ..request(
+                "splice",
+                [1, 3],
+                SeamKind::Groove {
+                    depth: Some(0.1875)
+                }
+            )
+        }
+    );
+
+    // The cap is 1/16 in off, so that its throat starts at its own corner: the legs' triangle is
+    // 0.3125/√2 high, and a leg that starts 1/16 in lower has 0.25 left: 0.25/√2.
+    let domain = &read.domain;
+    let names: Vec<&str> = domain.seams.iter().map(|seam| seam.name.as_str()).collect();
+    assert_eq!(
+        names,
+        [
+            "cap to flange, end 1",
+            "cap to flange, end 2",
+            "seam 2",
+            "splice"
+        ]
+    );
+    for seam in &domain.seams[..2] {
+        assert!(close(seam.throat_length, 0.25 * 0.5_f64.sqrt()), "{seam:?}");
+        assert!((seam.gap - 0.0625).abs() < 1e-12, "{seam:?}");
+    }
+    // Twice the area of the legs' triangle over its longest side.
+    assert!(close(
+        domain.seams[2].throat_length,
+        0.25 * 0.375 / 0.25_f64.hypot(0.375)
+    ));
+    assert!(close(domain.seams[3].throat_length, 0.1875));
 }

@@ -2,7 +2,10 @@
 
 use rayon::prelude::*;
 use sectile_mesh::Point;
+use sectile_mesh::domain::Domain;
 use sectile_solver::quantity::Quantity;
+use sectile_solver::seam::demand::{Laying, demand};
+use sectile_solver::seam::flow::SeamFlows;
 use sectile_solver::solution::Solution;
 use sectile_solver::stress::cut::cut;
 use sectile_solver::stress::extreme::{
@@ -14,7 +17,8 @@ use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::probe::at_point;
 
 use crate::response::{Response, Responses};
-use crate::section::Section;
+use crate::section::{SeamInput, Section};
+use crate::write::units::stress_per_force;
 
 /// Points along a triangle's side at which extremes are first sought.
 const DIVISIONS: usize = 8;
@@ -24,7 +28,12 @@ const DIVISIONS: usize = 8;
 /// `exclusion`: distance from sharp re-entrant corners over the wall's thickness within which stresses
 /// are not quoted.
 #[must_use]
-pub fn respond(section: &Section, solution: &Solution, exclusion: f64) -> Option<Responses> {
+pub fn respond(
+    section: &Section,
+    domain: &Domain,
+    solution: &Solution,
+    exclusion: f64,
+) -> Option<Responses> {
     if section.actions.is_empty() {
         return None;
     }
@@ -32,13 +41,16 @@ pub fn respond(section: &Section, solution: &Solution, exclusion: f64) -> Option
     let quotable = Quotable::new(solution, &fields, exclusion);
     let place = |q| solution.get(q).map_or(0.0, |f| f.value);
     let centre = Point::new(place(Quantity::ShearCentreX), place(Quantity::ShearCentreY));
+    let stress = stress_per_force(&section.units);
+    let flows = SeamFlows::new(solution, domain, &fields.superposition)?;
+    let layings: Vec<Laying> = section.seams.iter().map(|s| laying(s, stress)).collect();
     let yields: Vec<Option<f64>> = section
         .pieces
         .iter()
         .map(|p| {
             let yield_stress = section.materials.get(p.material)?.yield_stress?;
             // The file's unit of stress into force per length².
-            Some(yield_stress / crate::write::units::stress_per_force(&section.units))
+            Some(yield_stress / stress)
         })
         .collect();
 
@@ -109,6 +121,15 @@ pub fn respond(section: &Section, solution: &Solution, exclusion: f64) -> Option
                     .enumerate()
                     .filter_map(|(k, c)| Some((k, cut(solution, &fields, &forces, c.from, c.to)?)))
                     .collect(),
+                seams: domain
+                    .seams
+                    .iter()
+                    .enumerate()
+                    .filter_map(|(k, seam)| {
+                        let laying = layings.get(seam.request)?;
+                        Some(demand(seam, laying, flows.under(k, &forces)))
+                    })
+                    .collect(),
                 name: case.name,
                 combination: case.combination,
                 at: case.at,
@@ -118,12 +139,33 @@ pub fn respond(section: &Section, solution: &Solution, exclusion: f64) -> Option
         })
         .collect();
     let envelope = envelope(&list);
+    let seams = (0..domain.seams.len()).map(|k| hardest(&list, k)).collect();
     Some(Responses {
         list,
         fields,
         envelope,
+        seams,
         exclusion,
     })
+}
+
+/// What the file states of a seam, in consistent units; `stress` is a force over a length² in the file's
+/// unit of stress.
+fn laying(seam: &SeamInput, stress: f64) -> Laying {
+    Laying {
+        direct: seam.direct,
+        allowable: seam.allowable.map(|allowable| allowable / stress),
+        intermittent: seam.intermittent.map(|i| [i.length, i.pitch]),
+    }
+}
+
+/// The response that asks most of a seam; the first of equals.
+fn hardest(list: &[Response], seam: usize) -> usize {
+    let asked = |i: usize| list[i].seams.get(seam).map_or(0.0, |d| d.resultant);
+    (1..list.len()).fold(
+        0,
+        |worst, i| if asked(i) > asked(worst) { i } else { worst },
+    )
 }
 
 /// The worst of each measure and the response that it belongs to; the first of equals.

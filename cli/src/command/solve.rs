@@ -19,7 +19,7 @@ use crate::read::{ReadSection, section_from_path, show};
 use crate::response::{Names, Responses};
 use crate::write::json::{Results, Run};
 use crate::write::slug::{cut_files, slugs};
-use crate::write::{actions, csv, files, table, units, vtu};
+use crate::write::{actions, csv, digits, files, seams, table, units, vtu};
 
 /// Options of `solve`.
 #[derive(Args, Clone, Debug)]
@@ -133,7 +133,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         tolerance: args.tolerance,
         order: args.order,
         max_unknowns: args.max_unknowns,
-        reference: None,
+        reference: read.section.reference,
     };
     let mut progress = LevelProgress::new(!args.quiet && stderr().is_terminal());
     let solved = solve(
@@ -170,7 +170,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         }
     }
     let respond_start = Instant::now();
-    let responses = respond(&read.section, &solution, args.corner_distance);
+    let responses = respond(&read.section, &read.domain, &solution, args.corner_distance);
     if responses.is_none() && !read.section.actions.is_empty() {
         solution.notes.push(Note {
             kind: "actions-not-answered",
@@ -181,6 +181,9 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         });
     }
     run.actions = respond_start.elapsed().as_secs_f64();
+    if let Some(responses) = &responses {
+        solution.notes.extend(exceeded(&read, responses));
+    }
     let answer = Answer {
         source,
         read,
@@ -198,11 +201,36 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
     run.total = start.elapsed().as_secs_f64();
     run.peak_memory = peak_memory();
     report(args, folder.as_deref(), &answer, &run);
-    if answer.solution.reached && answer.read.domain.parts == 1 {
+    let overstressed = answer
+        .responses
+        .as_ref()
+        .is_some_and(|responses| !responses.overstressed().is_empty());
+    if answer.solution.reached && answer.read.domain.parts == 1 && !overstressed {
         Outcome::Answered
     } else {
         Outcome::Finding
     }
+}
+
+/// A finding for each seam that is given more than it may be.
+fn exceeded(read: &ReadSection, responses: &Responses) -> Vec<Note> {
+    let note = |(seam, response): (usize, usize)| {
+        let response = responses.list.get(response)?;
+        let seam_made = read.domain.seams.get(seam)?;
+        let used = response.seams.get(seam)?.utilisation?;
+        Some(Note {
+            kind: "seam-overstressed",
+            text: format!(
+                "The throat of seam \"{}\" is given {} times its allowable stress under \"{}\".",
+                seam_made.name,
+                digits::up(used, 3),
+                response.name
+            ),
+            at: Some(seam_made.at),
+        })
+    };
+    let overstressed = responses.overstressed();
+    overstressed.into_iter().filter_map(note).collect()
 }
 
 /// Where the results go; nowhere with `--json` alone.
@@ -244,13 +272,16 @@ impl Answer {
             pieces: &self.read.domain.piece_names,
             probes: &self.read.section.probes,
             cuts: &self.read.section.cuts,
+            seams: &self.read.domain.seams,
+            stated: &self.read.section.seams,
         }
     }
 
     fn results(&self, run: &Run) -> Results {
         let section = &self.read.section;
         let units = &section.units;
-        let results = Results::new(&section.title, &self.source, units, &self.solution, run);
+        let results = Results::new(&section.title, &self.source, units, &self.solution, run)
+            .with_seams(&self.names(), self.responses.as_ref());
         match &self.responses {
             None => results,
             Some(responses) => {
@@ -282,6 +313,7 @@ fn write_folder(
         &section.title,
         &section.units,
         &answer.read.domain,
+        &section.materials,
         &answer.solution,
         style,
     );
@@ -337,6 +369,10 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
         "stresses.csv".to_string(),
         actions::stresses_csv(units, &names, responses).into_bytes(),
     )];
+    if !names.seams.is_empty() {
+        let csv = seams::csv(units, &names, responses);
+        out.push(("seams.csv".to_string(), csv.into_bytes()));
+    }
     let response_slugs = slugs(responses.list.iter().map(|r| r.name.as_str()));
     let nodes = UnitFields::new(&answer.solution, answer.solution.order);
     let points = weighted_points(&answer.solution, &responses.fields);
@@ -388,6 +424,11 @@ fn report(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
                 responses,
                 look,
             ));
+            let seams = table::seams::render(&section.units, &answer.names(), responses, look);
+            if !seams.is_empty() {
+                text.push('\n');
+                text.push_str(&seams);
+            }
         }
         if let Some(folder) = folder {
             text.push_str(&format!(

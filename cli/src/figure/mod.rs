@@ -13,6 +13,7 @@ pub mod dimension;
 pub mod extreme;
 pub mod field;
 pub mod guide;
+pub mod joints;
 pub mod label;
 pub mod legend;
 pub mod levels;
@@ -43,6 +44,7 @@ use rayon::prelude::*;
 use sectile_mesh::Point;
 use sectile_mesh::domain::Domain;
 use sectile_mesh::outline::side::Circle;
+use sectile_solver::material::Material;
 use sectile_solver::quantity::Quantity;
 use sectile_solver::sample::{self, Lattice, UnitForce};
 use sectile_solver::solution::Solution;
@@ -80,10 +82,11 @@ pub fn all(
     title: &str,
     units: &Units,
     domain: &Domain,
+    materials: &[Material],
     solution: &Solution,
     style: Style,
 ) -> Vec<(String, String)> {
-    finished(title, units, domain, solution, style)
+    finished(title, units, domain, materials, solution, style)
         .into_iter()
         .map(|(name, figure)| (name.to_string(), figure.svg))
         .collect()
@@ -123,9 +126,11 @@ fn finished(
     title: &str,
     units: &Units,
     domain: &Domain,
+    materials: &[Material],
     solution: &Solution,
     style: Style,
 ) -> Vec<(&'static str, Finished)> {
+    let materials: Vec<&str> = materials.iter().map(|m| m.name.as_str()).collect();
     let style = style.printable();
     let width = style.width_mm;
     let lattice = Lattice::new(divisions(solution));
@@ -159,6 +164,7 @@ fn finished(
             title,
             units,
             domain,
+            &materials,
             &solution.properties,
             width,
         )),

@@ -16,11 +16,20 @@ type Walk = (usize, bool);
 /// The boundary sides in closed loops, material to the left.
 #[must_use]
 pub fn loops(domain: &Domain) -> Vec<Vec<Walk>> {
+    loops_about(domain, |_| true)
+}
+
+/// The edges of the pieces for which `inside` holds, taken as one region, in closed loops with that
+/// region to the left.
+fn loops_about(domain: &Domain, inside: impl Fn(u32) -> bool) -> Vec<Vec<Walk>> {
     let mut leaving: Vec<Vec<Walk>> = vec![Vec::new(); domain.points.len()];
     for (index, side) in domain.sides.iter().enumerate() {
-        match (side.left, side.right) {
-            (Some(_), None) => leaving[side.from as usize].push((index, false)),
-            (None, Some(_)) => leaving[side.to as usize].push((index, true)),
+        match (
+            side.left.is_some_and(&inside),
+            side.right.is_some_and(&inside),
+        ) {
+            (true, false) => leaving[side.from as usize].push((index, false)),
+            (false, true) => leaving[side.to as usize].push((index, true)),
             _ => {}
         }
     }
@@ -50,8 +59,14 @@ fn end(side: &DomainSide, reversed: bool) -> usize {
 /// Path data of all boundary loops, to be filled by the even-odd rule.
 #[must_use]
 pub fn boundary_path(domain: &Domain, view: &View) -> String {
+    region_path(domain, view, |_| true)
+}
+
+/// Path data of the edges of some pieces taken as one region, to be filled by the even-odd rule.
+#[must_use]
+pub fn region_path(domain: &Domain, view: &View, inside: impl Fn(u32) -> bool) -> String {
     let mut data = String::new();
-    for walk in loops(domain) {
+    for walk in loops_about(domain, inside) {
         for (i, &(index, reversed)) in walk.iter().enumerate() {
             side_data(
                 &mut data,
@@ -70,11 +85,17 @@ pub fn boundary_path(domain: &Domain, view: &View) -> String {
 /// Path data of the sides between two pieces; empty where there is one.
 #[must_use]
 pub fn interface_path(domain: &Domain, view: &View) -> String {
+    sides_path(domain, view, |side| {
+        side.left.is_some() && side.right.is_some()
+    })
+}
+
+/// Path data of the sides for which `wanted` holds, each by itself.
+#[must_use]
+pub fn sides_path(domain: &Domain, view: &View, wanted: impl Fn(&DomainSide) -> bool) -> String {
     let mut data = String::new();
-    for side in &domain.sides {
-        if side.left.is_some() && side.right.is_some() {
-            side_data(&mut data, domain, side, false, true, view);
-        }
+    for side in domain.sides.iter().filter(|side| wanted(side)) {
+        side_data(&mut data, domain, side, false, true, view);
     }
     data
 }

@@ -3,8 +3,11 @@
 use std::collections::BTreeMap;
 use std::f64::consts::{FRAC_PI_2, PI, TAU};
 
-use sectile_mesh::domain::{Domain, DomainSide};
+use sectile_mesh::domain::seam::{SeamKind, SeamRequest};
+use sectile_mesh::domain::{Domain, DomainSide, build_seamed};
 use sectile_mesh::mesh::{Mesh, MeshSide, NONE};
+use sectile_mesh::outline::piece::Piece;
+use sectile_mesh::outline::shape::bar;
 use sectile_mesh::outline::side::{Arc, Circle};
 use sectile_mesh::{Point, Vector};
 use sectile_solver::material::Material;
@@ -166,6 +169,50 @@ pub fn two_pieces() -> Domain {
     }
 }
 
+/// A flat with a cover held by two fillets and a rib by a groove over half of its thickness; three
+/// materials and weld metal of the first.
+pub fn joined() -> Domain {
+    let piece = |name: &str, material, outline| Piece {
+        name: name.into(),
+        outline,
+        material,
+    };
+    let seam = |name: &str, between, near, kind, both| SeamRequest {
+        name: name.into(),
+        between,
+        near,
+        kind,
+        both,
+        gap: 0.0,
+        material: 0,
+    };
+    let p = Point::new;
+    build_seamed(
+        &[
+            piece("flat", 0, bar(p(0.0, 0.0), 120.0, 20.0)),
+            piece("cover", 1, bar(p(0.0, 16.0), 70.0, 12.0)),
+            piece("rib", 2, bar(p(0.0, -30.0), 10.0, 40.0)),
+        ],
+        &[
+            seam(
+                "cover to flat",
+                [0, 1],
+                None,
+                SeamKind::Fillet { legs: [6.0, 8.0] },
+                true,
+            ),
+            seam(
+                "rib to flat",
+                [2, 0],
+                Some(p(-5.0, -10.0)),
+                SeamKind::Groove { depth: Some(5.0) },
+                false,
+            ),
+        ],
+    )
+    .expect("a sound section")
+}
+
 /// A mesh with its sides from vertices and triangles; `circle_of` names the circle of a boundary side.
 pub fn mesh(
     vertices: Vec<Point>,
@@ -213,23 +260,33 @@ pub fn mesh(
     }
 }
 
-/// Solved with one material, ν = 0.3, to a tolerance of 1e-3.
-pub fn solved(domain: &Domain) -> Solution {
-    let material = Material {
-        name: "steel".into(),
-        young: 210_000.0,
+/// Three materials, ν = 0.3, the others half and a tenth as stiff as the first.
+pub fn materials() -> Vec<Material> {
+    [
+        ("steel", 210_000.0),
+        ("half", 105_000.0),
+        ("tenth", 21_000.0),
+    ]
+    .map(|(name, young)| Material {
+        name: name.into(),
+        young,
         poisson: 0.3,
-        shear: 210_000.0 / 2.6,
+        shear: young / 2.6,
         yield_stress: None,
         density: Some(7850.0),
-    };
+    })
+    .to_vec()
+}
+
+/// Solved with these materials to a tolerance of 1e-3.
+pub fn solved(domain: &Domain) -> Solution {
     let settings = Settings {
         tolerance: 1e-3,
         order: None,
         max_unknowns: 100_000,
         reference: None,
     };
-    solve(domain, &[material], 1e-3, &settings, &mut |_| {}).expect("a sound section")
+    solve(domain, &materials(), 1e-3, &settings, &mut |_| {}).expect("a sound section")
 }
 
 /// `nx × ny` cells of two triangles on `b × h`.

@@ -10,6 +10,7 @@ use super::centres::{
     BLOCK, Block, Centre, Principal, centre_block, centres, draw_block, principal, principal_block,
 };
 use super::dimension::{Turned, dimensions};
+use super::joints;
 use super::marks::{self, Mark};
 use super::outline::{self, Shape};
 use super::page::{Finished, INK, Label, MARGIN, Page, Pen};
@@ -29,12 +30,13 @@ const MOST_HEIGHT: f64 = 105.0;
 /// A centre farther from the outline than this many times the section's size is not drawn.
 const FARTHEST: f64 = 3.0;
 
-/// Draws the section; properties that are absent are left out.
+/// Draws the section; properties that are absent are left out. `materials`: names, by index.
 #[must_use]
 pub fn draw(
     title: &str,
     units: &Units,
     domain: &Domain,
+    materials: &[&str],
     properties: &[(Quantity, Figure)],
     width: f64,
 ) -> Finished {
@@ -85,14 +87,13 @@ pub fn draw(
     let solid = view.rect(extent);
     let top = page.cursor;
 
-    page.path(
-        outline::boundary_path(domain, &view),
-        Pen::line(INK, 0.3).filled(MATERIAL),
-    );
-    let seams = outline::interface_path(domain, &view);
-    if !seams.is_empty() {
-        page.path(seams, Pen::line(INK, 0.13));
+    joints::fill(&mut page, domain, &view);
+    page.path(outline::boundary_path(domain, &view), Pen::line(INK, 0.3));
+    let interfaces = outline::interface_path(domain, &view);
+    if !interfaces.is_empty() {
+        page.path(interfaces, Pen::line(INK, 0.13));
     }
+    joints::draw(&mut page, domain, &view);
 
     let shape = Shape::new(domain, &view);
     let mut ground = Ground {
@@ -105,6 +106,7 @@ pub fn draw(
         taken: centres
             .iter()
             .map(|c| Rect::about(view.point(c.at()), c.mark.radius() + 0.3))
+            .chain(joints::places(domain, &view))
             .collect(),
         leaders: Vec::new(),
         shape: Some(&shape),
@@ -126,6 +128,7 @@ pub fn draw(
         centre.mark.draw(&mut page, view.point(centre.at()));
     }
     letters(&mut page, &mut ground, &centres, &view);
+    joints::numbers(&mut page, &mut ground, domain, &view);
 
     let mut blocks: Vec<Block> = centres
         .iter()
@@ -159,6 +162,7 @@ pub fn draw(
             page.cursor = low + 2.0;
         }
     }
+    joints::key(&mut page, domain, materials);
     page.cursor += 2.0;
     let at = Point::new(MARGIN, page.cursor);
     marks::scale_bar(&mut page, at, view.scale, units.length);

@@ -186,11 +186,38 @@ fn section_figures() {
                 "Boatyard hoist runway, an invented scenario",
                 &units(),
                 domain,
+                &[],
                 &properties(*centres, *angle),
                 width,
             );
             sound(&format!("{name}-{width}"), &figure);
         }
+    }
+}
+
+#[test]
+fn the_key_names_materials_joints_and_seams() {
+    let centres = properties([(0.0, 5.0), (0.0, 8.0), (0.0, 8.0)], 0.0);
+    let materials = ["oak", "elm", "ash"];
+    let draw = |domain: &Domain| {
+        section::draw("Joined", &units(), domain, &materials, &centres, 160.0).svg
+    };
+    let joined = draw(&samples::joined());
+    for word in [
+        "oak",
+        "elm",
+        "ash",
+        "weld metal",
+        "groove",
+        "touching, not joined",
+        "cover to flat, end 2",
+        "rib to flat",
+    ] {
+        assert!(joined.contains(word), "{word}");
+    }
+    let plain = draw(&samples::channel());
+    for word in ["oak", "weld metal", "groove", "touching"] {
+        assert!(!plain.contains(word), "{word}");
     }
 }
 
@@ -360,6 +387,7 @@ fn solved_sections() {
         ("flat", samples::rectangle(200.0, 12.0)),
         ("angle", samples::angle()),
         ("holes", samples::plate_with_holes()),
+        ("joined", samples::joined()),
     ] {
         let solution = samples::solved(&domain);
         for width in [60.0, 160.0] {
@@ -367,6 +395,7 @@ fn solved_sections() {
                 "An invented bar",
                 &units(),
                 &domain,
+                &samples::materials(),
                 &solution,
                 bands(width),
             );
@@ -491,11 +520,17 @@ fn fields_in_lines_carry_their_levels() {
         for width in [60.0, 160.0] {
             let draw = || {
                 let solution = &sample.solution;
-                let mut all: Vec<(String, Finished)> =
-                    finished("An invented bar", &units(), &domain, solution, lines(width))
-                        .into_iter()
-                        .map(|(n, f)| (n.to_string(), f))
-                        .collect();
+                let mut all: Vec<(String, Finished)> = finished(
+                    "An invented bar",
+                    &units(),
+                    &domain,
+                    &[],
+                    solution,
+                    lines(width),
+                )
+                .into_iter()
+                .map(|(n, f)| (n.to_string(), f))
+                .collect();
                 all.extend(drawn(&domain, &sample, lines(width)));
                 all
             };
@@ -591,7 +626,7 @@ fn the_quoted_extreme_is_that_of_the_tables() {
 fn separate_parts_have_the_figures_that_need_no_torsion() {
     let domain = samples::two_parts();
     let solution = samples::solved(&domain);
-    let figures = finished("Two flats", &units(), &domain, &solution, bands(160.0));
+    let figures = finished("Two flats", &units(), &domain, &[], &solution, bands(160.0));
     let names: Vec<&str> = figures.iter().map(|(name, _)| *name).collect();
     assert_eq!(names, ["section.svg", "mesh.svg"]);
     for (name, figure) in &figures {
@@ -623,6 +658,7 @@ fn same_input_same_text() {
             "Twice",
             &units(),
             &samples::channel(),
+            &[],
             &properties([(22.2, 100.0), (-25.0, 100.0), (-26.0, 100.0)], 0.0),
             160.0,
         )

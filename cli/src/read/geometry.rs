@@ -10,6 +10,8 @@ use sectile_mesh::outline::side::Side;
 use super::fault::Fault;
 use super::joint;
 use super::ring::RingText;
+use super::seam::SeamText;
+use crate::section::SeamInput;
 
 /// Where a piece is written.
 #[derive(Clone, Debug)]
@@ -25,6 +27,8 @@ pub(super) struct PieceText {
 pub(super) struct Sources<'a> {
     pub(super) pieces: &'a [Piece],
     pub(super) texts: &'a [PieceText],
+    pub(super) seams: &'a [SeamInput],
+    pub(super) seam_texts: &'a [SeamText],
     /// The unit of length.
     pub(super) unit: &'a str,
 }

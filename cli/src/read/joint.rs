@@ -1,10 +1,14 @@
-//! Faults of seams.
+//! Faults of seams that the geometry shows, told by the text of the seams.
+
+use std::ops::Range;
 
 use sectile_mesh::Point;
 use sectile_mesh::domain::fault::{Misfit, Obstacle, SeamFault};
+use sectile_mesh::domain::seam::SeamKind;
 
 use super::fault::Fault;
 use super::geometry::{Sources, point, short};
+use super::syntax::printable;
 
 /// Pieces that nothing joins to the first one.
 pub(super) fn hanging(sources: Sources<'_>, pieces: &[usize]) -> Fault {
@@ -12,20 +16,20 @@ pub(super) fn hanging(sources: Sources<'_>, pieces: &[usize]) -> Fault {
         .iter()
         .map(|&p| format!("\"{}\"", sources.name(p)))
         .collect();
-    let message = format!(
-        "no path of seams joins {} to \"{}\"",
-        names.join(", "),
-        sources.name(0)
-    );
-    Fault::at(
+    let first = sources.name(0);
+    let fault = Fault::at(
         sources.head(pieces.first().copied().unwrap_or(0)),
         "this piece",
-        message,
-        "add a `[[seam]]`, or leave out `contact = \"seams\"` to fuse pieces where they touch",
-    )
+        format!("no path of seams joins {} to \"{first}\"", names.join(", ")),
+        "join it by a [[seam]]; with `contact = \"seams\"`, or any [[seam]] in the file, pieces that only \
+         touch are apart",
+    );
+    pieces.iter().skip(1).fold(fault, |fault, &piece| {
+        fault.and(sources.head(piece), "and this piece")
+    })
 }
 
-/// What is wrong with seam number `seam`, from 0.
+/// What is wrong with the seam of index `seam`.
 pub(super) fn fault(sources: Sources<'_>, seam: usize, found: &SeamFault) -> Fault {
     let unit = sources.unit;
     let length = |value: f64| format!("{} {unit}", short(value));
@@ -44,10 +48,17 @@ pub(super) fn fault(sources: Sources<'_>, seam: usize, found: &SeamFault) -> Fau
                 length(*distance),
                 point(*at)
             ),
-            format!(
-                "move them together, or declare the fit-up of a fillet with `gap = {}` or more",
-                short(*distance)
-            ),
+            match sources.seams.get(seam).map(|seam| &seam.request.kind) {
+                Some(SeamKind::Fillet { legs }) if *distance < legs[0].min(legs[1]) => format!(
+                    "move them together, or declare the fit-up: gap = {} or more",
+                    short(*distance)
+                ),
+                Some(SeamKind::Fillet { .. }) => {
+                    "move them together: a fit-up that is declared by `gap` is smaller than the legs"
+                        .to_owned()
+                }
+                _ => "move them together: a groove fuses pieces that touch along a line".to_owned(),
+            },
         ),
         SeamFault::NoCorner { at: None } => (
             "finds no inside corner between its pieces".to_owned(),
@@ -67,7 +78,14 @@ pub(super) fn fault(sources: Sources<'_>, seam: usize, found: &SeamFault) -> Fau
         ),
         SeamFault::Choice { places } => (
             format!("could lie at {}", list(places)),
-            "say which is meant with `near = [x, y]`".to_owned(),
+            match places.first() {
+                Some(first) => format!(
+                    "say which is meant, as in near = [{}, {}]; at = \"both\" takes both ends of a line",
+                    short(first.x),
+                    short(first.y)
+                ),
+                None => "say which is meant with `near`".to_owned(),
+            },
         ),
         SeamFault::Angle { at, angle } => (
             format!(
@@ -131,14 +149,77 @@ pub(super) fn fault(sources: Sources<'_>, seam: usize, found: &SeamFault) -> Fau
                     sources.name(*piece),
                     point(*at)
                 ),
-                Obstacle::Seam(seam) => {
-                    format!("runs into weld {} at {}", seam + 1, point(*at))
+                Obstacle::Seam(other) if *other == seam => {
+                    format!("runs into its own other end at {}", point(*at))
+                }
+                Obstacle::Seam(other) => {
+                    format!("runs into seam \"{}\" at {}", seam_name(sources, *other), point(*at))
                 }
             },
             "make it smaller, or move what is in its way".to_owned(),
         ),
     };
-    Fault::whole(format!("seam {} {message}", seam + 1), remedy)
+    let told = Fault::at(
+        main_mark(sources, seam, found),
+        "",
+        format!("seam \"{}\" {message}", seam_name(sources, seam)),
+        remedy,
+    );
+    match also(sources, seam, found) {
+        Some((range, remark)) => told.and(range, remark),
+        None => told,
+    }
+}
+
+fn seam_name(sources: Sources<'_>, seam: usize) -> String {
+    let name = sources.seams.get(seam).map(|seam| &seam.request.name);
+    name.map_or_else(String::new, |name| printable(name))
+}
+
+/// The text that a fault is about.
+fn main_mark(sources: Sources<'_>, seam: usize, found: &SeamFault) -> Range<usize> {
+    let Some(text) = sources.seam_texts.get(seam) else {
+        return 0..0;
+    };
+    match found {
+        SeamFault::Pieces
+        | SeamFault::Apart { .. }
+        | SeamFault::NoCorner { .. }
+        | SeamFault::NoLine { .. } => &text.between,
+        SeamFault::Choice { .. } => &text.head,
+        SeamFault::Measure
+        | SeamFault::Angle { .. }
+        | SeamFault::Leg { .. }
+        | SeamFault::Misfit { .. }
+        | SeamFault::Depth { .. }
+        | SeamFault::DepthsMeet { .. }
+        | SeamFault::NoEnd { .. }
+        | SeamFault::Overlap { .. } => &text.kind,
+    }
+    .clone()
+}
+
+/// What else has to do with it.
+fn also(
+    sources: Sources<'_>,
+    seam: usize,
+    found: &SeamFault,
+) -> Option<(Range<usize>, &'static str)> {
+    match *found {
+        SeamFault::Leg { piece, .. } => Some((sources.head(piece), "on this piece")),
+        SeamFault::Overlap {
+            with: Obstacle::Piece(piece),
+            ..
+        } => Some((sources.head(piece), "this piece is there")),
+        SeamFault::Overlap {
+            with: Obstacle::Seam(other),
+            ..
+        } if other != seam => {
+            let text = sources.seam_texts.get(other)?;
+            Some((text.head.clone(), "this seam is there"))
+        }
+        _ => None,
+    }
 }
 
 fn misfit(cause: Misfit) -> (&'static str, &'static str) {

@@ -27,9 +27,9 @@ mod syntax;
 mod units;
 
 use sectile_mesh::domain::fault::Fault as Found;
+use sectile_mesh::domain::seam::SeamRequest;
 use sectile_mesh::domain::{self, Domain};
 use sectile_mesh::outline::piece::Piece;
-use sectile_solver::material::Material;
 
 use crate::section::{Action, Combination, Contact, Cut, Probe, SeamInput, Section};
 use fault::{Fault, Faults};
@@ -38,7 +38,6 @@ use geometry::{PieceText, Sources};
 use names::Names;
 use places::Places;
 use seam::SeamText;
-use syntax::printable;
 
 pub use file::section_from_path;
 
@@ -155,26 +154,21 @@ fn read(
         .get("seam")
         .map(|value| seam::read_all(reader, value, &pieces, &materials))
         .unwrap_or_default();
-    let complete =
-        pieces.iter().all(|read| read.piece.is_some()) && seams.iter().all(Option::is_some);
+    let complete = pieces.iter().all(|read| read.piece.is_some())
+        && seams.iter().all(Option::is_some)
+        && !fields.is_misspelt("seam");
     let (pieces, texts): (Vec<Piece>, Vec<PieceText>) =
         pieces.into_iter().filter_map(|read| read.piece).unzip();
     let (seams, seam_texts): (Vec<SeamInput>, Vec<SeamText>) = seams.into_iter().flatten().unzip();
-    if contact == Contact::Seams && reader.faults.is_empty() {
-        let range = match seam_texts.first() {
-            Some(seam) => Some(seam.head.clone()),
-            None => fields.key_span("contact"),
-        };
-        reader.faults.push(Fault::at(
-            range.unwrap_or_default(),
-            "not answered yet",
-            "this version does not answer seams yet",
-            "remove them to get the properties of the section with touching pieces fused",
-        ));
-    }
-    refuse_several_materials(reader, &pieces, &texts, &materials);
     let domain = if sure_of_units {
-        regions(reader, &pieces, &texts, complete)
+        let sources = Sources {
+            pieces: &pieces,
+            texts: &texts,
+            seams: &seams,
+            seam_texts: &seam_texts,
+            unit: reader.units.length,
+        };
+        regions(reader, sources, contact, complete)
     } else {
         None
     };
@@ -234,24 +228,27 @@ fn loads(reader: &mut Reader, fields: &Fields<'_>) -> (Vec<Action>, Vec<Combinat
     )
 }
 
-/// The domain of the pieces; with some missing, faults that these could cure are left out.
+/// The domain of the pieces; with some of them or of the seams missing, faults that these could cure
+/// are left out.
 fn regions(
     reader: &mut Reader,
-    pieces: &[Piece],
-    texts: &[PieceText],
+    sources: Sources<'_>,
+    contact: Contact,
     complete: bool,
 ) -> Option<Domain> {
+    let pieces = sources.pieces;
     if pieces.is_empty() {
         return None;
     }
-    match domain::build(pieces) {
+    let built = if contact == Contact::Seams && complete {
+        let requests: Vec<SeamRequest> = sources.seams.iter().map(|s| s.request.clone()).collect();
+        domain::build_seamed(pieces, &requests)
+    } else {
+        domain::build(pieces)
+    };
+    match built {
         Ok(domain) => Some(domain),
         Err(found) => {
-            let sources = Sources {
-                pieces,
-                texts,
-                unit: reader.units.length,
-            };
             let certain = |fault: &&Found| match **fault {
                 Found::PiecesTouchInPoint { .. } => complete,
                 _ => true,
@@ -264,40 +261,6 @@ fn regions(
             None
         }
     }
-}
-
-fn refuse_several_materials(
-    reader: &mut Reader,
-    pieces: &[Piece],
-    texts: &[PieceText],
-    materials: &[Material],
-) {
-    let Some(first) = pieces.first() else { return };
-    let Some(other) = pieces
-        .iter()
-        .position(|piece| piece.material != first.material)
-    else {
-        return;
-    };
-    let name = |piece: &Piece| {
-        materials
-            .get(piece.material)
-            .map_or_else(String::new, |material| printable(&material.name))
-    };
-    reader.faults.push(
-        Fault::at(
-            texts[other].head.clone(),
-            format!("of {}", name(&pieces[other])),
-            "this version answers sections of one material only",
-            format!(
-                "give all pieces the same material, or solve the parts of {} and of {} by themselves; \
-                 a later version weights several materials",
-                name(first),
-                name(&pieces[other])
-            ),
-        )
-        .and(texts[0].head.clone(), format!("of {}", name(first))),
-    );
 }
 
 fn is_empty_list(value: &toml_span::Value<'_>) -> bool {

@@ -2,6 +2,7 @@
 
 use std::ops::Range;
 
+use sectile_mesh::domain::seam::{SeamKind, SeamRequest};
 use sectile_solver::material::Material;
 use toml_span::Value;
 
@@ -13,7 +14,7 @@ use super::near::nearest;
 use super::piece;
 use super::quantity::Dimension;
 use super::syntax::printable;
-use crate::section::{Contact, Intermittent, SeamInput, SeamKind};
+use crate::section::{Contact, Intermittent, SeamInput};
 
 const KEYS: &[&str] = &[
     "name",
@@ -35,6 +36,10 @@ const KEYS: &[&str] = &[
 pub(super) struct SeamText {
     /// Its name, or its heading where it has none.
     pub(super) head: Range<usize>,
+    /// The value of `between`.
+    pub(super) between: Range<usize>,
+    /// The value of `fillet` or `groove`.
+    pub(super) kind: Range<usize>,
 }
 
 /// A seam and where it is written.
@@ -74,7 +79,8 @@ pub(super) fn contact(reader: &mut Reader, top: &Fields<'_>) -> Contact {
     }
 }
 
-/// All seams in the order of the file; `None` for each that is faulty.
+/// All seams in the order of the file, `None` for each that is faulty; one `None` if `value` is no list
+/// of tables.
 pub(super) fn read_all(
     reader: &mut Reader,
     value: &Value<'_>,
@@ -82,9 +88,10 @@ pub(super) fn read_all(
     materials: &[Material],
 ) -> Vec<Option<Read>> {
     let mut names = Names::new("seams");
-    tables(reader, value, "seam")
-        .unwrap_or_default()
-        .iter()
+    let Some(list) = tables(reader, value, "seam") else {
+        return vec![None];
+    };
+    list.iter()
         .enumerate()
         .map(|(i, value)| read(reader, value, i, &mut names, pieces, materials))
         .collect()
@@ -127,19 +134,32 @@ fn read(
     let of_first = pieces[between[0]].piece.as_ref().map(|(p, _)| p.material);
     Some((
         SeamInput {
-            name,
-            between,
-            near: near?,
-            kind,
-            both: both?,
-            gap: gap?,
-            material: material?.or(of_first)?,
+            request: SeamRequest {
+                name,
+                between,
+                near: near?,
+                kind,
+                both: both?,
+                gap: gap?,
+                material: material?.or(of_first)?,
+            },
             allowable: allowable?,
             direct: direct?,
             intermittent: intermittent?,
         },
-        SeamText { head },
+        SeamText {
+            between: place(&fields, "between").unwrap_or_else(|| head.clone()),
+            kind: place(&fields, "fillet")
+                .or_else(|| place(&fields, "groove"))
+                .unwrap_or_else(|| head.clone()),
+            head,
+        },
     ))
+}
+
+/// Where the value of `key` is written.
+fn place(fields: &Fields<'_>, key: &str) -> Option<Range<usize>> {
+    fields.get(key).map(span)
 }
 
 /// Weld metal is listed among the pieces by the name of its seam.

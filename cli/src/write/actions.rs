@@ -289,21 +289,21 @@ fn nine_digits(x: f64) -> String {
 }
 
 /// Rows of equal length in memory.
-struct Table(::csv::Writer<Vec<u8>>);
+pub(super) struct Table(::csv::Writer<Vec<u8>>);
 
 impl Table {
-    fn new(columns: &[&str]) -> Self {
+    pub(super) fn new(columns: &[&str]) -> Self {
         let mut writer = ::csv::Writer::from_writer(Vec::new());
         // Writing to memory fails only for rows of unequal length, and these are arrays.
         let _ = writer.write_record(columns);
         Self(writer)
     }
 
-    fn row<const N: usize>(&mut self, row: [String; N]) {
+    pub(super) fn row<const N: usize>(&mut self, row: [String; N]) {
         let _ = self.0.write_record(row);
     }
 
-    fn text(self) -> String {
+    pub(super) fn text(self) -> String {
         String::from_utf8(self.0.into_inner().unwrap_or_default()).unwrap_or_default()
     }
 }

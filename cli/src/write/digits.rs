@@ -125,16 +125,21 @@ pub fn short(value: f64, digits: i32) -> String {
     minus_sign(&format!("{trimmed}{}", times_power(printed.power)))
 }
 
+/// A positive number that must not come out too small, to so many significant digits, rounded up.
+#[must_use]
+pub fn up(value: f64, digits: i32) -> String {
+    if !value.is_finite() || value <= 0.0 {
+        return short(value, digits);
+    }
+    let digit = 10f64.powf(value.log10().floor() - f64::from(digits - 1));
+    // What is so many digits long but for rounding stays as it is.
+    short((value / digit - 1e-9).ceil() * digit, digits)
+}
+
 /// A share that bounds an error, in percent to two digits, rounded up.
 #[must_use]
 pub fn percent_up(share: f64) -> String {
-    if share == 0.0 {
-        return "0 %".into();
-    }
-    let digit = 10f64.powf((100.0 * share).log10().floor() - 1.0);
-    // What is two digits long but for rounding stays as it is.
-    let up = (100.0 * share / digit - 1e-9).ceil() * digit;
-    format!("{} %", short(up, 2))
+    format!("{} %", up(100.0 * share, 2))
 }
 
 /// The text with a true minus sign; for figures, where a hyphen is too short beside digits.

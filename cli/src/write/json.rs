@@ -8,13 +8,16 @@ use serde::{Serialize, Serializer};
 
 use sectile_solver::solution::Solution;
 
+use super::seams::remarks;
 use super::{CAUTION, units, wording};
 use crate::response::{Names, Responses};
 use crate::section::Units;
 
 pub mod action;
+pub mod seam;
 
 use action::{Action, Exclusion, Extremes};
+use seam::Seam;
 
 /// What the command knows beside the solution.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -48,6 +51,9 @@ pub struct Results {
     pub tolerance_reached: bool,
     /// The properties by key, in reading order.
     pub properties: Properties,
+    /// The seams that join the pieces.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub seams: Vec<Seam>,
     /// Actions and combinations.
     pub actions: Vec<Action>,
     /// The worst over all of them, where there are any.
@@ -194,6 +200,7 @@ impl Results {
             },
             tolerance_reached: solution.reached,
             properties: Properties(properties),
+            seams: Vec::new(),
             actions: Vec::new(),
             envelope: None,
             exclusion: None,
@@ -226,6 +233,19 @@ impl Results {
                 })
                 .collect(),
         }
+    }
+
+    /// With the section's seams, and notes on what is to be known of their demands.
+    #[must_use]
+    pub fn with_seams(mut self, names: &Names, responses: Option<&Responses>) -> Self {
+        self.seams = seam::seams(names, responses);
+        self.notes
+            .extend(remarks(names).into_iter().map(|text| Note {
+                kind: "seams",
+                text: text.into(),
+                at: None,
+            }));
+        self
     }
 
     /// With the responses to the file's actions.

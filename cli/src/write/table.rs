@@ -2,6 +2,8 @@
 //! that its bounds support.
 
 pub mod actions;
+mod columns;
+pub mod seams;
 
 use std::collections::BTreeSet;
 

@@ -80,6 +80,7 @@ impl Sample {
                     0,
                     cut::cut(&solution, &fields, &forces, cuts[0].from, cuts[0].to).unwrap(),
                 )],
+                seams: Vec::new(),
             }
         };
         let list = vec![
@@ -112,6 +113,7 @@ impl Sample {
                 list,
                 fields,
                 envelope,
+                seams: Vec::new(),
                 exclusion,
             },
             solution,
@@ -123,6 +125,8 @@ impl Sample {
             pieces: &self.pieces,
             probes: &self.probes,
             cuts: &self.cuts,
+            seams: &[],
+            stated: &[],
         }
     }
 }

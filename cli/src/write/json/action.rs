@@ -9,6 +9,7 @@ use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::state::Stress;
 
 use super::no_minus_zero as z;
+use super::seam::{Demand, demands};
 use crate::response::{Names, Response, Responses};
 use crate::section::Units;
 use crate::write::actions::scaled;
@@ -43,6 +44,8 @@ pub struct Action {
     pub probes: Vec<Probe>,
     /// What crosses the cuts.
     pub cuts: Vec<Cut>,
+    /// What the seams have to transfer.
+    pub seams: Vec<Demand>,
 }
 
 /// Section forces: N, V in the unit of force; M, T, Tw in the unit of moment; B in force × length².
@@ -185,6 +188,7 @@ fn action(units: &Units, names: &Names, response: &Response) -> Action {
                 material_length: cut.material,
             })
             .collect(),
+        seams: demands(units, names, &response.seams),
     }
 }
 

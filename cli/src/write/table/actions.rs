@@ -1,14 +1,11 @@
 //! The section of the table on actions: what governs each, where, from what, and how far from yield.
 
-use comfy_table::{
-    Attribute, Cell, CellAlignment, ColumnConstraint, ContentArrangement, Table, Width, presets,
-};
-
 use sectile_solver::solution::Solution;
 use sectile_solver::stress::extreme::Extreme;
 use sectile_solver::stress::measure::Measure;
 
-use super::{Look, bold, style, wrap};
+use super::columns::{columns, short};
+use super::{Look, bold, wrap};
 use crate::response::{Names, Response, Responses};
 use crate::section::Units;
 use crate::write::digits;
@@ -202,73 +199,6 @@ fn crossings(
     lines
 }
 
-fn columns(
-    heads: &[(&str, String)],
-    rows: &[Vec<String>],
-    numbers: &[bool],
-    look: Look,
-) -> Vec<String> {
-    let mut table = Table::new();
-    table
-        .load_style(presets::NOTHING)
-        .set_content_arrangement(ContentArrangement::Dynamic)
-        .set_width(look.width);
-    if look.styled {
-        table.enforce_styling();
-    } else {
-        table.force_no_tty();
-    }
-    let hard = |text: &str| text.replace(' ', "\u{a0}");
-    let head = |text: &str| style(Cell::new(hard(text)), Attribute::Dim, look);
-    let indent = |h: &str| {
-        if h == heads[0].0 {
-            format!("  {h}")
-        } else {
-            h.into()
-        }
-    };
-    table.add_row(
-        heads
-            .iter()
-            .map(|(h, _)| head(&indent(h)))
-            .collect::<Vec<_>>(),
-    );
-    if heads.iter().any(|(_, unit)| !unit.is_empty()) {
-        table.add_row(heads.iter().map(|(_, unit)| head(unit)).collect::<Vec<_>>());
-    }
-    // Names may break; whatever is a number may not.
-    let free = |i: usize| matches!(heads[i].0, "" | "cut" | "action" | "from" | "piece");
-    for row in rows {
-        let cells = row.iter().enumerate().map(|(i, text)| {
-            let text = if i == 0 {
-                format!("\u{a0}\u{a0}{text}")
-            } else {
-                text.clone()
-            };
-            Cell::new(if free(i) { text } else { hard(&text) })
-        });
-        table.add_row(cells.collect::<Vec<_>>());
-    }
-    let last = heads.len() - 1;
-    for (i, column) in table.column_iter_mut().enumerate() {
-        column.set_cell_alignment(if numbers[i] {
-            CellAlignment::Right
-        } else {
-            CellAlignment::Left
-        });
-        column.set_padding((0, if i == last { 0 } else { 2 }));
-        column.set_constraint(if free(i) {
-            ColumnConstraint::LowerBoundary(Width::Fixed(10))
-        } else {
-            ColumnConstraint::ContentWidth
-        });
-    }
-    table
-        .lines()
-        .map(|line| line.replace('\u{a0}', " ").trim_end().to_string())
-        .collect()
-}
-
 fn mostly(measure: Measure, extreme: &Extreme) -> String {
     cause::main(measure, extreme).map_or("–".into(), |c| {
         format!("{} {:.0} %", c.part, 100.0 * c.share)
@@ -276,16 +206,7 @@ fn mostly(measure: Measure, extreme: &Extreme) -> String {
 }
 
 fn place(extreme: &Extreme) -> String {
-    let tidy = |x: f64| plain(x, 4);
-    format!("({}, {})", tidy(extreme.at.x), tidy(extreme.at.y))
-}
-
-fn short(x: f64) -> String {
-    plain(x, 4)
-}
-
-fn plain(x: f64, digits: i32) -> String {
-    digits::short(x, digits).replace('−', "-")
+    format!("({}, {})", short(extreme.at.x), short(extreme.at.y))
 }
 
 #[cfg(test)]
