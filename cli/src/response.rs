@@ -3,6 +3,7 @@
 
 use sectile_mesh::Point;
 use sectile_mesh::domain::seam::Seam;
+use sectile_solver::material::Material;
 use sectile_solver::seam::demand::Demand;
 use sectile_solver::stress::cut::CutResult;
 use sectile_solver::stress::extreme::{Extreme, Extremes};
@@ -40,7 +41,12 @@ pub struct Response {
     pub cuts: Vec<(usize, CutResult)>,
     /// In the order of the domain's seams.
     pub seams: Vec<Demand>,
+    /// The extremes in each material alone, by its index; none where there is only one.
+    pub materials: Vec<(usize, Extremes)>,
 }
+
+/// The worst of each measure over several responses: which one, and its extreme.
+pub type Envelope = Vec<(Measure, usize, Extreme)>;
 
 /// The answers to all of a file's actions and combinations.
 #[derive(Clone, Debug)]
@@ -49,8 +55,10 @@ pub struct Responses {
     pub list: Vec<Response>,
     /// The unit fields that they are made of.
     pub fields: UnitFields,
-    /// The worst of each measure over all of them: which response, and its extreme.
-    pub envelope: Vec<(Measure, usize, Extreme)>,
+    /// The worst of each measure over all of them.
+    pub envelope: Envelope,
+    /// The same in each material alone.
+    pub materials: Vec<(usize, Envelope)>,
     /// By seam of the domain, the response that asks most of it.
     pub seams: Vec<usize>,
     /// Extremes keep off sharp re-entrant corners by this share of the wall.
@@ -70,6 +78,8 @@ pub struct Names<'a> {
     pub seams: &'a [Seam],
     /// What the file states of them, by [`Seam::request`].
     pub stated: &'a [SeamInput],
+    /// Materials, by index.
+    pub materials: &'a [Material],
 }
 
 impl<'a> Names<'a> {
@@ -77,6 +87,12 @@ impl<'a> Names<'a> {
     #[must_use]
     pub fn piece(&self, piece: u32) -> &'a str {
         self.pieces.get(piece as usize).map_or("", |n| n.as_str())
+    }
+
+    /// The name of a material; empty where it has none.
+    #[must_use]
+    pub fn material(&self, material: usize) -> &'a str {
+        self.materials.get(material).map_or("", |m| m.name.as_str())
     }
 
     /// The seams with what the file states of each.

@@ -1,6 +1,7 @@
 //! A section as its file states it: the plain value that the solver's inputs are taken from.
 
 use sectile_mesh::Point;
+use sectile_mesh::domain::Domain;
 use sectile_mesh::domain::seam::SeamRequest;
 use sectile_mesh::outline::piece::Piece;
 use sectile_solver::material::Material;
@@ -93,6 +94,29 @@ pub struct Intermittent {
     pub length: f64,
     /// From the start of one part to the start of the next; at least the length.
     pub pitch: f64,
+}
+
+/// The materials that pieces and weld metal are of, by first use.
+#[must_use]
+pub fn materials_used(domain: &Domain) -> Vec<usize> {
+    let mut used: Vec<usize> = Vec::new();
+    for &material in &domain.piece_materials {
+        if !used.contains(&material) {
+            used.push(material);
+        }
+    }
+    used
+}
+
+impl Section {
+    /// The material whose moduli the properties refer to; `None` where there is no other.
+    #[must_use]
+    pub fn reference_of(&self, domain: &Domain) -> Option<&Material> {
+        let used = materials_used(domain);
+        let reference = self.reference.or_else(|| used.first().copied())?;
+        let several = used.iter().any(|&material| material != reference);
+        several.then(|| self.materials.get(reference)).flatten()
+    }
 }
 
 /// A load case: section forces.

@@ -92,7 +92,13 @@ fn fields_read_back_with_their_sums() {
         let (read, solution) = solved(text);
         let units = &read.section.units;
         let fields = UnitFields::new(&solution, order).expect("one part");
-        let file = vtu::field(units, &solution, &fields, &FORCES);
+        let file = vtu::field(
+            units,
+            &solution,
+            &read.domain.piece_materials,
+            &fields,
+            &FORCES,
+        );
         if let Ok(folder) = std::env::var("SECTILE_FIGURES") {
             let name = format!("{folder}/{}-{order}.vtu", read.section.title);
             std::fs::write(name, &file).expect("a folder");
@@ -215,6 +221,7 @@ fn points_of_straight_cells_lie_where_the_format_wants_them() {
     let piece = read_back(&vtu::field(
         &read.section.units,
         &solution,
+        &read.domain.piece_materials,
         &fields,
         &FORCES,
     ));
@@ -231,4 +238,43 @@ fn points_of_straight_cells_lie_where_the_format_wants_them() {
         }
         assert!(cell.iter().skip(2).step_by(3).all(|z| *z == 0.0));
     }
+}
+
+#[test]
+fn cells_tell_piece_and_material() {
+    let text = "title = \"Lined\"\n\
+        [material.steel]\nE = 210000\nnu = 0.3\n[material.timber]\nE = 11000\nnu = 0.3\n\
+        [[piece]]\nname = \"core\"\nmaterial = \"timber\"\nbar = { at = [0, 0], b = 60, h = 40 }\n\
+        [[piece]]\nname = \"lid\"\nmaterial = \"steel\"\nbar = { at = [0, 25], b = 40, h = 10 }\n\
+        [[seam]]\nbetween = [\"lid\", \"core\"]\nfillet = 4\nat = \"both\"\n";
+    let (read, solution) = solved(text);
+    let fields = UnitFields::new(&solution, 2).expect("one part");
+    let file = vtu::field(
+        &read.section.units,
+        &solution,
+        &read.domain.piece_materials,
+        &fields,
+        &FORCES,
+    );
+    let grid = read_back(&file);
+    let of_cells = |name: &str| -> Vec<i64> {
+        let found = grid.data.cell.iter().find_map(|attribute| match attribute {
+            Attribute::DataArray(array) if array.name == name => Some(array.data.clone()),
+            _ => None,
+        });
+        found
+            .expect("the array is there")
+            .cast_into()
+            .expect("numbers")
+    };
+    let (piece, material) = (of_cells("piece"), of_cells("material"));
+    // Two pieces and two halves of weld metal at each end; the weld metal is of the first piece's material.
+    let wanted = [1, 0, 0, 0, 0, 0];
+    for (piece, material) in piece.iter().zip(&material) {
+        assert_eq!(*material, wanted[*piece as usize]);
+    }
+    let mut seen = piece.clone();
+    seen.sort_unstable();
+    seen.dedup();
+    assert_eq!(seen, [0, 1, 2, 3, 4, 5]);
 }

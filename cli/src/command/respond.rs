@@ -16,8 +16,8 @@ use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::probe::at_point;
 
-use crate::response::{Response, Responses};
-use crate::section::{SeamInput, Section};
+use crate::response::{Envelope, Response, Responses};
+use crate::section::{SeamInput, Section, materials_used};
 use crate::write::units::stress_per_force;
 
 /// Points along a triangle's side at which extremes are first sought.
@@ -39,19 +39,25 @@ pub fn respond(
     }
     let fields = UnitFields::new(solution, DIVISIONS)?;
     let quotable = Quotable::new(solution, &fields, exclusion);
+    let used = materials_used(domain);
+    let by_material: Vec<(usize, Quotable)> = used
+        .iter()
+        .filter(|_| used.len() > 1)
+        .map(|&material| {
+            let keep = |piece: u32| domain.piece_materials.get(piece as usize) == Some(&material);
+            (material, quotable.within(solution, &fields, keep))
+        })
+        .collect();
     let place = |q| solution.get(q).map_or(0.0, |f| f.value);
     let centre = Point::new(place(Quantity::ShearCentreX), place(Quantity::ShearCentreY));
     let stress = stress_per_force(&section.units);
     let flows = SeamFlows::new(solution, domain, &fields.superposition)?;
     let layings: Vec<Laying> = section.seams.iter().map(|s| laying(s, stress)).collect();
-    let yields: Vec<Option<f64>> = section
-        .pieces
+    // By piece of the domain, weld metal included; the file's unit of stress into force per length².
+    let yields: Vec<Option<f64>> = domain
+        .piece_materials
         .iter()
-        .map(|p| {
-            let yield_stress = section.materials.get(p.material)?.yield_stress?;
-            // The file's unit of stress into force per length².
-            Some(yield_stress / stress)
-        })
+        .map(|&material| Some(section.materials.get(material)?.yield_stress? / stress))
         .collect();
 
     // The torque of each action's line of action comes first: combinations add it up.
@@ -103,7 +109,17 @@ pub fn respond(
         .into_par_iter()
         .map(|case| {
             let forces = case.forces;
-            let extremes = extremes(solution, &fields, &quotable, &forces, &yields);
+            let within = |quotable| extremes(solution, &fields, quotable, &forces, &yields);
+            let materials: Vec<(usize, Extremes)> = by_material
+                .iter()
+                .map(|(material, quotable)| (*material, within(quotable)))
+                .collect();
+            let extremes = if materials.is_empty() {
+                within(&quotable)
+            } else {
+                let all = envelope(materials.iter().map(|(_, extremes)| extremes));
+                Extremes(all.into_iter().map(|(m, _, e)| (m, e)).collect())
+            };
             Response {
                 load_factor: load_factor_to_yield(&extremes),
                 energy_error: fields.energy_error(&forces),
@@ -135,15 +151,25 @@ pub fn respond(
                 at: case.at,
                 forces,
                 extremes,
+                materials,
             }
         })
         .collect();
-    let envelope = envelope(&list);
+    let all = envelope(list.iter().map(|r| &r.extremes));
+    let materials = by_material
+        .iter()
+        .enumerate()
+        .map(|(k, (material, _))| {
+            let own = list.iter().filter_map(|r| r.materials.get(k));
+            (*material, envelope(own.map(|(_, extremes)| extremes)))
+        })
+        .collect();
     let seams = (0..domain.seams.len()).map(|k| hardest(&list, k)).collect();
     Some(Responses {
         list,
         fields,
-        envelope,
+        envelope: all,
+        materials,
         seams,
         exclusion,
     })
@@ -168,14 +194,13 @@ fn hardest(list: &[Response], seam: usize) -> usize {
     )
 }
 
-/// The worst of each measure and the response that it belongs to; the first of equals.
-fn envelope(list: &[Response]) -> Vec<(Measure, usize, Extreme)> {
+/// The worst of each measure, and which of the `list` it belongs to; the first of equals.
+fn envelope<'a>(list: impl Iterator<Item = &'a Extremes> + Clone) -> Envelope {
     let mut out = Vec::new();
     for &measure in Measure::ALL {
         let mut worst: Option<(usize, &Extreme)> = None;
-        for (i, response) in list.iter().enumerate() {
-            let Extremes(own) = &response.extremes;
-            let Some((_, extreme)) = own.iter().find(|(m, _)| *m == measure) else {
+        for (i, extremes) in list.clone().enumerate() {
+            let Some(extreme) = extremes.get(measure) else {
                 continue;
             };
             let worse = worst.is_none_or(|(_, w)| {

@@ -5,6 +5,7 @@ use std::path::{Path, PathBuf};
 use std::time::Instant;
 
 use clap::Args;
+use sectile_solver::material::Material;
 use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
 use sectile_solver::stress::extreme::DEFAULT_EXCLUSION;
@@ -17,9 +18,10 @@ use crate::figure;
 use crate::figure::style::{Drawing, Style};
 use crate::read::{ReadSection, section_from_path, show};
 use crate::response::{Names, Responses};
+use crate::section::materials_used;
 use crate::write::json::{Results, Run};
 use crate::write::slug::{cut_files, slugs};
-use crate::write::{actions, csv, digits, files, seams, table, units, vtu};
+use crate::write::{actions, csv, digits, files, materials, seams, table, units, vtu};
 
 /// Options of `solve`.
 #[derive(Args, Clone, Debug)]
@@ -274,7 +276,13 @@ impl Answer {
             cuts: &self.read.section.cuts,
             seams: &self.read.domain.seams,
             stated: &self.read.section.seams,
+            materials: &self.read.section.materials,
         }
+    }
+
+    /// The material that the properties of a section of several refer to.
+    fn reference(&self) -> Option<&Material> {
+        self.read.section.reference_of(&self.read.domain)
     }
 
     fn results(&self, run: &Run) -> Results {
@@ -282,6 +290,16 @@ impl Answer {
         let units = &section.units;
         let results = Results::new(&section.title, &self.source, units, &self.solution, run)
             .with_seams(&self.names(), self.responses.as_ref());
+        let results = match self.reference() {
+            Some(reference) => results.with_materials(
+                units,
+                &self.names(),
+                &materials_used(&self.read.domain),
+                &reference.name,
+                self.responses.as_ref(),
+            ),
+            None => results,
+        };
         match &self.responses {
             None => results,
             Some(responses) => {
@@ -342,7 +360,7 @@ fn write_folder(
     );
     written.push((
         "properties.csv".into(),
-        csv::properties(&section.units, &answer.solution).into_bytes(),
+        csv::properties(&section.units, &answer.solution, answer.reference()).into_bytes(),
     ));
     let run = Run {
         write: write_start.elapsed().as_secs_f64(),
@@ -369,6 +387,10 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
         "stresses.csv".to_string(),
         actions::stresses_csv(units, &names, responses).into_bytes(),
     )];
+    if !responses.materials.is_empty() {
+        let csv = materials::csv(units, &names, responses);
+        out.push(("materials.csv".to_string(), csv.into_bytes()));
+    }
     if !names.seams.is_empty() {
         let csv = seams::csv(units, &names, responses);
         out.push(("seams.csv".to_string(), csv.into_bytes()));
@@ -387,7 +409,14 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
         ));
         out.push((
             format!("field-{slug}.vtu"),
-            vtu::field(units, &answer.solution, nodes, &response.forces).into_bytes(),
+            vtu::field(
+                units,
+                &answer.solution,
+                &answer.read.domain.piece_materials,
+                nodes,
+                &response.forces,
+            )
+            .into_bytes(),
         ));
     }
     let cut_slugs: Vec<String> = slugs(names.cuts.iter().map(|c| c.name.as_str()));
@@ -414,7 +443,13 @@ fn report(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
             width: super::terminal_width(),
             styled: super::styled(&stdout()),
         };
-        text = table::render(&section.title, &section.units, &answer.solution, look);
+        text = table::render(
+            &section.title,
+            &section.units,
+            &answer.solution,
+            answer.reference(),
+            look,
+        );
         if let Some(responses) = &answer.responses {
             text.push('\n');
             text.push_str(&table::actions::render(
@@ -424,10 +459,15 @@ fn report(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
                 responses,
                 look,
             ));
-            let seams = table::seams::render(&section.units, &answer.names(), responses, look);
-            if !seams.is_empty() {
-                text.push('\n');
-                text.push_str(&seams);
+            let (units, names) = (&section.units, answer.names());
+            for part in [
+                table::materials::render(units, &names, responses, look),
+                table::seams::render(units, &names, responses, look),
+            ] {
+                if !part.is_empty() {
+                    text.push('\n');
+                    text.push_str(&part);
+                }
             }
         }
         if let Some(folder) = folder {

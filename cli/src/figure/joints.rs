@@ -11,6 +11,7 @@ use super::rect::Rect;
 use super::section::MATERIAL;
 use super::text::{self, SMALL};
 use super::view::View;
+use crate::section::materials_used;
 
 /// Fills of materials, the first that of a section of one; they differ in lightness too.
 const MATERIALS: [&str; 6] = [
@@ -23,21 +24,9 @@ const THROAT: &str = "#ffffff";
 /// A sample of the key, mm.
 const SWATCH: (f64, f64) = (5.0, 2.8);
 
-/// The materials that pieces are of, by first use.
-#[must_use]
-pub fn used(domain: &Domain) -> Vec<usize> {
-    let mut used: Vec<usize> = Vec::new();
-    for &material in &domain.piece_materials {
-        if !used.contains(&material) {
-            used.push(material);
-        }
-    }
-    used
-}
-
 /// Fills the pieces, those of each material in its own tone.
 pub fn fill(page: &mut Page, domain: &Domain, view: &View) {
-    for (k, material) in used(domain).into_iter().enumerate() {
+    for (k, material) in materials_used(domain).into_iter().enumerate() {
         let of_it = |piece: u32| domain.piece_materials.get(piece as usize) == Some(&material);
         let tone = MATERIALS[k % MATERIALS.len()];
         page.path(outline::region_path(domain, view, of_it), Pen::fill(tone));
@@ -121,7 +110,7 @@ enum Sample {
 /// Draws the key below the cursor, where there is something to tell apart, and moves the cursor.
 /// `materials`: names, by index.
 pub fn key(page: &mut Page, domain: &Domain, materials: &[&str]) {
-    let used = used(domain);
+    let used = materials_used(domain);
     let mut entries: Vec<(Sample, String)> = Vec::new();
     if used.len() > 1 {
         for (k, &material) in used.iter().enumerate() {

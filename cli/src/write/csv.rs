@@ -3,9 +3,11 @@
 //! The caution is the last row, key `caution`, its text under `meaning`: a comment line before the
 //! header would hide the header from spreadsheets.
 
+use sectile_solver::material::Material;
 use sectile_solver::solution::Solution;
 
 use super::json::number;
+use super::materials::referred;
 use super::{CAUTION, units, wording};
 use crate::section::Units;
 
@@ -14,9 +16,10 @@ pub const COLUMNS: [&str; 8] = [
     "key", "symbol", "value", "low", "high", "trust", "unit", "meaning",
 ];
 
-/// The text of `properties.csv`, UTF-8 without a byte-order mark, lines ended by `\n`.
+/// The text of `properties.csv`; `reference`: the material that the moduli of a section of several refer
+/// to, told in a row of that key. UTF-8 without a byte-order mark, lines ended by `\n`.
 #[must_use]
-pub fn properties(units: &Units, solution: &Solution) -> String {
+pub fn properties(units: &Units, solution: &Solution, reference: Option<&Material>) -> String {
     let mut rows: Vec<[String; 8]> = vec![COLUMNS.map(String::from)];
     for (quantity, figure) in &solution.properties {
         rows.push([
@@ -29,6 +32,12 @@ pub fn properties(units: &Units, solution: &Solution) -> String {
             units::ascii(quantity.dimension(), units),
             quantity.description().into(),
         ]);
+    }
+    if let Some(reference) = reference {
+        let mut row: [String; 8] = Default::default();
+        row[0] = "reference".into();
+        row[7] = referred(units, reference);
+        rows.push(row);
     }
     let mut last: [String; 8] = Default::default();
     last[0] = "caution".into();
@@ -53,7 +62,7 @@ mod tests {
     #[test]
     fn rows_read_back_to_the_last_bit_and_the_caution_comes_last() {
         let solution = sample_solution();
-        let text = properties(&sample_units(), &solution);
+        let text = properties(&sample_units(), &solution, None);
         let mut reader = ::csv::Reader::from_reader(text.as_bytes());
         assert_eq!(reader.headers().unwrap(), COLUMNS.as_slice());
         let rows: Vec<_> = reader.records().map(Result::unwrap).collect();

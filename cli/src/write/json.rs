@@ -14,9 +14,11 @@ use crate::response::{Names, Responses};
 use crate::section::Units;
 
 pub mod action;
+pub mod material;
 pub mod seam;
 
 use action::{Action, Exclusion, Extremes};
+use material::Material;
 use seam::Seam;
 
 /// What the command knows beside the solution.
@@ -51,6 +53,12 @@ pub struct Results {
     pub tolerance_reached: bool,
     /// The properties by key, in reading order.
     pub properties: Properties,
+    /// The material whose moduli the properties refer to, where there are several.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reference: Option<String>,
+    /// The materials, where there are several.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub materials: Vec<Material>,
     /// The seams that join the pieces.
     #[serde(skip_serializing_if = "Vec::is_empty")]
     pub seams: Vec<Seam>,
@@ -200,6 +208,8 @@ impl Results {
             },
             tolerance_reached: solution.reached,
             properties: Properties(properties),
+            reference: None,
+            materials: Vec::new(),
             seams: Vec::new(),
             actions: Vec::new(),
             envelope: None,
@@ -232,6 +242,24 @@ impl Results {
                     at: note.at.map(|p| [no_minus_zero(p.x), no_minus_zero(p.y)]),
                 })
                 .collect(),
+        }
+    }
+
+    /// With the materials of a section of several: all that are `used`, and the one that the properties
+    /// refer to.
+    #[must_use]
+    pub fn with_materials(
+        self,
+        units: &Units,
+        names: &Names,
+        used: &[usize],
+        reference: &str,
+        responses: Option<&Responses>,
+    ) -> Self {
+        Self {
+            reference: Some(reference.into()),
+            materials: material::materials(units, names, used, responses),
+            ..self
         }
     }
 

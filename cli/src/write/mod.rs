@@ -7,6 +7,7 @@ pub mod csv;
 pub mod digits;
 pub mod files;
 pub mod json;
+pub mod materials;
 pub mod seams;
 pub mod slug;
 pub mod table;

@@ -3,6 +3,7 @@
 
 pub mod actions;
 mod columns;
+pub mod materials;
 pub mod seams;
 
 use std::collections::BTreeSet;
@@ -13,10 +14,12 @@ use comfy_table::{
 };
 
 use sectile_solver::figure::Trust;
+use sectile_solver::material::Material;
 use sectile_solver::quantity::{Group, Quantity};
 use sectile_solver::solution::{Note, Solution};
 
 use super::digits::{self, Printed, times_power};
+use super::materials::referred;
 use super::{CAUTION, units, wording};
 use crate::section::Units;
 
@@ -29,10 +32,16 @@ pub struct Look {
     pub styled: bool,
 }
 
-/// The whole text: title, mesh, properties by group, what the words promise, findings, caution. It
+/// The whole text: title, mesh, the material that a section of several refers to, properties by group, what the words promise, findings, caution. It
 /// ends in a line break.
 #[must_use]
-pub fn render(title: &str, units: &Units, solution: &Solution, look: Look) -> String {
+pub fn render(
+    title: &str,
+    units: &Units,
+    solution: &Solution,
+    reference: Option<&Material>,
+    look: Look,
+) -> String {
     let look = Look {
         width: look.width.max(72),
         ..look
@@ -43,6 +52,9 @@ pub fn render(title: &str, units: &Units, solution: &Solution, look: Look) -> St
         .map(|line| bold(&line, look.styled))
         .collect::<Vec<_>>();
     lines.extend(wrap(&mesh_line(units, solution), width, ""));
+    if let Some(reference) = reference {
+        lines.extend(wrap(&referred(units, reference), width, ""));
+    }
     lines.push(String::new());
     lines.extend(properties(units, solution, look));
     lines.push(String::new());
@@ -271,6 +283,7 @@ mod tests {
             "Boatyard hoist runway",
             &sample_units(),
             &sample_solution(),
+            None,
             Look { width, styled },
         )
     }

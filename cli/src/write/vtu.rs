@@ -21,11 +21,13 @@ use crate::section::Units;
 const LAGRANGE_TRIANGLE: u8 = 69;
 
 /// The text of `field-<action>.vtu`: points in the file's unit of length with z = 0, stresses as point
-/// data named with their unit, the piece of each cell as cell data.
+/// data named with their unit, piece and material of each cell, from 0 in the order of the file, as cell
+/// data; weld metal follows the pieces. `materials`: by piece.
 #[must_use]
 pub fn field(
     units: &Units,
     solution: &Solution,
+    materials: &[usize],
     fields: &UnitFields,
     forces: &SectionForces,
 ) -> String {
@@ -79,6 +81,13 @@ pub fn field(
     out.push_str("</PointData>\n<CellData>\n");
     let pieces: Vec<i64> = solution.mesh.piece.iter().map(|&p| i64::from(p)).collect();
     integers(&mut out, "piece", &pieces);
+    let materials: Vec<i64> = solution
+        .mesh
+        .piece
+        .iter()
+        .map(|&p| materials.get(p as usize).map_or(-1, |&m| m as i64))
+        .collect();
+    integers(&mut out, "material", &materials);
     out.push_str("</CellData>\n<Points>\n");
     floats(
         &mut out,

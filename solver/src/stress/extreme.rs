@@ -77,6 +77,27 @@ impl Quotable {
             .collect();
         Self { allowed, circles }
     }
+
+    /// Those of these points that lie in pieces for which `keep` holds.
+    #[must_use]
+    pub fn within(
+        &self,
+        solution: &Solution,
+        fields: &UnitFields,
+        keep: impl Fn(u32) -> bool,
+    ) -> Self {
+        let per = fields.lattice.points.len();
+        let allowed = self
+            .allowed
+            .iter()
+            .enumerate()
+            .map(|(i, allowed)| *allowed && keep(solution.mesh.piece[i / per]))
+            .collect();
+        Self {
+            allowed,
+            circles: self.circles.clone(),
+        }
+    }
 }
 
 fn is_allowed(circles: &[(Point, f64)], p: Point) -> bool {

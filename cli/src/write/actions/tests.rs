@@ -81,6 +81,7 @@ impl Sample {
                     cut::cut(&solution, &fields, &forces, cuts[0].from, cuts[0].to).unwrap(),
                 )],
                 seams: Vec::new(),
+                materials: Vec::new(),
             }
         };
         let list = vec![
@@ -113,6 +114,7 @@ impl Sample {
                 list,
                 fields,
                 envelope,
+                materials: Vec::new(),
                 seams: Vec::new(),
                 exclusion,
             },
@@ -127,6 +129,7 @@ impl Sample {
             cuts: &self.cuts,
             seams: &[],
             stated: &[],
+            materials: &[],
         }
     }
 }

@@ -3,14 +3,15 @@
 use serde::Serialize;
 use serde::ser::{SerializeMap, Serializer};
 
-use sectile_solver::stress::extreme::Extreme as Found;
+use sectile_solver::stress::extreme::{Extreme as Found, Extremes as FoundExtremes};
 use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::state::Stress;
 
+use super::material::{Within, within};
 use super::no_minus_zero as z;
 use super::seam::{Demand, demands};
-use crate::response::{Names, Response, Responses};
+use crate::response::{Envelope, Names, Response, Responses};
 use crate::section::Units;
 use crate::write::actions::scaled;
 use crate::write::cause;
@@ -46,6 +47,9 @@ pub struct Action {
     pub cuts: Vec<Cut>,
     /// What the seams have to transfer.
     pub seams: Vec<Demand>,
+    /// The extremes in each material by itself, where there are several.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub materials: Vec<Within>,
 }
 
 /// Section forces: N, V in the unit of force; M, T, Tw in the unit of moment; B in force × length².
@@ -145,7 +149,17 @@ pub fn actions(units: &Units, names: &Names, responses: &Responses) -> Vec<Actio
 /// The worst of each measure over all actions, with the action.
 #[must_use]
 pub fn envelope(units: &Units, names: &Names, responses: &Responses) -> Extremes {
-    let entries = responses.envelope.iter().map(|(measure, index, found)| {
+    envelope_of(units, names, responses, &responses.envelope)
+}
+
+/// An envelope with the actions that govern.
+pub(super) fn envelope_of(
+    units: &Units,
+    names: &Names,
+    responses: &Responses,
+    envelope: &Envelope,
+) -> Extremes {
+    let entries = envelope.iter().map(|(measure, index, found)| {
         let mut entry = extreme(units, names, *measure, found);
         entry.action = responses.list.get(*index).map(|r| r.name.clone());
         (measure.key(), entry)
@@ -166,14 +180,7 @@ fn action(units: &Units, names: &Names, response: &Response) -> Action {
         load_factor_to_yield: response.load_factor,
         energy_error: response.energy_error,
         governing: governing.map(|(measure, _)| measure.key()),
-        extremes: Extremes(
-            response
-                .extremes
-                .0
-                .iter()
-                .map(|(m, e)| (m.key(), extreme(units, names, *m, e)))
-                .collect(),
-        ),
+        extremes: extremes_of(units, names, &response.extremes),
         probes: probes(units, names, response),
         cuts: response
             .cuts
@@ -189,6 +196,7 @@ fn action(units: &Units, names: &Names, response: &Response) -> Action {
             })
             .collect(),
         seams: demands(units, names, &response.seams),
+        materials: within(units, names, response),
     }
 }
 
@@ -204,6 +212,15 @@ fn forces(units: &Units, f: &SectionForces) -> Forces {
         b: z(f.b),
         tw: z(f.tw * moment),
     }
+}
+
+/// Extremes by measure.
+pub(super) fn extremes_of(units: &Units, names: &Names, extremes: &FoundExtremes) -> Extremes {
+    let list = extremes.0.iter();
+    Extremes(
+        list.map(|(m, e)| (m.key(), extreme(units, names, *m, e)))
+            .collect(),
+    )
 }
 
 fn extreme(units: &Units, names: &Names, measure: Measure, found: &Found) -> Extreme {

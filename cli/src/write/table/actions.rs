@@ -4,7 +4,7 @@ use sectile_solver::solution::Solution;
 use sectile_solver::stress::extreme::Extreme;
 use sectile_solver::stress::measure::Measure;
 
-use super::columns::{columns, short};
+use super::columns::{columns, place, short};
 use super::{Look, bold, wrap};
 use crate::response::{Names, Response, Responses};
 use crate::section::Units;
@@ -203,10 +203,6 @@ fn mostly(measure: Measure, extreme: &Extreme) -> String {
     cause::main(measure, extreme).map_or("–".into(), |c| {
         format!("{} {:.0} %", c.part, 100.0 * c.share)
     })
-}
-
-fn place(extreme: &Extreme) -> String {
-    format!("({}, {})", short(extreme.at.x), short(extreme.at.y))
 }
 
 #[cfg(test)]

@@ -4,6 +4,8 @@ use comfy_table::{
     Attribute, Cell, CellAlignment, ColumnConstraint, ContentArrangement, Table, Width, presets,
 };
 
+use sectile_solver::stress::extreme::Extreme;
+
 use super::{Look, style};
 use crate::write::digits;
 
@@ -82,4 +84,9 @@ pub fn columns(
 /// A number to four digits.
 pub fn short(x: f64) -> String {
     digits::short(x, 4).replace('−', "-")
+}
+
+/// Where an extreme is.
+pub fn place(extreme: &Extreme) -> String {
+    format!("({}, {})", short(extreme.at.x), short(extreme.at.y))
 }
