@@ -162,6 +162,9 @@ fn envelope_table(units: &Units, names: &Names, responses: &Responses, look: Loo
     columns(&heads, &rows, &numbers, look)
 }
 
+/// So much of a section's stress is lost in rounding where parts of it cancel.
+const ROUNDING: f64 = 1e-7;
+
 /// What crosses the cuts, by cut and action.
 fn crossings(
     units: &Units,
@@ -181,12 +184,16 @@ fn crossings(
     for (c, cut) in names.cuts.iter().enumerate() {
         for &i in shown {
             let response = &responses.list[i];
+            let stress = response.extremes.get(Measure::VonMises);
             for (_, result) in response.cuts.iter().filter(|(index, _)| *index == c) {
+                // What is rounding beside the stresses of the section is nothing.
+                let least = ROUNDING * result.material * stress.map_or(0.0, |e| e.value);
+                let tidy = |x: f64| short(if x.abs() > least { x } else { 0.0 });
                 rows.push(vec![
                     cut.name.clone(),
                     response.name.clone(),
-                    short(result.shear_flow),
-                    short(result.normal_force),
+                    tidy(result.shear_flow),
+                    tidy(result.normal_force),
                 ]);
             }
         }
