@@ -224,3 +224,59 @@ fn the_needed_leg_is_enough() {
     assert!(used > 0.98 && used <= 1.0, "{used}");
     assert!(again.figure.contains("weld metal"));
 }
+
+#[test]
+fn declared_units_change_no_demand() {
+    // Every quantity carries its own unit; bare numbers have none.
+    let text = |units: &str| {
+        format!(
+            "[units]\n{units}\n[material.steel]\nE = \"210 GPa\"\nnu = 0.3\n\
+             [[piece]]\nname = \"flat\"\n\
+             bar = {{ at = [0, \"-10 mm\"], b = \"120 mm\", h = \"20 mm\" }}\n\
+             [[piece]]\nname = \"cover\"\n\
+             bar = {{ at = [0, \"7 mm\"], b = \"70 mm\", h = \"12 mm\" }}\n\
+             [[seam]]\nname = \"edge\"\nbetween = [\"flat\", \"cover\"]\nfillet = [\"6 mm\", \"8 mm\"]\n\
+             at = \"both\"\ngap = \"1.5 mm\"\nallowable = \"90 MPa\"\ndirect = [0, \"30 N/mm\"]\n\
+             length = \"50 mm\"\npitch = \"120 mm\"\n\
+             [[action]]\nname = \"load\"\nVy = \"-21 kN\"\nT = \"0.4 kN m\"\n"
+        )
+    };
+    let metric = run(&text("length = \"mm\"\nforce = \"N\"\nstress = \"MPa\""));
+    let imperial = run(&text("length = \"in\"\nforce = \"kip\"\nstress = \"ksi\""));
+    // 1 in = 25.4 mm; 1 kip = 4448.2216 N, so 1 kip/in = 175.12684 N/mm and 1 ksi = 6.8947573 MPa.
+    for seam in ["edge, end 1", "edge, end 2"] {
+        let (a, b) = (metric.demand("load", seam), imperial.demand("load", seam));
+        for (key, unit) in [
+            ("flow", 175.126_84),
+            ("resultant", 175.126_84),
+            ("throat", 25.4),
+            ("throat_stress", 6.894_757_3),
+            ("utilisation", 1.0),
+            ("leg_needed", 25.4),
+            ("second_leg_needed", 25.4),
+        ] {
+            let get = |demand: &Value| demand[key].as_f64().unwrap();
+            near(unit * get(b), get(a), 1e-6);
+        }
+    }
+}
+
+#[test]
+fn the_number_of_threads_changes_no_demand() {
+    let folder = tempfile::tempdir().unwrap();
+    let file = folder.path().join("bar.section.toml");
+    fs::write(&file, flats("allowable = 40")).unwrap();
+    let on = |threads: &str| {
+        let out = folder.path().join("out");
+        Command::new(env!("CARGO_BIN_EXE_sectile-as-tested"))
+            .env("RAYON_NUM_THREADS", threads)
+            .args(["solve", "--quiet", "--tolerance", "1e-3"])
+            .arg(&file)
+            .arg("--out")
+            .arg(&out)
+            .assert()
+            .success();
+        ["seams.csv", "stresses.csv", "section.svg"].map(|name| fs::read(out.join(name)).unwrap())
+    };
+    assert!(on("1") == on("3"));
+}

@@ -11,7 +11,7 @@ use crate::read::near::{listed, nearest};
 
 /// The forms, the one that is written when none is asked for first.
 pub const FORMS: &[&str] = &[
-    "outline", "I", "channel", "angle", "tee", "box", "plates", "tube",
+    "outline", "I", "channel", "angle", "tee", "box", "plates", "tube", "welded",
 ];
 
 /// A form that there is no starter file for.
@@ -41,6 +41,7 @@ pub fn starter(form: &str) -> Result<String, UnknownForm> {
         Some("box") => include_str!("starter/box.section.toml"),
         Some("plates") => include_str!("starter/plates.section.toml"),
         Some("tube") => include_str!("starter/tube.section.toml"),
+        Some("welded") => include_str!("starter/welded.section.toml"),
         _ => {
             return Err(UnknownForm {
                 given: form.to_owned(),
@@ -57,7 +58,7 @@ pub fn starter(form: &str) -> Result<String, UnknownForm> {
     sectile new                        an outline of corners, arcs and a hole, to standard output\n  \
     sectile new I --out beam.section.toml")]
 pub struct NewArgs {
-    /// The form to start from: outline, I, channel, angle, tee, box, plates or tube.
+    /// The form to start from: outline, I, channel, angle, tee, box, plates, tube or welded.
     #[arg(default_value = "outline", value_name = "FORM")]
     pub form: String,
     /// Write to this file, which must not exist yet, instead of standard output.
@@ -118,6 +119,6 @@ mod tests {
     fn an_unknown_form_names_the_nearest() {
         let fault = starter("chanel").expect_err("there is none");
         assert_eq!(fault.near, "channel");
-        assert!(fault.to_string().contains("`tube`"));
+        assert!(fault.to_string().contains("`welded`"));
     }
 }
