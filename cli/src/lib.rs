@@ -3,6 +3,7 @@
 pub mod command;
 pub mod figure;
 pub mod read;
+pub mod report;
 pub mod response;
 pub mod section;
 pub mod write;

@@ -17,6 +17,7 @@ use super::respond::respond;
 use crate::figure;
 use crate::figure::style::{Drawing, Style};
 use crate::read::{ReadSection, section_from_path, show};
+use crate::report;
 use crate::response::{Names, Responses};
 use crate::section::materials_used;
 use crate::write::json::{Results, Run};
@@ -67,6 +68,10 @@ pub struct SolveArgs {
     /// Ask for load factors to first yield: a material without a yield stress is then an error.
     #[arg(long)]
     pub to_yield: bool,
+    /// Write the whole answer as one page too, report.html, with a sheet to try other section forces,
+    /// and as report.md.
+    #[arg(long)]
+    pub report: bool,
     /// Write every figure as PNG too, at this resolution.
     #[arg(long, value_parser = resolution, value_name = "DPI")]
     pub png: Option<f64>,
@@ -202,7 +207,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
     run.write = write_start.elapsed().as_secs_f64();
     run.total = start.elapsed().as_secs_f64();
     run.peak_memory = peak_memory();
-    report(args, folder.as_deref(), &answer, &run);
+    print(args, folder.as_deref(), &answer, &run);
     let overstressed = answer
         .responses
         .as_ref()
@@ -285,6 +290,21 @@ impl Answer {
         self.read.section.reference_of(&self.read.domain)
     }
 
+    fn report<'a>(&'a self, figures: &'a [(String, String)], exclusion: f64) -> report::Input<'a> {
+        report::Input {
+            source: &self.source,
+            text: &self.read.places.text,
+            section: &self.read.section,
+            domain: &self.read.domain,
+            solution: &self.solution,
+            responses: self.responses.as_ref(),
+            names: self.names(),
+            reference: self.reference(),
+            figures,
+            exclusion,
+        }
+    }
+
     fn results(&self, run: &Run) -> Results {
         let section = &self.read.section;
         let units = &section.units;
@@ -353,10 +373,11 @@ fn write_folder(
             written.push((name.replace(".svg", ".png"), png));
         }
     }
+    let text_figures = figures;
     written.extend(
-        figures
-            .into_iter()
-            .map(|(name, svg)| (name, svg.into_bytes())),
+        text_figures
+            .iter()
+            .map(|(name, svg)| (name.clone(), svg.clone().into_bytes())),
     );
     written.push((
         "properties.csv".into(),
@@ -372,6 +393,11 @@ fn write_folder(
         files::RESULTS.into(),
         answer.results(&run).pretty().into_bytes(),
     ));
+    if args.report {
+        let input = answer.report(&text_figures, args.corner_distance);
+        written.push(("report.html".into(), report::html(&input).into_bytes()));
+        written.push(("report.md".into(), report::markdown(&input).into_bytes()));
+    }
     let named: Vec<(&str, &[u8])> = written
         .iter()
         .map(|(name, bytes)| (name.as_str(), bytes.as_slice()))
@@ -432,7 +458,7 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
     out
 }
 
-fn report(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
+fn print(args: &SolveArgs, folder: Option<&Path>, answer: &Answer, run: &Run) {
     let section = &answer.read.section;
     let mut text = String::new();
     if args.json {

@@ -15,7 +15,8 @@ const SLACK: f64 = 1e-6;
 #[derive(Clone, Debug, PartialEq)]
 pub struct Places {
     pub(super) file: String,
-    pub(super) text: String,
+    /// The text of the file.
+    pub text: String,
     /// By material: its name.
     pub(super) materials: Vec<Range<usize>>,
     /// By probe: its point.

@@ -70,6 +70,15 @@ pub(crate) fn beyond(distance: f64, least: f64) -> f64 {
     }
 }
 
+/// The box about a piece, `[x_min, x_max, y_min, y_max]`.
+#[must_use]
+pub fn piece_extent(piece: &Piece) -> [f64; 4] {
+    let sides = &piece.outline.outer.sides;
+    sides.iter().fold(crate::tree::EMPTY, |around, side| {
+        crate::tree::hull(around, edge::extent(side, 0.0))
+    })
+}
+
 /// Makes one valid domain of the pieces: shared sides and parts of sides become interfaces.
 ///
 /// Sides are compared on their true lines and circles, with a tolerance of [`TOLERANCE`] times the

@@ -1,0 +1,241 @@
+// Unit stress fields at the nodes of every triangle, and their superposition.
+//
+// Each node carries twelve numbers: normal stress of unit N, Mx, My, B, then the two shear stresses of
+// unit Vx, Vy, T and Tw, in the declared units. Inside a triangle they are polynomials through its nodes,
+// so a value between nodes is as good as one on them.
+
+const FORCES = ["N", "Vx", "Vy", "Mx", "My", "T", "B"];
+const COMPONENTS = 12;
+
+/** Base64 to an array of 32-bit floats (little-endian, as every browser's machine is). */
+function floats(text) {
+  const raw = atob(text);
+  const bytes = new Uint8Array(raw.length);
+  for (let i = 0; i < raw.length; i += 1) bytes[i] = raw.charCodeAt(i);
+  return new Float32Array(bytes.buffer);
+}
+
+/** Barycentric numbers (i, j) of a lattice's points: row by row, i to vertex 1, j to vertex 2. */
+function lattice(n) {
+  const points = [];
+  for (let i = 0; i <= n; i += 1) for (let j = 0; j <= n - i; j += 1) points.push([i, j, n - i - j]);
+  return points;
+}
+
+/** The small triangles of a lattice, as indices into its points. */
+function latticeCells(n) {
+  const index = (i, j) => i * (n + 1) - (i * (i - 1)) / 2 + j;
+  const cells = [];
+  for (let i = 0; i < n; i += 1) {
+    for (let j = 0; j < n - i; j += 1) {
+      cells.push([index(i, j), index(i + 1, j), index(i, j + 1)]);
+      if (i + j + 1 < n) cells.push([index(i + 1, j), index(i + 1, j + 1), index(i, j + 1)]);
+    }
+  }
+  return cells;
+}
+
+/** Values of the polynomials that belong to the nodes of degree n, at (xi, eta). */
+function shapes(n, nodes, xi, eta) {
+  const part = (count, x) => {
+    let product = 1;
+    for (let m = 0; m < count; m += 1) product *= (n * x - m) / (m + 1);
+    return product;
+  };
+  const rest = 1 - xi - eta;
+  return nodes.map(([i, j, k]) => part(i, xi) * part(j, eta) * part(k, rest));
+}
+
+/** The section's fields as the page carries them. */
+class Field {
+  constructor(data) {
+    this.n = data.divisions;
+    this.nodes = lattice(this.n);
+    this.per = this.nodes.length;
+    this.units = floats(data.fields);
+    this.places = floats(data.positions);
+    this.origin = data.origin;
+    this.piece = data.piece;
+    this.pieces = data.pieces;
+    this.yields = data.yields;
+    this.excluded = data.excluded;
+    this.triangles = this.piece.length;
+  }
+
+  /** Position of node p of triangle t. */
+  place(t, p) {
+    const k = 2 * (t * this.per + p);
+    return [this.origin[0] + this.places[k], this.origin[1] + this.places[k + 1]];
+  }
+
+  /** Place and stress in triangle t where the nodes' polynomials have the values `shape`. */
+  at(t, shape, forces) {
+    let [x, y, sigma, tauX, tauY] = [0, 0, 0, 0, 0];
+    for (let p = 0; p < this.per; p += 1) {
+      const s = shape[p];
+      if (s === 0) continue;
+      const place = 2 * (t * this.per + p);
+      x += s * this.places[place];
+      y += s * this.places[place + 1];
+      const u = COMPONENTS * (t * this.per + p);
+      const c = this.units;
+      sigma += s * (forces.N * c[u] + forces.Mx * c[u + 1] + forces.My * c[u + 2] + forces.B * c[u + 3]);
+      tauX += s * (forces.Vx * c[u + 4] + forces.Vy * c[u + 6] + forces.T * c[u + 8]);
+      tauY += s * (forces.Vx * c[u + 5] + forces.Vy * c[u + 7] + forces.T * c[u + 9]);
+    }
+    return { at: [this.origin[0] + x, this.origin[1] + y], sigma, tauX, tauY };
+  }
+
+  /** Whether a stress there may be quoted: not close to a corner where it has no limit. */
+  quotable([x, y]) {
+    return this.excluded.every(([cx, cy, r]) => Math.hypot(x - cx, y - cy) >= r);
+  }
+
+  /** The triangle and reference coordinates of a point, or null outside of the material. */
+  locate(point) {
+    let best = null;
+    for (let t = 0; t < this.triangles; t += 1) {
+      const found = this.invert(t, point);
+      if (found && (!best || found.miss < best.miss)) best = { t, ...found };
+      if (best && best.miss === 0) break;
+    }
+    return best;
+  }
+
+  invert(t, point) {
+    // Corners of the lattice: rest = n, i = n, j = n.
+    const corner = [0, this.per - 1, this.n].map((p) => this.place(t, p));
+    const [a, b, c] = corner;
+    const size = Math.max(
+      Math.hypot(b[0] - a[0], b[1] - a[1]),
+      Math.hypot(c[0] - a[0], c[1] - a[1]),
+      Math.hypot(c[0] - b[0], c[1] - b[1]),
+    );
+    if (corner.every((q) => Math.hypot(q[0] - point[0], q[1] - point[1]) > 1.2 * size)) return null;
+    const det = (b[0] - a[0]) * (c[1] - a[1]) - (c[0] - a[0]) * (b[1] - a[1]);
+    let [xi, eta] = [1 / 3, 1 / 3];
+    for (let step = 0; step < 8; step += 1) {
+      const here = this.position(t, xi, eta);
+      const [dx, dy] = [point[0] - here[0], point[1] - here[1]];
+      // The chord triangle's map is close enough to the curved one's for the steps to settle.
+      xi += (dx * (c[1] - a[1]) - dy * (c[0] - a[0])) / det;
+      eta += (dy * (b[0] - a[0]) - dx * (b[1] - a[1])) / det;
+      if (Math.hypot(dx, dy) < 1e-7 * size) break;
+    }
+    const miss = Math.max(0, -xi, -eta, xi + eta - 1);
+    return miss < 1e-3 ? { xi, eta, miss: miss < 1e-6 ? 0 : miss } : null;
+  }
+
+  position(t, xi, eta) {
+    const shape = shapes(this.n, this.nodes, xi, eta);
+    let [x, y] = this.origin;
+    for (let p = 0; p < this.per; p += 1) {
+      const k = 2 * (t * this.per + p);
+      x += shape[p] * this.places[k];
+      y += shape[p] * this.places[k + 1];
+    }
+    return [x, y];
+  }
+}
+
+/** What can be shown and searched: name, value of a stress, whether it has a sign. */
+const MEASURES = {
+  von_mises: { name: "von Mises", of: (s) => Math.sqrt(s.sigma ** 2 + 3 * (s.tauX ** 2 + s.tauY ** 2)) },
+  sigma: { name: "normal stress σ", of: (s) => s.sigma, signed: true },
+  tau: { name: "shear stress τ", of: (s) => Math.hypot(s.tauX, s.tauY) },
+  tau_x: { name: "shear stress τx", of: (s) => s.tauX, signed: true },
+  tau_y: { name: "shear stress τy", of: (s) => s.tauY, signed: true },
+  tresca: { name: "Tresca", of: (s) => Math.sqrt(s.sigma ** 2 + 4 * (s.tauX ** 2 + s.tauY ** 2)) },
+  principal_1: {
+    name: "principal stress σ1",
+    of: (s) => 0.5 * s.sigma + Math.sqrt(0.25 * s.sigma ** 2 + s.tauX ** 2 + s.tauY ** 2),
+    signed: true,
+  },
+  principal_3: {
+    name: "principal stress σ3",
+    of: (s) => 0.5 * s.sigma - Math.sqrt(0.25 * s.sigma ** 2 + s.tauX ** 2 + s.tauY ** 2),
+    signed: true,
+  },
+};
+
+/** The extremes that are listed: measure, and whether its least value is meant. */
+const EXTREMES = [
+  { key: "sigma_max", label: "largest σ", measure: "sigma" },
+  { key: "sigma_min", label: "smallest σ", measure: "sigma", least: true },
+  { key: "tau", label: "largest τ", measure: "tau" },
+  { key: "von_mises", label: "largest von Mises", measure: "von_mises" },
+  { key: "tresca", label: "largest Tresca", measure: "tresca" },
+];
+
+/** The extremes under `forces`: at the nodes, then climbed to inside the best few triangles. */
+function extremes(field, forces) {
+  const corner = field.nodes.map((_, p) => field.nodes.map((__, q) => (p === q ? 1 : 0)));
+  const wanted = [...EXTREMES];
+  if (field.yields.some((y) => y)) {
+    wanted.push({ key: "utilisation", label: "utilisation of yield", measure: "von_mises", use: true });
+  }
+  const found = wanted.map(() => []);
+  const score = (want, t, s) => {
+    let value = MEASURES[want.measure].of(s);
+    if (want.use) {
+      const limit = field.yields[field.piece[t]];
+      if (!limit) return -Infinity;
+      value /= limit;
+    }
+    return want.least ? -value : value;
+  };
+  for (let t = 0; t < field.triangles; t += 1) {
+    const best = wanted.map(() => ({ rank: -Infinity }));
+    for (let p = 0; p < field.per; p += 1) {
+      const s = field.at(t, corner[p], forces);
+      if (!field.quotable(s.at)) continue;
+      wanted.forEach((want, k) => {
+        const rank = score(want, t, s);
+        if (rank > best[k].rank) best[k] = { rank, t, p };
+      });
+    }
+    best.forEach((b, k) => {
+      if (b.rank > -Infinity) found[k].push(b);
+    });
+  }
+  return wanted.map((want, k) => {
+    found[k].sort((a, b) => b.rank - a.rank);
+    let top = null;
+    for (const start of found[k].slice(0, 4)) {
+      const end = climb(field, forces, start, (t, s) => score(want, t, s));
+      if (!top || end.rank > top.rank) top = end;
+    }
+    if (!top) return { ...want, value: 0, at: [0, 0], piece: "" };
+    const value = want.least ? -top.rank : top.rank;
+    return { ...want, value, at: top.at, piece: field.pieces[field.piece[top.t]], stress: top.stress };
+  });
+}
+
+/** Steps along the directions of the three sides, halved whenever none of them gains. */
+function climb(field, forces, start, score) {
+  const [i, j] = field.nodes[start.p];
+  let [xi, eta] = [i / field.n, j / field.n];
+  const look = (x, e) => {
+    const stress = field.at(start.t, shapes(field.n, field.nodes, x, e), forces);
+    return { stress, at: stress.at, rank: field.quotable(stress.at) ? score(start.t, stress) : -Infinity };
+  };
+  let best = look(xi, eta);
+  let step = 0.5 / field.n;
+  for (let halvings = 0; halvings < 9; ) {
+    let gained = false;
+    for (const [dx, de] of [[1, 0], [-1, 0], [0, 1], [0, -1], [1, -1], [-1, 1]]) {
+      const [x, e] = [xi + step * dx, eta + step * de];
+      if (x < 0 || e < 0 || x + e > 1) continue;
+      const next = look(x, e);
+      if (next.rank > best.rank) {
+        [best, xi, eta, gained] = [next, x, e, true];
+        break;
+      }
+    }
+    if (!gained) {
+      step *= 0.5;
+      halvings += 1;
+    }
+  }
+  return { ...best, t: start.t };
+}

@@ -1,0 +1,216 @@
+// The sheet: number fields and sliders for the section forces, and everything that follows from them.
+
+(() => {
+  const source = document.getElementById("sheet-data");
+  if (!source) return;
+  const data = JSON.parse(source.textContent);
+  const field = new Field(data);
+  const by = (id) => document.getElementById(id);
+  const picture = new Picture(by("picture"), field, data);
+  const forces = Object.fromEntries(FORCES.map((name) => [name, 0]));
+  let measure = "von_mises";
+  let probe = null;
+  let pending = false;
+
+  const unitOf = {
+    N: data.units.force,
+    Vx: data.units.force,
+    Vy: data.units.force,
+    Mx: data.units.moment,
+    My: data.units.moment,
+    T: data.units.moment,
+    B: `${data.units.force} ${data.units.length}²`,
+  };
+  const title = {
+    N: "axial force N",
+    Vx: "shear force Vx",
+    Vy: "shear force Vy",
+    Mx: "moment Mx",
+    My: "moment My",
+    T: "torque T about the shear centre",
+    B: "bimoment B",
+  };
+
+  // How far a slider goes: to twice the largest action, or to where the force alone stresses the section
+  // to its yield (100 MPa without one).
+  const one = (name) => ({ N: 0, Vx: 0, Vy: 0, Mx: 0, My: 0, T: 0, B: 0, [name]: 1 });
+  const round = (x) => {
+    const decade = 10 ** Math.floor(Math.log10(x));
+    return [1, 2, 5, 10].find((r) => r * decade >= x * (1 - 1e-9)) * decade;
+  };
+  const reach = (name) => {
+    const largest = Math.max(0, ...data.actions.map((a) => Math.abs(a.forces[name])));
+    if (largest > 0) return round(2 * largest);
+    const stress = extremes(field, one(name)).find((e) => e.key === "von_mises").value;
+    return stress > 0 ? round(data.reference_stress / stress) : 1;
+  };
+
+  const rows = by("forces");
+  const inputs = {};
+  for (const name of FORCES) {
+    const limit = reach(name);
+    const row = document.createElement("div");
+    row.className = "force";
+    row.innerHTML = `
+      <label for="number-${name}">${name}</label>
+      <input id="number-${name}" type="number" step="any" value="0" aria-label="${title[name]}, ${unitOf[name]}">
+      <span class="unit">${unitOf[name]}</span>
+      <input id="slide-${name}" type="range" min="${-limit}" max="${limit}" step="${limit / 200}" value="0"
+             aria-label="${title[name]}, slider">`;
+    rows.append(row);
+    const [number, slide] = [row.querySelector("[type=number]"), row.querySelector("[type=range]")];
+    number.addEventListener("input", () => set(name, Number(number.value), number));
+    slide.addEventListener("input", () => set(name, Number(slide.value), slide));
+    inputs[name] = { number, slide };
+  }
+
+  function set(name, value, from) {
+    forces[name] = Number.isFinite(value) ? value : 0;
+    const { number, slide } = inputs[name];
+    if (from !== number) number.value = String(Number(forces[name].toPrecision(6)));
+    if (from !== slide) slide.value = String(forces[name]);
+    refresh();
+  }
+
+  const line = new LineOfAction(by("over"), picture, data.centre, () => {
+    by("at-x").value = String(Number(line.at[0].toPrecision(6)));
+    by("at-y").value = String(Number(line.at[1].toPrecision(6)));
+    refresh();
+  });
+  for (const [id, k] of [["at-x", 0], ["at-y", 1]]) {
+    by(id).value = String(Number(data.centre[k].toPrecision(6)));
+    by(id).addEventListener("input", () => {
+      line.at[k] = Number(by(id).value) || 0;
+      refresh();
+    });
+  }
+  by("to-centre").addEventListener("click", () => line.set(data.centre));
+
+  const choice = by("measure");
+  for (const [key, { name }] of Object.entries(MEASURES)) choice.add(new Option(name, key));
+  choice.addEventListener("change", () => {
+    measure = choice.value;
+    refresh();
+  });
+
+  const actions = by("action");
+  data.actions.forEach((action, k) => actions.add(new Option(action.name, String(k))));
+  actions.addEventListener("change", () => apply(data.actions[Number(actions.value)]));
+  by("clear").addEventListener("click", () => apply({ forces: one("none"), at: null }));
+
+  function apply(action) {
+    if (!action) return;
+    for (const name of FORCES) {
+      forces[name] = action.forces[name] || 0;
+      inputs[name].number.value = String(Number(forces[name].toPrecision(9)));
+      inputs[name].slide.value = String(forces[name]);
+    }
+    line.set(action.at || data.centre);
+  }
+
+  /** Section forces with the torque of the line of action. */
+  function total() {
+    const [ex, ey] = [line.at[0] - data.centre[0], line.at[1] - data.centre[1]];
+    const offset = (ex * forces.Vy - ey * forces.Vx) * data.moment_per_force_length;
+    return { offset, all: { ...forces, T: forces.T + offset } };
+  }
+
+  function refresh() {
+    if (pending) return;
+    pending = true;
+    requestAnimationFrame(() => {
+      pending = false;
+      show();
+    });
+  }
+
+  function show() {
+    const { offset, all } = total();
+    const range = picture.draw(measure, all);
+    line.draw(forces.Vx, forces.Vy);
+    const { moment, stress } = data.units;
+    by("offset").textContent = shown(offset);
+    by("torque").textContent = shown(all.T);
+    document.querySelectorAll(".moment-unit").forEach((node) => (node.textContent = moment));
+    const unit = stress;
+    const found = extremes(field, all);
+    by("extremes").replaceChildren(
+      ...found.map((e) => {
+        const row = document.createElement("tr");
+        row.dataset.key = e.key;
+        row.dataset.value = String(e.value);
+        const cells = [
+          e.label,
+          e.use ? shown(e.value) : `${shown(e.value)} ${unit}`,
+          `(${shown(e.at[0])}, ${shown(e.at[1])})`,
+          e.piece,
+        ];
+        row.append(
+          ...cells.map((text, k) => {
+            const cell = document.createElement(k ? "td" : "th");
+            cell.textContent = text;
+            return cell;
+          }),
+        );
+        return row;
+      }),
+    );
+    const use = found.find((e) => e.use);
+    by("factor").textContent = use ? (use.value > 0 ? shown(1 / use.value) : "no stress") : "no yield stress stated";
+    by("factor").dataset.value = use && use.value > 0 ? String(1 / use.value) : "";
+    legend(range, unit);
+    if (probe) read(probe, all);
+  }
+
+  function legend({ step, first, colours }, unit) {
+    by("legend").replaceChildren(
+      ...colours.map((colour, k) => {
+        const item = document.createElement("li");
+        const box = document.createElement("span");
+        box.style.background = colour;
+        const low = (first + k) * step;
+        item.append(box, `${shown(low)} to ${shown(low + step)}`);
+        return item;
+      }),
+    );
+    by("legend-unit").textContent = `${MEASURES[measure].name}, ${unit}`;
+  }
+
+  function read(point, all) {
+    const found = field.locate(point);
+    const place = `(${shown(point[0])}, ${shown(point[1])}) ${data.units.length}`;
+    if (!found) {
+      by("reading").textContent = `${place}: no material`;
+      return;
+    }
+    const s = field.at(found.t, shapes(field.n, field.nodes, found.xi, found.eta), all);
+    const parts = Object.entries(MEASURES).map(([, m]) => `${m.name} ${shown(m.of(s))}`);
+    const piece = field.pieces[field.piece[found.t]];
+    by("reading").textContent = `${place}, ${piece}: ${parts.join(", ")} ${data.units.stress}`;
+  }
+
+  const stage = by("stage");
+  stage.addEventListener("pointermove", (event) => {
+    const frame = picture.canvas.getBoundingClientRect();
+    probe = picture.toSection([event.clientX - frame.left, event.clientY - frame.top]);
+    read(probe, total().all);
+  });
+  for (const [id, k] of [["probe-x", 0], ["probe-y", 1]]) {
+    by(id).addEventListener("input", () => {
+      probe = probe || [...data.centre];
+      probe[k] = Number(by(id).value) || 0;
+      read(probe, total().all);
+    });
+  }
+
+  const fit = () => {
+    picture.resize();
+    refresh();
+  };
+  window.addEventListener("resize", fit);
+  window.matchMedia("(prefers-color-scheme: dark)").addEventListener("change", refresh);
+  fit();
+  if (data.actions.length) apply(data.actions[0]);
+  else set("Vy", Number(inputs.Vy.slide.max) / 2);
+  by("sheet").dataset.ready = "yes";
+})();
