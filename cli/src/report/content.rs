@@ -295,6 +295,13 @@ fn answers(input: &Input, responses: &Responses, out: &mut Vec<Block>) {
         for (measure, extreme) in &response.extremes.0 {
             rows.push(extreme_row(input, *measure, extreme, None));
         }
+        for (material, extremes) in &response.materials {
+            let material = input.names.material(*material);
+            rows.push(Row::Group(format!("{}, in {material}", response.name)));
+            for (measure, extreme) in &extremes.0 {
+                rows.push(extreme_row(input, *measure, extreme, None));
+            }
+        }
     }
     if responses.list.len() > 1 {
         rows.push(Row::Group("Envelope of all".into()));

@@ -49,10 +49,10 @@ fn table(out: &mut String, table: &Table) {
     }
     let line = |cells: Vec<String>| format!("| {} |\n", cells.join(" | "));
     let name = |c: &&str| plain(c.trim_start_matches('#'));
-    out.push_str(&line(table.columns.iter().map(|c| name(&c)).collect()));
+    out.push_str(&line(table.columns.iter().map(name).collect()));
     let rule = |c: &&str| if c.starts_with('#') { "---:" } else { "---" };
     out.push_str(&line(
-        table.columns.iter().map(|c| rule(&c).to_owned()).collect(),
+        table.columns.iter().map(|c| rule(c).to_owned()).collect(),
     ));
     for row in &table.rows {
         match row {
