@@ -63,11 +63,6 @@ pub(crate) fn solve(
     let poisson = mixture.poisson(domain, materials, &areas);
     let reference = &materials[mixture.reference];
     let factor = mixture.poisson_factor(reference, poisson);
-    let yields: Vec<Option<f64>> = materials.iter().map(|m| m.yield_stress).collect();
-    let plastic = plastic::analyse(domain, &yields, mixture.reference, moments.centroid);
-    if let Some(plastic) = &plastic {
-        properties.extend(plastic::quantities::properties(plastic, &moments));
-    }
     clock.bounds += start.elapsed().as_secs_f64();
 
     let start = Instant::now();
@@ -75,6 +70,14 @@ pub(crate) fn solve(
     let mut mesh =
         triangulate(domain, &Sizing::default()).map_err(|e| SolveError::Mesh(e.to_string()))?;
     clock.mesh += start.elapsed().as_secs_f64();
+    let start = Instant::now();
+    let yields: Vec<Option<f64>> = materials.iter().map(|m| m.yield_stress).collect();
+    let plastic = plastic::analyse(domain, &yields, mixture.reference, moments.centroid)
+        .map(|p| p.with_torsion(domain, &mesh, settings.tolerance));
+    if let Some(plastic) = &plastic {
+        properties.extend(plastic::quantities::properties(plastic, &moments));
+    }
+    clock.bounds += start.elapsed().as_secs_f64();
     let mut notes: Vec<Note> = corners.iter().map(corner_note).collect();
     notes.extend(mixture_notes(domain, &mixture, materials, poisson));
 

@@ -92,6 +92,7 @@ quantities! {
     PlasticCentroidY "plastic_centroid_y" "y_p" Bending Length(1), "The horizontal line y = y_p halves the area";
     TorsionConstant "torsion_constant" "J" Torsion Length(4), "Torsion constant, T = G J θ′";
     WarpingConstant "warping_constant" "C_w" Torsion Length(6), "Warping constant, ∫ω² dA, ω about the shear centre with zero mean";
+    PlasticTorsionModulus "plastic_torsion_modulus" "Z_t" Torsion Length(3), "Plastic torsion modulus, 2∫φ dA: fully plastic torque over the yield stress in shear (f_y/√3 after von Mises), φ the least distance from the edge";
     ShearCentreX "shear_centre_x" "x_s" Shear Length(1), "Shear centre independent of Poisson's ratio (energy), x in the axes of the section file; loads refer to it";
     ShearCentreY "shear_centre_y" "y_s" Shear Length(1), "Shear centre independent of Poisson's ratio (energy), y in the axes of the section file; loads refer to it";
     FlexureCentreX "flexure_centre_x" "x_f" Shear Length(1), "Flexure centre: zero mean rotation under flexure, depends on Poisson's ratio, x in the axes of the section file";

@@ -36,6 +36,7 @@ pub fn name(quantity: Quantity) -> &'static str {
         Q::PlasticCentroidY => "Equal-area line, y",
         Q::TorsionConstant => "Torsion constant",
         Q::WarpingConstant => "Warping constant",
+        Q::PlasticTorsionModulus => "Plastic torsion modulus",
         Q::ShearCentreX => "Shear centre, x",
         Q::ShearCentreY => "Shear centre, y",
         Q::FlexureCentreX => "Flexure centre, x",

@@ -6,6 +6,7 @@
 
 pub mod axis;
 mod half;
+pub mod heap;
 pub mod interaction;
 pub(crate) mod quantities;
 mod root;
@@ -16,8 +17,11 @@ use std::f64::consts::FRAC_PI_2;
 
 use sectile_mesh::Point;
 use sectile_mesh::domain::Domain;
+use sectile_mesh::mesh::Mesh;
 
+use crate::figure::Figure;
 use axis::{PlasticAxis, plastic_axis};
+use heap::torsion_modulus;
 use interaction::Surface;
 
 /// Full plasticity of a section.
@@ -34,6 +38,9 @@ pub struct Plastic {
     /// The interaction of N, M_x and M_y, moments about the origin; in units of the yield stress where
     /// there is none.
     pub surface: Surface,
+    /// Plastic torsion modulus, length³: the fully plastic torque over the yield stress in shear, which
+    /// is f_y/√3 after von Mises. None for several yield stresses or a section in separate parts.
+    pub torsion_modulus: Option<Figure>,
 }
 
 impl Plastic {
@@ -43,10 +50,20 @@ impl Plastic {
         let unit = self.yield_stress.unwrap_or(1.0);
         self.axes.map(|axis| axis.moment / unit)
     }
+
+    /// The same with the torsion modulus, where there is one; see [`heap::torsion_modulus`].
+    #[must_use]
+    pub fn with_torsion(mut self, domain: &Domain, mesh: &Mesh, tolerance: f64) -> Self {
+        if self.uniform {
+            self.torsion_modulus = torsion_modulus(domain, mesh, tolerance);
+        }
+        self
+    }
 }
 
 /// Full plasticity of a domain whose materials have the yield stresses `yields`, moments about
-/// `origin`; moduli relate to the material `reference`.
+/// `origin`; moduli relate to the material `reference`. Without the torque, see
+/// [`Plastic::with_torsion`].
 ///
 /// `None` where some of the materials used state a yield stress and others do not, and where several
 /// materials state none.
@@ -67,16 +84,19 @@ pub fn analyse(
     let (of_piece, yield_stress) = match of_piece {
         Some(list) => {
             let stated = yields.get(reference).copied().flatten();
-            (list.clone(), Some(stated.unwrap_or(list[0])))
+            let unit = stated.unwrap_or(list[0]);
+            (list, Some(unit))
         }
         None if one => (vec![1.0; domain.piece_materials.len()], None),
         None => return None,
     };
+    let uniform = of_piece.iter().all(|&f| f == of_piece[0]);
     let surface = Surface::new(domain, |p| of_piece[p as usize], origin);
     Some(Plastic {
         yield_stress,
-        uniform: of_piece.iter().all(|&f| f == of_piece[0]),
+        uniform,
         axes: [0.0, -FRAC_PI_2].map(|direction| plastic_axis(&surface.slices(direction))),
         surface,
+        torsion_modulus: None,
     })
 }

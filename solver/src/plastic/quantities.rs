@@ -12,10 +12,12 @@ pub(crate) fn properties(plastic: &Plastic, m: &AreaMoments) -> Vec<(Quantity, F
     let size = (right - left).max(top - bottom);
     let [about_x, about_y] = plastic.axes;
     let [z_x, z_y] = plastic.moduli();
-    let modulus = |z: f64| Figure::exact(z, z + 1e-2 * m.area * size);
+    // The area, weighted by the yield stress.
+    let area = plastic.surface.squash() / plastic.yield_stress.unwrap_or(1.0);
+    let modulus = |z: f64| Figure::exact(z, z + 1e-2 * area * size);
     // The halving line is found from areas: where the section is thin there, rounding moves it more.
     let line = |at: f64| Figure::exact(at, 10.0 * (size + m.reach));
-    vec![
+    let mut out = vec![
         (Quantity::PlasticModulusX, modulus(z_x)),
         (Quantity::PlasticModulusY, modulus(z_y)),
         (
@@ -26,5 +28,9 @@ pub(crate) fn properties(plastic: &Plastic, m: &AreaMoments) -> Vec<(Quantity, F
             Quantity::PlasticCentroidY,
             line(m.centroid.y + about_x.offset),
         ),
-    ]
+    ];
+    if let Some(torsion) = plastic.torsion_modulus {
+        out.push((Quantity::PlasticTorsionModulus, torsion));
+    }
+    out
 }
