@@ -103,3 +103,70 @@ fn the_sheets_unit_fields_are_the_solvers() {
         assert!((field[0] - 1e3 / 3328.0).abs() < 1e-6);
     }
 }
+
+/// The process is stopped however the test ends.
+struct Running(std::process::Child);
+
+impl Drop for Running {
+    fn drop(&mut self) {
+        let _ = self.0.kill();
+        let _ = self.0.wait();
+    }
+}
+
+/// Waits until the file satisfies `holds`.
+fn wait_for(path: &Path, holds: impl Fn(&str) -> bool) -> String {
+    for _ in 0..600 {
+        if let Ok(text) = fs::read_to_string(path)
+            && holds(&text)
+        {
+            return text;
+        }
+        std::thread::sleep(std::time::Duration::from_millis(100));
+    }
+    panic!("{} never was as it should", path.display());
+}
+
+#[test]
+fn a_watched_file_is_answered_at_every_save() {
+    let folder = tempfile::tempdir().unwrap();
+    let file = folder.path().join("rail.section.toml");
+    let section =
+        |b: u32| format!("[[piece]]\nname = \"bar\"\nbar = {{ at = [0, 0], b = {b}, h = 20 }}\n");
+    fs::write(&file, section(10)).unwrap();
+    let child = Command::new(env!("CARGO_BIN_EXE_sectile-as-tested"))
+        .arg("solve")
+        .arg(&file)
+        .args(["--report", "--watch", "--quiet"])
+        .stderr(std::process::Stdio::null())
+        .spawn()
+        .unwrap();
+    let mut running = Running(child);
+    let results = folder.path().join("rail.results");
+    let state = results.join("report-state.js");
+    let first = wait_for(&state, |t| t.contains("\"error\":null"));
+    let page = fs::read_to_string(results.join("report.html")).unwrap();
+    assert!(page.contains("report-state.js"));
+
+    // A fault is told in place, and the last answer stays.
+    fs::write(
+        &file,
+        "[[piece]]\nname = \"bar\"\nbar = { at = [0, 0], b = -1, h = 20 }\n",
+    )
+    .unwrap();
+    let fault = wait_for(&state, |t| !t.contains("\"error\":null"));
+    assert!(fault.contains("nothing was computed"), "{fault}");
+    assert_eq!(
+        fs::read_to_string(results.join("report.html")).unwrap(),
+        page
+    );
+
+    fs::write(&file, section(12)).unwrap();
+    let second = wait_for(&state, |t| t.contains("\"error\":null") && t != first);
+    assert_ne!(first, second);
+    assert_ne!(
+        fs::read_to_string(results.join("report.html")).unwrap(),
+        page
+    );
+    assert!(running.0.try_wait().unwrap().is_none(), "it goes on");
+}

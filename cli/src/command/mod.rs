@@ -4,6 +4,7 @@ pub mod new;
 pub mod progress;
 pub mod respond;
 pub mod solve;
+mod watch;
 
 use std::io::{IsTerminal, stdout};
 

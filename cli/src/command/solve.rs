@@ -16,6 +16,7 @@ use super::progress::LevelProgress;
 use super::respond::respond;
 use crate::figure;
 use crate::figure::style::{Drawing, Style};
+use crate::read::fault::Faults;
 use crate::read::{ReadSection, section_from_path, show};
 use crate::report;
 use crate::response::{Names, Responses};
@@ -29,7 +30,8 @@ use crate::write::{actions, csv, digits, files, materials, seams, table, units, 
 #[command(after_help = "Examples:\n  \
     sectile solve rail.section.toml\n  \
     sectile solve rail.section.toml --tolerance 1e-6 --out rail-results\n  \
-    sectile solve *.section.toml --json --quiet > results.jsonl\n\n\
+    sectile solve *.section.toml --json --quiet > results.jsonl\n  \
+    sectile solve rail.section.toml --report --watch\n\n\
     Exit codes: 0 answered; 1 answered with a finding that you must see; 2 could not answer.")]
 pub struct SolveArgs {
     /// The section files.
@@ -72,6 +74,9 @@ pub struct SolveArgs {
     /// and as report.md.
     #[arg(long)]
     pub report: bool,
+    /// Answer again whenever a file is saved, until stopped (Ctrl-C); an open report.html follows.
+    #[arg(long)]
+    pub watch: bool,
     /// Write every figure as PNG too, at this resolution.
     #[arg(long, value_parser = resolution, value_name = "DPI")]
     pub png: Option<f64>,
@@ -105,29 +110,62 @@ fn resolution(text: &str) -> Result<f64, String> {
 /// Runs the command.
 #[must_use]
 pub fn run(args: &SolveArgs) -> Outcome {
+    if args.watch {
+        return super::watch::run(args);
+    }
     args.files
         .iter()
-        .map(|file| one(args, file))
+        .map(|file| {
+            one(args, file).unwrap_or_else(|refusal| {
+                refusal.print();
+                Outcome::NoAnswer
+            })
+        })
         .max()
         .unwrap_or(Outcome::Answered)
 }
 
-fn one(args: &SolveArgs, file: &Path) -> Outcome {
-    let start = Instant::now();
-    let read = match section_from_path(file) {
-        Ok(read) => read,
-        Err(faults) => {
-            show::print(&faults);
-            return Outcome::NoAnswer;
+/// Why a section was not answered.
+pub(super) enum Refusal {
+    /// Its file has faults.
+    Faults(Box<Faults>),
+    /// Something else, with the file's name.
+    Message(String),
+}
+
+impl Refusal {
+    /// On standard error.
+    pub(super) fn print(&self) {
+        match self {
+            Self::Faults(faults) => show::print(faults),
+            Self::Message(text) => {
+                let _ = writeln!(stderr(), "{text}");
+            }
         }
-    };
+    }
+
+    /// As plain text.
+    pub(super) fn text(&self) -> String {
+        match self {
+            Self::Faults(faults) => faults.render(show::Look::Plain, show::WIDTH),
+            Self::Message(text) => text.clone(),
+        }
+    }
+}
+
+/// Answers one file.
+pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
+    let start = Instant::now();
+    let read = section_from_path(file).map_err(Refusal::Faults)?;
+    let refused =
+        |error: &dyn std::fmt::Display| Refusal::Message(format!("{}: {error}", file.display()));
     let folder = folder(args, file);
     let source = match &folder {
         Some(folder) => match files::source_from(folder, file)
             .and_then(|source| files::check(folder, &source, figure::FILES).map(|()| source))
         {
             Ok(source) => source,
-            Err(error) => return fail(file, &error.to_string()),
+            Err(error) => return Err(refused(&error)),
         },
         None => file.to_string_lossy().into_owned(),
     };
@@ -153,7 +191,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
     progress.finish();
     let mut solution = match solved {
         Ok(solution) => solution,
-        Err(error) => return fail(file, &error.to_string()),
+        Err(error) => return Err(refused(&error)),
     };
     if read.section.assumed_material {
         solution.notes.push(Note {
@@ -172,8 +210,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
             .map(|m| read.yield_missing(m))
             .collect();
         if !missing.is_empty() {
-            show::print(&read.refused(missing));
-            return Outcome::NoAnswer;
+            return Err(Refusal::Faults(read.refused(missing)));
         }
     }
     let respond_start = Instant::now();
@@ -202,7 +239,7 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
     if let Some(folder) = &folder
         && let Err(error) = write_folder(args, folder, &answer, &run, start)
     {
-        return fail(file, &error);
+        return Err(refused(&error));
     }
     run.write = write_start.elapsed().as_secs_f64();
     run.total = start.elapsed().as_secs_f64();
@@ -213,9 +250,9 @@ fn one(args: &SolveArgs, file: &Path) -> Outcome {
         .as_ref()
         .is_some_and(|responses| !responses.overstressed().is_empty());
     if answer.solution.reached && answer.read.domain.parts == 1 && !overstressed {
-        Outcome::Answered
+        Ok(Outcome::Answered)
     } else {
-        Outcome::Finding
+        Ok(Outcome::Finding)
     }
 }
 
@@ -241,7 +278,7 @@ fn exceeded(read: &ReadSection, responses: &Responses) -> Vec<Note> {
 }
 
 /// Where the results go; nowhere with `--json` alone.
-fn folder(args: &SolveArgs, file: &Path) -> Option<PathBuf> {
+pub(super) fn folder(args: &SolveArgs, file: &Path) -> Option<PathBuf> {
     let stem = stem(file);
     match &args.out {
         Some(out) if args.files.len() > 1 => Some(out.join(stem)),
@@ -302,6 +339,7 @@ impl Answer {
             reference: self.reference(),
             figures,
             exclusion,
+            watched: false,
         }
     }
 
@@ -394,7 +432,10 @@ fn write_folder(
         answer.results(&run).pretty().into_bytes(),
     ));
     if args.report {
-        let input = answer.report(&text_figures, args.corner_distance);
+        let input = report::Input {
+            watched: args.watch,
+            ..answer.report(&text_figures, args.corner_distance)
+        };
         written.push(("report.html".into(), report::html(&input).into_bytes()));
         written.push(("report.md".into(), report::markdown(&input).into_bytes()));
     }
@@ -535,11 +576,6 @@ fn timings(solution: &Solution, run: &Run) -> String {
         ));
     }
     text
-}
-
-fn fail(file: &Path, message: &str) -> Outcome {
-    let _ = writeln!(stderr(), "{}: {message}", file.display());
-    Outcome::NoAnswer
 }
 
 /// The most memory that the process has held, where the system tells.

@@ -89,10 +89,16 @@ const SOURCES: [&str; 4] = [
     "V. Z. Vlasov, Thin-Walled Elastic Beams, 1961: bimoment and restrained warping (from memory).",
 ];
 
+/// SHA-256 in hexadecimal.
+#[must_use]
+pub fn hash(bytes: &[u8]) -> String {
+    let digest = Sha256::digest(bytes);
+    digest.iter().map(|b| format!("{b:02x}")).collect()
+}
+
 fn identity(input: &Input) -> Table {
     let solution = input.solution;
-    let digest = Sha256::digest(input.text.as_bytes());
-    let hash: String = digest.iter().map(|b| format!("{b:02x}")).collect();
+    let hash = hash(input.text.as_bytes());
     let row = |a: &str, b: String| Row::Cells(vec![a.into(), b]);
     let u = &input.section.units;
     let reached = if solution.reached {

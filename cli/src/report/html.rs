@@ -5,9 +5,9 @@ use std::fmt::Write;
 use base64::Engine;
 use base64::engine::general_purpose::STANDARD;
 
-use super::Input;
 use super::document::{Block, Figure, Row, Table};
 use super::sheet;
+use super::{Input, STATE, content};
 
 const STYLE: &str = include_str!("style.css");
 /// In the order in which they build on each other.
@@ -76,6 +76,14 @@ pub fn page(input: &Input, blocks: &[Block]) -> String {
             "<script type=\"application/json\" id=\"sheet-data\">{data}</script>"
         );
         let _ = writeln!(out, "<script>\n{}</script>", SCRIPTS.concat());
+    }
+    if input.watched {
+        let stamp = content::hash(input.text.as_bytes());
+        let watch = include_str!("sheet/watch.js");
+        let _ = writeln!(
+            out,
+            "<script>\nconst STAMP = \"{stamp}\";\nconst STATE = \"{STATE}\";\n{watch}</script>"
+        );
     }
     out.push_str("</body>\n</html>\n");
     out

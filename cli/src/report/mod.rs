@@ -40,6 +40,18 @@ pub struct Input<'a> {
     pub figures: &'a [(String, String)],
     /// Extremes keep off sharp corners by this share of the wall.
     pub exclusion: f64,
+    /// Whether the file is watched, so that an open page looks for news.
+    pub watched: bool,
+}
+
+/// The file beside a watched report that tells an open page what is new.
+pub const STATE: &str = "report-state.js";
+
+/// The text of [`STATE`]: which text of the section file was tried last, and what was wrong with it.
+#[must_use]
+pub fn state(text: &[u8], error: Option<&str>) -> String {
+    let state = serde_json::json!({ "stamp": content::hash(text), "error": error });
+    format!("sectileState({state});\n")
 }
 
 /// The text of `report.html`: one file that needs no other.

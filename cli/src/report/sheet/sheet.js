@@ -160,6 +160,7 @@
     by("factor").dataset.value = use && use.value > 0 ? String(1 / use.value) : "";
     legend(range, unit);
     if (probe) read(probe, all);
+    document.dispatchEvent(new CustomEvent("sheet", { detail: { forces, at: line.at, measure } }));
   }
 
   function legend({ step, first, colours }, unit) {
@@ -210,7 +211,11 @@
   window.addEventListener("resize", fit);
   window.matchMedia("(prefers-color-scheme: dark)").addEventListener("change", refresh);
   fit();
-  if (data.actions.length) apply(data.actions[0]);
+  const kept = JSON.parse(sessionStorage.getItem("sheet") || "null");
+  if (kept) {
+    measure = choice.value = kept.measure;
+    apply(kept);
+  } else if (data.actions.length) apply(data.actions[0]);
   else set("Vy", Number(inputs.Vy.slide.max) / 2);
   by("sheet").dataset.ready = "yes";
 })();
