@@ -1,5 +1,6 @@
 //! Section files in; tables, figures and results out. Knows nothing of numerics.
 
+pub mod batch;
 pub mod command;
 pub mod figure;
 pub mod read;

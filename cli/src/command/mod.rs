@@ -1,5 +1,9 @@
 //! The commands, one a file.
 
+pub mod fit;
+pub mod interrupt;
+pub mod manners;
+pub mod many;
 pub mod new;
 pub mod progress;
 pub mod respond;
@@ -28,6 +32,14 @@ pub enum Command {
     New(new::NewArgs),
     /// Properties of sections, with tables, results and figures.
     Solve(solve::SolveArgs),
+    /// One row a section, or a point of a sweep, on all cores.
+    Many(many::ManyArgs),
+    /// The dimension at which a property meets a target.
+    Fit(fit::FitArgs),
+    /// Completions of commands and options for a shell, to standard output.
+    Completions(manners::CompletionsArgs),
+    /// Manual pages, one a command.
+    Manual(manners::ManualArgs),
 }
 
 /// How a command ended; the worst of several files counts.
@@ -39,6 +51,8 @@ pub enum Outcome {
     Finding,
     /// Could not answer.
     NoAnswer,
+    /// Ended by Ctrl-C before all was answered.
+    Interrupted,
 }
 
 impl Outcome {
@@ -49,6 +63,7 @@ impl Outcome {
             Self::Answered => 0,
             Self::Finding => 1,
             Self::NoAnswer => 2,
+            Self::Interrupted => interrupt::EXIT_CODE,
         }
     }
 }
@@ -56,9 +71,30 @@ impl Outcome {
 /// Runs what the command line asks for.
 #[must_use]
 pub fn run(cli: &Cli) -> Outcome {
+    interrupt::heed();
     match &cli.command {
         Command::New(args) => new::run(args),
         Command::Solve(args) => solve::run(args),
+        Command::Many(args) => many::run(args),
+        Command::Fit(args) => fit::run(args),
+        Command::Completions(args) => manners::completions(args),
+        Command::Manual(args) => manners::manual(args),
+    }
+}
+
+/// A tolerance that a solve can aim at.
+fn tolerance(text: &str) -> Result<f64, String> {
+    match text.trim().parse::<f64>() {
+        Ok(tolerance) if tolerance > 0.0 && tolerance < 1.0 => Ok(tolerance),
+        _ => Err("a tolerance lies between 0 and 1, such as 1e-3".into()),
+    }
+}
+
+/// An order of the elements.
+fn order(text: &str) -> Result<usize, String> {
+    match text.trim().parse::<usize>() {
+        Ok(order) if (1..=6).contains(&order) => Ok(order),
+        _ => Err("an order is a whole number, 1 to 6".into()),
     }
 }
 

@@ -204,6 +204,16 @@ pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
         });
     }
 
+    if !read.sweep.is_empty() {
+        solution.notes.push(Note {
+            kind: "sweep",
+            text: "The file has tables [[vary]]: it is solved as written. `sectile many` solves \
+                   every point of the sweep."
+                .into(),
+            at: None,
+        });
+    }
+
     if args.to_yield && !read.section.actions.is_empty() {
         let missing: Vec<_> = (0..read.section.materials.len())
             .filter(|&m| read.section.materials[m].yield_stress.is_none())
@@ -289,7 +299,7 @@ pub(super) fn folder(args: &SolveArgs, file: &Path) -> Option<PathBuf> {
 }
 
 /// The file's name without `.section.toml` or its extension.
-fn stem(file: &Path) -> String {
+pub(super) fn stem(file: &Path) -> String {
     let name = file.file_name().unwrap_or_default().to_string_lossy();
     match name.strip_suffix(".section.toml") {
         Some(stem) if !stem.is_empty() => stem.to_owned(),

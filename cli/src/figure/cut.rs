@@ -214,7 +214,7 @@ fn plot(page: &mut Page, (left, right): (f64, f64), quantity: &str, runs: &[Vec<
     page.cursor = frame.y1 + 1.0 + 1.2 * SMALL + 2.5;
 }
 
-fn polyline(points: &[Point]) -> String {
+pub(super) fn polyline(points: &[Point]) -> String {
     let mut data = String::new();
     for (i, p) in points.iter().enumerate() {
         let command = if i == 0 { 'M' } else { 'L' };
@@ -224,7 +224,7 @@ fn polyline(points: &[Point]) -> String {
 }
 
 /// Ticks and round numbers below a plot.
-fn distances(page: &mut Page, frame: Rect, x0: f64, x1: f64) {
+pub(super) fn distances(page: &mut Page, frame: Rect, x0: f64, x1: f64) {
     let levels = Levels::between(x0, x1);
     let unit = 10f64.powi(levels.power());
     let printed = levels.printed();

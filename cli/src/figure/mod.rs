@@ -6,6 +6,7 @@
 pub mod arrows;
 pub mod bands;
 pub mod centres;
+pub mod chart;
 pub mod colour;
 pub mod contour;
 pub mod cut;

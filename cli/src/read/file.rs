@@ -17,14 +17,28 @@ pub const LARGEST_FILE: u64 = 16 << 20;
 /// Every fault found: of the file itself (missing, a folder, empty, too large, not UTF-8), of its
 /// TOML, its entries or its geometry.
 pub fn section_from_path(path: &Path) -> Result<ReadSection, Box<Faults>> {
-    let name: String = path
-        .display()
+    let (name, text) = text_from_path(path)?;
+    section_from_text(&name, &text)
+}
+
+/// The name that messages give the section file at `path`, and its text.
+///
+/// # Errors
+/// The file itself is at fault: missing, a folder, too large, not UTF-8.
+pub fn text_from_path(path: &Path) -> Result<(String, String), Box<Faults>> {
+    let name = name_of(path);
+    let text = text_of(path, &name)?;
+    Ok((name, text))
+}
+
+/// The path as it is given, without what would move a terminal's cursor.
+#[must_use]
+pub fn name_of(path: &Path) -> String {
+    path.display()
         .to_string()
         .chars()
         .map(|c| if hidden(c) { '·' } else { c })
-        .collect();
-    let text = text_of(path, &name)?;
-    section_from_text(&name, &text)
+        .collect()
 }
 
 fn text_of(path: &Path, name: &str) -> Result<String, Box<Faults>> {

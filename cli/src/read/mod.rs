@@ -13,6 +13,7 @@ mod later;
 mod material;
 mod names;
 pub mod near;
+mod path;
 mod piece;
 mod place;
 pub mod places;
@@ -25,6 +26,7 @@ mod shape;
 pub mod show;
 mod syntax;
 mod units;
+pub mod vary;
 
 use sectile_mesh::domain::fault::Fault as Found;
 use sectile_mesh::domain::seam::SeamRequest;
@@ -38,8 +40,9 @@ use geometry::{PieceText, Sources};
 use names::Names;
 use places::Places;
 use seam::SeamText;
+use vary::Vary;
 
-pub use file::section_from_path;
+pub use file::{section_from_path, text_from_path};
 
 /// Keys of the file's top level.
 const KEYS: &[&str] = &[
@@ -54,6 +57,7 @@ const KEYS: &[&str] = &[
     "combination",
     "probe",
     "cut",
+    "vary",
 ];
 
 /// A section file that has been read without fault.
@@ -63,6 +67,8 @@ pub struct ReadSection {
     pub section: Section,
     /// The valid planar regions that its pieces make.
     pub domain: Domain,
+    /// What the file's sweep varies; the section itself is the file as written.
+    pub sweep: Vec<Vary>,
     /// Where the file states it, for faults that are found later.
     pub places: Places,
 }
@@ -136,6 +142,10 @@ fn read(
         .unwrap_or_default()
         .into_iter()
         .unzip();
+    let sweep = fields
+        .get("vary")
+        .map(|list| vary::read_all(reader, text, value, list))
+        .unwrap_or_default();
     let Some(value) = fields.get("piece").filter(|value| !is_empty_list(value)) else {
         if !fields.is_misspelt("piece") {
             reader.faults.push(Fault::whole(
@@ -194,6 +204,7 @@ fn read(
             cuts,
         },
         domain: domain?,
+        sweep,
         places: Places {
             file: name.to_owned(),
             text: text.to_owned(),

@@ -341,6 +341,14 @@ pub fn quantity(text: &str, dimension: Dimension, unit: Unit) -> Result<f64, Mis
     }
 }
 
+/// The number of a text such as `3/8 in`, and its unit, which must be a known one.
+#[must_use]
+pub fn number_and_unit(text: &str) -> Option<(f64, &str)> {
+    let (number, rest) = leading_number(text)?;
+    let unit = rest.trim();
+    (number.is_finite() && Unit::named(unit).is_some()).then_some((number, unit))
+}
+
 /// The number that a text starts with (`12`, `-1.5e3`, `3/8`, `1 1/2`, `1-1/2`) and what follows it.
 fn leading_number(text: &str) -> Option<(f64, &str)> {
     let text = text.trim();

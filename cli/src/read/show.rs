@@ -38,7 +38,9 @@ impl Look {
 
 /// Prints the report on standard error, in the look that suits it.
 pub fn print(faults: &Faults) {
-    let report = faults.render(Look::of_standard_error(), WIDTH);
+    let terminal = comfy_table::Table::new().width();
+    let width = terminal.map_or(WIDTH, |columns| WIDTH.min(usize::from(columns)));
+    let report = faults.render(Look::of_standard_error(), width);
     // Nobody is left to tell if standard error is closed.
     let _ = std::io::stderr().write_all(report.as_bytes());
 }

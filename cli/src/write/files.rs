@@ -6,9 +6,28 @@
 use std::fs;
 use std::io::{self, Write};
 use std::path::{Component, Path, PathBuf};
+use std::sync::{Mutex, MutexGuard, PoisonError};
 
 /// The file that tells whose folder it is.
 pub const RESULTS: &str = "results.json";
+
+/// Temporary files that wait for their place.
+static UNFINISHED: Mutex<Vec<PathBuf>> = Mutex::new(Vec::new());
+
+fn unfinished() -> MutexGuard<'static, Vec<PathBuf>> {
+    UNFINISHED.lock().unwrap_or_else(PoisonError::into_inner)
+}
+
+/// For a process that is about to end early: removes every temporary file. Until the returned guard
+/// is dropped none is made and none put in its place, so that of a folder's files all are there or none.
+pub fn abandon() -> impl Sized {
+    let mut paths = unfinished();
+    for path in paths.drain(..) {
+        // It may not have been made yet; nothing can be done about others.
+        let _ = fs::remove_file(path);
+    }
+    paths
+}
 
 /// Why an output folder was not written.
 #[derive(Debug, thiserror::Error)]
@@ -156,18 +175,28 @@ pub fn write_all<B: AsRef<[u8]>>(
             write_through(&path, content.as_ref())
         })
         .and_then(|()| {
+            let mut paths = unfinished();
             order
                 .iter()
                 .zip(&temporary)
-                .try_for_each(|((name, _), path)| put_in_place(path, &folder.join(name)))
+                .try_for_each(|((name, _), path)| put_in_place(path, &folder.join(name)))?;
+            paths.retain(|path| !temporary.contains(path));
+            Ok(())
         });
     if outcome.is_err() {
-        for path in &temporary {
-            // Those already renamed are gone from here; nothing else can be done about the rest.
-            let _ = fs::remove_file(path);
-        }
+        remove(&temporary);
     }
     outcome
+}
+
+/// Removes temporary files after a fault. Those already renamed are gone from their place; nothing else
+/// can be done about the rest.
+fn remove(temporary: &[PathBuf]) {
+    let mut paths = unfinished();
+    for path in temporary {
+        let _ = fs::remove_file(path);
+    }
+    paths.retain(|path| !temporary.contains(path));
 }
 
 /// Writes one file whole or not at all, replacing what is there.
@@ -176,10 +205,14 @@ pub fn write_all<B: AsRef<[u8]>>(
 /// The system refused.
 pub fn write(path: &Path, text: &str) -> Result<(), WriteError> {
     let temporary = temporary_path(path);
-    let outcome =
-        write_through(&temporary, text.as_bytes()).and_then(|()| put_in_place(&temporary, path));
+    let outcome = write_through(&temporary, text.as_bytes()).and_then(|()| {
+        let mut paths = unfinished();
+        put_in_place(&temporary, path)?;
+        paths.retain(|path| *path != temporary);
+        Ok(())
+    });
     if outcome.is_err() {
-        let _ = fs::remove_file(&temporary);
+        remove(&[temporary]);
     }
     outcome
 }
@@ -192,7 +225,11 @@ fn temporary_path(path: &Path) -> PathBuf {
 
 fn write_through(path: &Path, content: &[u8]) -> Result<(), WriteError> {
     let attempt = || {
-        let mut file = fs::File::create(path)?;
+        let mut file = {
+            let mut paths = unfinished();
+            paths.push(path.to_path_buf());
+            fs::File::create(path)?
+        };
         file.write_all(content)
     };
     attempt().map_err(|source| WriteError::System {
