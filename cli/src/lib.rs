@@ -3,6 +3,7 @@
 pub mod batch;
 pub mod command;
 pub mod figure;
+pub mod interaction;
 pub mod read;
 pub mod report;
 pub mod response;

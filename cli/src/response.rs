@@ -33,6 +33,9 @@ pub struct Response {
     pub extremes: Extremes,
     /// First yield is reached at this multiple of the action.
     pub load_factor: Option<f64>,
+    /// N, M_x and M_y make the section fully plastic at this multiple; shear, torsion and bimoment are
+    /// no part of it.
+    pub plastic_factor: Option<f64>,
     /// Relative error in energy of the shear stress, guaranteed.
     pub energy_error: f64,
     /// By index of the probe.

@@ -16,6 +16,7 @@ use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::probe::at_point;
 
+use crate::interaction::Interaction;
 use crate::response::{Envelope, Response, Responses};
 use crate::section::{SeamInput, Section, materials_used};
 use crate::write::units::stress_per_force;
@@ -25,13 +26,14 @@ const DIVISIONS: usize = 8;
 
 /// The answers; `None` without actions, or for a section in separate parts, which has no shear stress.
 ///
-/// `exclusion`: distance from sharp re-entrant corners over the wall's thickness within which stresses
+/// `interaction`: where every piece has a yield stress; `exclusion`: distance from sharp re-entrant corners over the wall's thickness within which stresses
 /// are not quoted.
 #[must_use]
 pub fn respond(
     section: &Section,
     domain: &Domain,
     solution: &Solution,
+    interaction: Option<&Interaction>,
     exclusion: f64,
 ) -> Option<Responses> {
     if section.actions.is_empty() {
@@ -122,6 +124,7 @@ pub fn respond(
             };
             Response {
                 load_factor: load_factor_to_yield(&extremes),
+                plastic_factor: interaction.and_then(|i| i.load_factor(&forces)),
                 energy_error: fields.energy_error(&forces),
                 torque: forces.t + forces.tw,
                 offset_torque: case.offset,

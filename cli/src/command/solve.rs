@@ -5,7 +5,9 @@ use std::path::{Path, PathBuf};
 use std::time::Instant;
 
 use clap::Args;
+use sectile_mesh::Point;
 use sectile_solver::material::Material;
+use sectile_solver::quantity::Quantity;
 use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
 use sectile_solver::stress::extreme::DEFAULT_EXCLUSION;
@@ -16,6 +18,7 @@ use super::progress::LevelProgress;
 use super::respond::respond;
 use crate::figure;
 use crate::figure::style::{Drawing, Style};
+use crate::interaction::Interaction;
 use crate::read::fault::Faults;
 use crate::read::{ReadSection, section_from_path, show};
 use crate::report;
@@ -23,7 +26,7 @@ use crate::response::{Names, Responses};
 use crate::section::materials_used;
 use crate::write::json::{Results, Run};
 use crate::write::slug::{cut_files, slugs};
-use crate::write::{actions, csv, digits, files, materials, seams, table, units, vtu};
+use crate::write::{actions, csv, digits, files, interaction, materials, seams, table, units, vtu};
 
 /// Options of `solve`.
 #[derive(Args, Clone, Debug)]
@@ -224,7 +227,17 @@ pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
         }
     }
     let respond_start = Instant::now();
-    let responses = respond(&read.section, &read.domain, &solution, args.corner_distance);
+    let centroid = [Quantity::CentroidX, Quantity::CentroidY]
+        .map(|q| solution.get(q).map_or(0.0, |figure| figure.value));
+    let centroid = Point::new(centroid[0], centroid[1]);
+    let interaction = Interaction::new(&read.section, &read.domain, centroid);
+    let responses = respond(
+        &read.section,
+        &read.domain,
+        &solution,
+        interaction.as_ref(),
+        args.corner_distance,
+    );
     if responses.is_none() && !read.section.actions.is_empty() {
         solution.notes.push(Note {
             kind: "actions-not-answered",
@@ -243,6 +256,7 @@ pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
         read,
         solution,
         responses,
+        interaction,
     };
 
     let write_start = Instant::now();
@@ -318,6 +332,7 @@ struct Answer {
     read: ReadSection,
     solution: Solution,
     responses: Option<Responses>,
+    interaction: Option<Interaction>,
 }
 
 impl Answer {
@@ -414,6 +429,13 @@ fn write_folder(
             style,
         ));
         written.extend(response_files(answer, responses));
+    }
+    if let Some(interaction) = &answer.interaction {
+        let drawn =
+            figure::interaction::draw(&section.title, &section.units, interaction, args.width);
+        figures.push(("interaction.svg".into(), drawn.svg));
+        let table = interaction::csv(&section.units, interaction);
+        written.push(("interaction.csv".into(), table.into_bytes()));
     }
     if let Some(dpi) = args.png {
         for (name, svg) in &figures {

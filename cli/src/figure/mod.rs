@@ -14,6 +14,7 @@ pub mod dimension;
 pub mod extreme;
 pub mod field;
 pub mod guide;
+pub mod interaction;
 pub mod joints;
 pub mod label;
 pub mod legend;

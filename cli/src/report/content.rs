@@ -335,8 +335,14 @@ fn summary(response: &Response) -> String {
     let factor = response.load_factor.map_or(String::new(), |f| {
         format!(", first yield at {} times", short(f, 4))
     });
+    let plastic = response.plastic_factor.map_or(String::new(), |f| {
+        format!(
+            ", N, M_x and M_y alone fully plastic at {} times",
+            short(f, 4)
+        )
+    });
     format!(
-        "{}{factor}; error of the shear stress in energy at most {}",
+        "{}{factor}{plastic}; error of the shear stress in energy at most {}",
         response.name,
         digits::percent_up(response.energy_error)
     )

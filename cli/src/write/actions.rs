@@ -131,6 +131,9 @@ fn summary(units: &Units, response: &Response) -> Vec<(&'static str, f64, String
     if let Some(factor) = response.load_factor {
         rows.push(("load_factor_to_yield", factor, String::new()));
     }
+    if let Some(factor) = response.plastic_factor {
+        rows.push(("plastic_load_factor", factor, String::new()));
+    }
     rows.push(("energy_error", response.energy_error, String::new()));
     rows
 }

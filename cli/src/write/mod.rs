@@ -6,6 +6,7 @@ pub mod cause;
 pub mod csv;
 pub mod digits;
 pub mod files;
+pub mod interaction;
 pub mod json;
 pub mod materials;
 pub mod seams;

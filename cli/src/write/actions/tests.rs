@@ -70,6 +70,7 @@ impl Sample {
                 torque: forces.t + forces.tw,
                 offset_torque: offset,
                 load_factor: load_factor_to_yield(&found),
+                plastic_factor: None,
                 extremes: found,
                 energy_error: fields.energy_error(&forces),
                 probes: vec![(

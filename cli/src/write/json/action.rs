@@ -35,6 +35,9 @@ pub struct Action {
     pub offset_torque: f64,
     /// First yield is reached at this multiple of the action; `null` without a yield stress.
     pub load_factor_to_yield: Option<f64>,
+    /// N, M_x and M_y make the section fully plastic at this multiple, shear, torsion and bimoment left
+    /// out; `null` without a yield stress of every piece or without N, M_x and M_y.
+    pub plastic_load_factor: Option<f64>,
     /// Relative error in energy of the shear stress, guaranteed.
     pub energy_error: f64,
     /// The measure that governs: utilisation where there is a yield stress, else von Mises.
@@ -178,6 +181,7 @@ fn action(units: &Units, names: &Names, response: &Response) -> Action {
         torque: z(response.torque * moment),
         offset_torque: z(response.offset_torque * moment),
         load_factor_to_yield: response.load_factor,
+        plastic_load_factor: response.plastic_factor,
         energy_error: response.energy_error,
         governing: governing.map(|(measure, _)| measure.key()),
         extremes: extremes_of(units, names, &response.extremes),
