@@ -8,4 +8,5 @@ pub mod read;
 pub mod report;
 pub mod response;
 pub mod section;
+pub mod trace;
 pub mod write;

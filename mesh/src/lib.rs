@@ -15,7 +15,7 @@ pub mod outline;
 pub mod point;
 pub mod quality;
 mod topology;
-mod tree;
+pub mod tree;
 pub mod triangulate;
 
 pub use point::{Point, Vector};

@@ -8,6 +8,7 @@ pub mod new;
 pub mod progress;
 pub mod respond;
 pub mod solve;
+pub mod trace;
 mod watch;
 
 use std::io::{IsTerminal, stdout};
@@ -32,6 +33,8 @@ pub enum Command {
     New(new::NewArgs),
     /// Properties of sections, with tables, results and figures.
     Solve(solve::SolveArgs),
+    /// Make a section file from a drawing.
+    Trace(trace::TraceArgs),
     /// One row a section, or a point of a sweep, on all cores.
     Many(many::ManyArgs),
     /// The dimension at which a property meets a target.
@@ -75,6 +78,7 @@ pub fn run(cli: &Cli) -> Outcome {
     match &cli.command {
         Command::New(args) => new::run(args),
         Command::Solve(args) => solve::run(args),
+        Command::Trace(args) => trace::run(args),
         Command::Many(args) => many::run(args),
         Command::Fit(args) => fit::run(args),
         Command::Completions(args) => manners::completions(args),

@@ -159,7 +159,7 @@ fn clip(text: &str, mark: &Range<usize>) -> Range<usize> {
 }
 
 /// Control characters and those that reorder text; a terminal would obey them.
-pub(super) fn hidden(c: char) -> bool {
+pub(crate) fn hidden(c: char) -> bool {
     c.is_control()
         || matches!(c, '\u{feff}' | '\u{200b}'..='\u{200f}' | '\u{2028}'..='\u{202e}' | '\u{2066}'..='\u{2069}')
 }

@@ -3,7 +3,7 @@
 mod action;
 mod combination;
 mod cut;
-mod excerpt;
+pub(crate) mod excerpt;
 pub mod fault;
 mod fields;
 pub mod file;

@@ -114,7 +114,8 @@ fn side_to(corners: &[Corner], i: usize, least: f64) -> Result<Side, CornerFault
 }
 
 /// The arc from `a` over `m` to `b`; `None` if the three lie in line or coincide.
-fn arc_through(a: Point, m: Point, b: Point) -> Option<Arc> {
+#[must_use]
+pub fn arc_through(a: Point, m: Point, b: Point) -> Option<Arc> {
     let (u, v) = (m - a, b - a);
     let double = 2.0 * u.cross(v);
     if double.abs() <= 1e-10 * u.length() * v.length() || m.distance(b) == 0.0 {
