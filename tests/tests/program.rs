@@ -119,6 +119,8 @@ fn a_folder_takes_all_files_and_is_kept_from_other_sections() {
     assert_eq!(
         names,
         [
+            "interaction.csv",
+            "interaction.svg",
             "mesh.svg",
             "properties.csv",
             "results.json",
