@@ -283,7 +283,8 @@ fn solved(
         solution(&read, wanted).map_err(|error| format!("{name} with {}: {error}", set()))?;
     let figure = solution.get(goal.property).ok_or_else(|| {
         format!(
-            "{name} has no {} with {}; `sectile solve` shows why",
+            "{name} has no {} with {}: a section in separate parts has no shear centre, torsion or \
+             shear areas, and the mass needs a density",
             goal.property.key(),
             set()
         )

@@ -7,7 +7,7 @@ use std::sync::atomic::Ordering;
 use std::time::Instant;
 
 use clap::Args;
-use indicatif::{ProgressBar, ProgressDrawTarget, ProgressStyle};
+use indicatif::{ProgressBar, ProgressDrawTarget, ProgressState, ProgressStyle};
 use rayon::prelude::*;
 use sectile_solver::quantity::Quantity;
 
@@ -379,9 +379,12 @@ fn bar(rows: usize, before: usize, on: bool) -> ProgressBar {
         ProgressDrawTarget::hidden()
     };
     let bar = ProgressBar::with_draw_target(Some(rows as u64), target);
-    let template = "{wide_bar} {pos}/{len}, {per_sec}, {eta} left";
+    let template = "{wide_bar} {pos}/{len}, {rate} a second, {eta} left";
     if let Ok(style) = ProgressStyle::with_template(template) {
-        bar.set_style(style.progress_chars("█▌ "));
+        let rate = |state: &ProgressState, out: &mut dyn std::fmt::Write| {
+            let _ = write!(out, "{:.0}", state.per_sec());
+        };
+        bar.set_style(style.with_key("rate", rate).progress_chars("█▌ "));
     }
     // Rows that were there before count for the length, not for the rate.
     bar.set_position(before as u64);
