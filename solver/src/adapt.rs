@@ -77,9 +77,11 @@ pub(crate) fn solve(
     if let Some(plastic) = &plastic {
         properties.extend(plastic::quantities::properties(plastic, &moments));
     }
+    properties.sort_by_key(|(q, _)| *q);
     clock.bounds += start.elapsed().as_secs_f64();
     let mut notes: Vec<Note> = corners.iter().map(corner_note).collect();
     notes.extend(mixture_notes(domain, &mixture, materials, poisson));
+    notes.extend(missing_yield(domain, materials));
 
     let frame = Frame {
         origin: moments.centroid,
@@ -102,6 +104,7 @@ pub(crate) fn solve(
             levels: Vec::new(),
             reached: true,
             properties,
+            plastic,
             corners,
             notes,
             timings: clock,
@@ -187,6 +190,7 @@ pub(crate) fn solve(
             levels,
             reached,
             properties,
+            plastic,
             corners,
             notes,
             timings: clock,
@@ -261,6 +265,20 @@ fn mixture_notes(
         text,
         at: None,
     }]
+}
+
+/// Full plasticity takes a yield stress of every material; told where some state one.
+fn missing_yield(domain: &Domain, materials: &[Material]) -> Option<Note> {
+    let used = || domain.piece_materials.iter().map(|&m| &materials[m]);
+    let missing = used().find(|m| m.yield_stress.is_none())?;
+    used().any(|m| m.yield_stress.is_some()).then(|| Note {
+        kind: "plasticity-not-given",
+        text: format!(
+            "Plastic moduli and fully plastic forces are not given: {:?} states no yield stress.",
+            missing.name
+        ),
+        at: None,
+    })
 }
 
 fn corner_note(corner: &SingularCorner) -> Note {

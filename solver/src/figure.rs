@@ -5,7 +5,7 @@
 pub enum Trust {
     /// Closed form: the enclosure covers rounding only.
     Exact,
-    /// The enclosure is guaranteed by a solution and its dual.
+    /// The enclosure is guaranteed: by a solution and its dual, or by an integral from below and above.
     Bounded,
     /// The enclosure rests on a constant that is estimated, not known.
     Estimated,

@@ -12,6 +12,8 @@ pub enum Group {
     Torsion,
     /// Shear centre, shear areas.
     Shear,
+    /// Fully plastic forces and moments.
+    Plasticity,
     /// Stiffnesses of a section of several materials.
     Stiffness,
 }
@@ -86,10 +88,10 @@ quantities! {
     SectionModulusBottom "section_modulus_bottom" "W_bot" Bending Length(3), "I_x over the distance from the centroid to the lowest fibre";
     SectionModulusLeft "section_modulus_left" "W_left" Bending Length(3), "I_y over the distance from the centroid to the leftmost fibre";
     SectionModulusRight "section_modulus_right" "W_right" Bending Length(3), "I_y over the distance from the centroid to the rightmost fibre";
-    PlasticModulusX "plastic_modulus_x" "Z_x" Bending Length(3), "Plastic modulus for bending about x: ∫|y − y_p| dA";
-    PlasticModulusY "plastic_modulus_y" "Z_y" Bending Length(3), "Plastic modulus for bending about y: ∫|x − x_p| dA";
-    PlasticCentroidX "plastic_centroid_x" "x_p" Bending Length(1), "The vertical line x = x_p halves the area";
-    PlasticCentroidY "plastic_centroid_y" "y_p" Bending Length(1), "The horizontal line y = y_p halves the area";
+    PlasticModulusX "plastic_modulus_x" "Z_x" Bending Length(3), "Plastic modulus for bending about x, ∫|y − y_p| dA; with several yield stresses M_px over the reference material's";
+    PlasticModulusY "plastic_modulus_y" "Z_y" Bending Length(3), "Plastic modulus for bending about y, ∫|x − x_p| dA; with several yield stresses M_py over the reference material's";
+    PlasticCentroidX "plastic_centroid_x" "x_p" Bending Length(1), "Plastic neutral axis of bending about y: the line x = x_p halves the area, with several yield stresses the yield force";
+    PlasticCentroidY "plastic_centroid_y" "y_p" Bending Length(1), "Plastic neutral axis of bending about x: the line y = y_p halves the area, with several yield stresses the yield force";
     TorsionConstant "torsion_constant" "J" Torsion Length(4), "Torsion constant, T = G J θ′";
     WarpingConstant "warping_constant" "C_w" Torsion Length(6), "Warping constant, ∫ω² dA, ω about the shear centre with zero mean";
     PlasticTorsionModulus "plastic_torsion_modulus" "Z_t" Torsion Length(3), "Plastic torsion modulus, 2∫φ dA: fully plastic torque over the yield stress in shear (f_y/√3 after von Mises), φ the least distance from the edge";
@@ -104,6 +106,10 @@ quantities! {
     PolarRadius "polar_radius" "r_0" Shear Length(1), "Polar radius about the shear centre, r₀² = (I_x + I_y)/A + distance² of centroid and shear centre";
     MonosymmetryX "monosymmetry_x" "β_x" Shear Length(1), "(1/I_x) ∫y(x²+y²) dA − 2 y_s about centroidal axes";
     MonosymmetryY "monosymmetry_y" "β_y" Shear Length(1), "(1/I_y) ∫x(x²+y²) dA − 2 x_s about centroidal axes";
+    PlasticAxialForce "plastic_axial_force" "N_p" Plasticity ForceLength(0), "Fully plastic axial force, ∫f_y dA";
+    PlasticMomentX "plastic_moment_x" "M_px" Plasticity ForceLength(1), "Fully plastic moment about x, ∫f_y |y − y_p| dA: neutral axis parallel to x, no axial force, the moment about y left free";
+    PlasticMomentY "plastic_moment_y" "M_py" Plasticity ForceLength(1), "Fully plastic moment about y, ∫f_y |x − x_p| dA: neutral axis parallel to y, no axial force, the moment about x left free";
+    PlasticTorque "plastic_torque" "T_p" Plasticity ForceLength(1), "Fully plastic torque, Z_t f_y/√3 (yield in shear after von Mises), warping free";
     AxialStiffness "axial_stiffness" "EA" Stiffness ForceLength(0), "Axial stiffness, ∫E dA";
     BendingStiffnessX "bending_stiffness_x" "EI_x" Stiffness ForceLength(2), "Bending stiffness about the centroidal x axis, ∫E y² dA";
     BendingStiffnessY "bending_stiffness_y" "EI_y" Stiffness ForceLength(2), "Bending stiffness about the centroidal y axis, ∫E x² dA";

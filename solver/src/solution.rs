@@ -10,6 +10,7 @@ use crate::geometry::Frame;
 use crate::level::Fields;
 use crate::material::Material;
 use crate::mixture::Ratio;
+use crate::plastic::Plastic;
 use crate::property::area::AreaMoments;
 use crate::property::shear::ShearProperties;
 use crate::quantity::Quantity;
@@ -84,6 +85,9 @@ pub struct Solution {
     pub reached: bool,
     /// The properties in the order of [`Quantity::ALL`]; those that do not apply are absent.
     pub properties: Vec<(Quantity, Figure)>,
+    /// Full plasticity, moments about the centroid that elastic stresses use; none where only some of
+    /// the materials state a yield stress, or none of several.
+    pub plastic: Option<Plastic>,
     /// The points at which the calculated stress has no limit.
     pub corners: Vec<SingularCorner>,
     /// Findings.

@@ -303,7 +303,9 @@ pub fn power(q: Quantity) -> i32 {
     use sectile_solver::quantity::Dimension;
     match q.dimension() {
         Dimension::Length(n) => n,
-        Dimension::MassPerLength | Dimension::Angle | Dimension::ForceLength(_) => 0,
+        Dimension::MassPerLength | Dimension::Angle => 0,
+        // A yield stress is what it is, in any unit of length.
+        Dimension::ForceLength(n) => n + 2,
     }
 }
 

@@ -11,7 +11,7 @@ use super::Input;
 use super::document::{Block, Figure, Row, Table};
 use crate::response::{Response, Responses};
 use crate::write::digits::{self, short};
-use crate::write::units::{moment_per_force, pretty, stress_per_force};
+use crate::write::units::{in_print, moment_per_force, pretty, stress_per_force};
 use crate::write::{CAUTION, seams, wording};
 
 /// The blocks of the report, in order.
@@ -229,11 +229,12 @@ fn properties(input: &Input) -> Table {
             group = Some(quantity.group());
             rows.push(Row::Group(wording::heading(quantity.group()).into()));
         }
+        let figure = in_print(quantity.dimension(), figure, units);
         let number = |x: f64| short(x + 0.0, 9);
         rows.push(Row::Cells(vec![
             wording::name(*quantity).into(),
             quantity.symbol().into(),
-            digits::minus_sign(&digits::print(figure).line()),
+            digits::minus_sign(&digits::print(&figure).line()),
             number(figure.low),
             number(figure.high),
             pretty(quantity.dimension(), units),

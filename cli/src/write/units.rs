@@ -1,5 +1,6 @@
 //! Units in print, and how large the declared ones are.
 
+use sectile_solver::figure::Figure;
 use sectile_solver::material::Material;
 use sectile_solver::quantity::Dimension;
 
@@ -16,7 +17,7 @@ pub fn ascii(dimension: Dimension, units: &Units) -> String {
         Dimension::MassPerLength => "kg/m".into(),
         Dimension::Angle => "deg".into(),
         Dimension::ForceLength(0) => units.force.into(),
-        Dimension::ForceLength(1) => format!("{} {}", units.force, units.length),
+        Dimension::ForceLength(1) => units.moment.clone(),
         Dimension::ForceLength(n) => format!("{} {}{n}", units.force, units.length),
     }
 }
@@ -31,8 +32,18 @@ pub fn pretty(dimension: Dimension, units: &Units) -> String {
         Dimension::MassPerLength => "kg/m".into(),
         Dimension::Angle => "°".into(),
         Dimension::ForceLength(0) => units.force.into(),
-        Dimension::ForceLength(1) => format!("{} {}", units.force, units.length),
+        Dimension::ForceLength(1) => units.moment.clone(),
         Dimension::ForceLength(n) => format!("{} {}{}", units.force, units.length, superscript(n)),
+    }
+}
+
+/// A property as the solver gives it in the unit that it is printed in: moments come in the unit of force
+/// times that of length and go out in that of moments.
+#[must_use]
+pub fn in_print(dimension: Dimension, figure: &Figure, units: &Units) -> Figure {
+    match dimension {
+        Dimension::ForceLength(1) => figure.scaled(moment_per_force(units)),
+        _ => *figure,
     }
 }
 
@@ -144,6 +155,13 @@ mod tests {
         assert_eq!(pretty(Dimension::Length(1), &u), "mm");
         assert_eq!(ascii(Dimension::Length(0), &u), "");
         assert_eq!(pretty(Dimension::Angle, &u), "°");
+        assert_eq!(pretty(Dimension::ForceLength(4), &u), "kN mm⁴");
+        // 2000 kN mm are 2 kN m; stiffnesses stay in kN mm².
+        let two = Figure::exact(2000.0, 2000.0);
+        let moment = Dimension::ForceLength(1);
+        assert_eq!(ascii(moment, &u), "kN m");
+        assert!((in_print(moment, &two, &u).value - 2.0).abs() < 1e-15);
+        assert_eq!(in_print(Dimension::ForceLength(2), &two, &u), two);
     }
 
     #[test]

@@ -32,8 +32,8 @@ pub fn name(quantity: Quantity) -> &'static str {
         Q::SectionModulusRight => "Section modulus, right",
         Q::PlasticModulusX => "Plastic modulus, x",
         Q::PlasticModulusY => "Plastic modulus, y",
-        Q::PlasticCentroidX => "Equal-area line, x",
-        Q::PlasticCentroidY => "Equal-area line, y",
+        Q::PlasticCentroidX => "Plastic neutral axis, x",
+        Q::PlasticCentroidY => "Plastic neutral axis, y",
         Q::TorsionConstant => "Torsion constant",
         Q::WarpingConstant => "Warping constant",
         Q::PlasticTorsionModulus => "Plastic torsion modulus",
@@ -48,6 +48,10 @@ pub fn name(quantity: Quantity) -> &'static str {
         Q::PolarRadius => "Polar radius",
         Q::MonosymmetryX => "Monosymmetry, x",
         Q::MonosymmetryY => "Monosymmetry, y",
+        Q::PlasticAxialForce => "Plastic axial force",
+        Q::PlasticMomentX => "Plastic moment, x",
+        Q::PlasticMomentY => "Plastic moment, y",
+        Q::PlasticTorque => "Plastic torque",
         Q::AxialStiffness => "Axial stiffness",
         Q::BendingStiffnessX => "Bending stiffness, x",
         Q::BendingStiffnessY => "Bending stiffness, y",
@@ -64,6 +68,7 @@ pub fn heading(group: Group) -> &'static str {
         Group::Bending => "Bending",
         Group::Torsion => "Torsion and warping",
         Group::Shear => "Shear",
+        Group::Plasticity => "Full plasticity",
         Group::Stiffness => "Stiffness",
     }
 }
@@ -98,7 +103,7 @@ pub fn trust(trust: Trust) -> &'static str {
 pub fn promise(trust: Trust) -> &'static str {
     match trust {
         Trust::Exact => "closed form, all digits shown hold",
-        Trust::Bounded => "the true value lies within ±, guaranteed by a solution and its dual",
+        Trust::Bounded => "the true value lies within ±, guaranteed from below and from above",
         Trust::Estimated => "± rests on an estimate, chosen to be on the safe side",
     }
 }

@@ -32,5 +32,16 @@ pub(crate) fn properties(plastic: &Plastic, m: &AreaMoments) -> Vec<(Quantity, F
     if let Some(torsion) = plastic.torsion_modulus {
         out.push((Quantity::PlasticTorsionModulus, torsion));
     }
+    let Some(yield_stress) = plastic.yield_stress else {
+        return out;
+    };
+    let squash = plastic.surface.squash();
+    out.push((Quantity::PlasticAxialForce, Figure::exact(squash, squash)));
+    out.push((Quantity::PlasticMomentX, modulus(z_x).scaled(yield_stress)));
+    out.push((Quantity::PlasticMomentY, modulus(z_y).scaled(yield_stress)));
+    if let Some(torsion) = plastic.torsion_modulus {
+        let shear = yield_stress / 3.0_f64.sqrt();
+        out.push((Quantity::PlasticTorque, torsion.scaled(shear)));
+    }
     out
 }
