@@ -1,6 +1,8 @@
 //! A drawing becomes a section file.
 //!
-//!     bytes ─▶ Drawing (paths of lines, arcs and curves) ─▶ sides ─▶ loops ─▶ pieces ─▶ text
+//! ```text
+//! bytes ─▶ Drawing (paths of lines, arcs and curves) ─▶ sides ─▶ loops ─▶ pieces ─▶ text
+//! ```
 //!
 //! One file a format reads a drawing; what follows is the same for all of them. Nothing here reads or
 //! writes files.
