@@ -3,14 +3,9 @@
 
 use std::f64::consts::{FRAC_PI_2, PI};
 
-use sectile_mesh::Point;
-use sectile_mesh::domain::Domain;
-use sectile_solver::plastic::analyse;
 use sectile_solver::plastic::interaction::{PlasticState, Surface};
+use sectile_solver::solution::Solution;
 use sectile_solver::stress::forces::SectionForces;
-
-use crate::section::Section;
-use crate::write::units::consistent_materials;
 
 /// N over N_p of the curves of M_x and M_y.
 pub const LEVELS: [f64; 5] = [0.0, 0.2, 0.4, 0.6, 0.8];
@@ -18,35 +13,25 @@ pub const LEVELS: [f64; 5] = [0.0, 0.2, 0.4, 0.6, 0.8];
 const DEVIATION: f64 = 1e-3;
 
 /// The interaction of a section of which every piece has a yield stress.
-#[derive(Clone, Debug)]
-pub struct Interaction {
-    surface: Surface,
+#[derive(Clone, Copy, Debug)]
+pub struct Interaction<'a> {
+    surface: &'a Surface,
     /// Fully plastic axial force.
     pub n: f64,
     /// Plastic moments about x and y without axial force.
     pub moments: [f64; 2],
 }
 
-impl Interaction {
-    /// The interaction about `origin`, the centroid; `None` where a piece has no yield stress.
+impl<'a> Interaction<'a> {
+    /// The interaction about the centroid; `None` where a piece has no yield stress.
     #[must_use]
-    pub fn new(section: &Section, domain: &Domain, origin: Point) -> Option<Self> {
-        let materials = consistent_materials(section);
-        let yields: Vec<Option<f64>> = materials.iter().map(|m| m.yield_stress).collect();
-        let stated = |&m: &usize| yields.get(m).copied().flatten().is_some();
-        if !domain.piece_materials.iter().all(stated) {
-            return None;
-        }
-        let reference = domain.piece_materials.first().copied()?;
-        let surface = analyse(domain, &yields, reference, origin)?.surface;
-        let n = surface.squash();
+    pub fn new(solution: &'a Solution) -> Option<Self> {
+        let plastic = solution.plastic.as_ref()?;
+        plastic.yield_stress?;
         Some(Self {
-            moments: [
-                surface.at_force(0.0, 0.0).mx,
-                surface.at_force(-FRAC_PI_2, 0.0).my,
-            ],
-            n,
-            surface,
+            surface: &plastic.surface,
+            n: plastic.surface.squash(),
+            moments: plastic.axes.map(|axis| axis.moment),
         })
     }
 

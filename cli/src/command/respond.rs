@@ -26,20 +26,20 @@ const DIVISIONS: usize = 8;
 
 /// The answers; `None` without actions, or for a section in separate parts, which has no shear stress.
 ///
-/// `interaction`: where every piece has a yield stress; `exclusion`: distance from sharp re-entrant corners over the wall's thickness within which stresses
+/// `exclusion`: distance from sharp re-entrant corners over the wall's thickness within which stresses
 /// are not quoted.
 #[must_use]
 pub fn respond(
     section: &Section,
     domain: &Domain,
     solution: &Solution,
-    interaction: Option<&Interaction>,
     exclusion: f64,
 ) -> Option<Responses> {
     if section.actions.is_empty() {
         return None;
     }
     let fields = UnitFields::new(solution, DIVISIONS)?;
+    let interaction = Interaction::new(solution);
     let quotable = Quotable::new(solution, &fields, exclusion);
     let used = materials_used(domain);
     let by_material: Vec<(usize, Quotable)> = used
@@ -124,7 +124,7 @@ pub fn respond(
             };
             Response {
                 load_factor: load_factor_to_yield(&extremes),
-                plastic_factor: interaction.and_then(|i| i.load_factor(&forces)),
+                plastic_factor: interaction.as_ref().and_then(|i| i.load_factor(&forces)),
                 energy_error: fields.energy_error(&forces),
                 torque: forces.t + forces.tw,
                 offset_torque: case.offset,

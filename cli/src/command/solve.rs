@@ -5,9 +5,7 @@ use std::path::{Path, PathBuf};
 use std::time::Instant;
 
 use clap::Args;
-use sectile_mesh::Point;
 use sectile_solver::material::Material;
-use sectile_solver::quantity::Quantity;
 use sectile_solver::solution::{Level, Note, Settings, Solution, solve};
 
 use sectile_solver::stress::extreme::DEFAULT_EXCLUSION;
@@ -227,17 +225,7 @@ pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
         }
     }
     let respond_start = Instant::now();
-    let centroid = [Quantity::CentroidX, Quantity::CentroidY]
-        .map(|q| solution.get(q).map_or(0.0, |figure| figure.value));
-    let centroid = Point::new(centroid[0], centroid[1]);
-    let interaction = Interaction::new(&read.section, &read.domain, centroid);
-    let responses = respond(
-        &read.section,
-        &read.domain,
-        &solution,
-        interaction.as_ref(),
-        args.corner_distance,
-    );
+    let responses = respond(&read.section, &read.domain, &solution, args.corner_distance);
     if responses.is_none() && !read.section.actions.is_empty() {
         solution.notes.push(Note {
             kind: "actions-not-answered",
@@ -256,7 +244,6 @@ pub(super) fn one(args: &SolveArgs, file: &Path) -> Result<Outcome, Refusal> {
         read,
         solution,
         responses,
-        interaction,
     };
 
     let write_start = Instant::now();
@@ -332,7 +319,6 @@ struct Answer {
     read: ReadSection,
     solution: Solution,
     responses: Option<Responses>,
-    interaction: Option<Interaction>,
 }
 
 impl Answer {
@@ -430,11 +416,11 @@ fn write_folder(
         ));
         written.extend(response_files(answer, responses));
     }
-    if let Some(interaction) = &answer.interaction {
+    if let Some(interaction) = Interaction::new(&answer.solution) {
         let drawn =
-            figure::interaction::draw(&section.title, &section.units, interaction, args.width);
+            figure::interaction::draw(&section.title, &section.units, &interaction, args.width);
         figures.push(("interaction.svg".into(), drawn.svg));
-        let table = interaction::csv(&section.units, interaction);
+        let table = interaction::csv(&section.units, &interaction);
         written.push(("interaction.csv".into(), table.into_bytes()));
     }
     if let Some(dpi) = args.png {

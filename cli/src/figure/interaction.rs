@@ -14,6 +14,8 @@ use crate::write::{CAUTION, digits};
 
 /// Room for the numbers beside a plot, mm.
 const NUMBERS: f64 = 9.0;
+/// Width of a number and the space beside it, mm.
+const NUMBER: f64 = 6.8;
 /// Dashes of the curves at rising N, mm.
 const DASHES: [&str; 5] = ["", "3 1", "1.6 1", "0.8 0.8", "0.3 0.8"];
 
@@ -71,16 +73,20 @@ pub fn draw(title: &str, units: &Units, interaction: &Interaction, width: f64) -
     let end = page.cursor;
     page.cursor = from + LABEL;
     let x = MARGIN + beside + 6.0;
+    let sample = (0.07 * width).clamp(4.0, 9.0);
     for (level, dashes) in LEVELS.iter().zip(DASHES) {
         page.cursor += 1.7 * LABEL;
         let y = page.cursor - 0.35 * LABEL;
         page.line(
             Point::new(x, y),
-            Point::new(x + 9.0, y),
+            Point::new(x + sample, y),
             Pen::line(INK, 0.4).dashed(dashes),
         );
         let text = format!("N = {} N_p", digits::short(*level, 2));
-        page.text(Point::new(x + 11.0, page.cursor), &Label::new(&text));
+        page.text(
+            Point::new(x + sample + 2.0, page.cursor),
+            &Label::new(&text),
+        );
     }
     page.cursor = end.max(page.cursor);
     let moment = moment_per_force(units);
@@ -138,21 +144,23 @@ fn plot(page: &mut Page, [left, right]: [f64; 2], names: [&str; 2], curves: &[(V
             Pen::line(FAINT, 0.06)
         }
     };
+    // Numbers are left out where they would meet.
+    let every = |levels: &Levels| (NUMBER * levels.bands() as f64 / side).ceil().max(1.0) as i64;
     for i in 0..=xs.bands() {
         let v = xs.edge(i);
         let at = on_page(Point::new(v, y0));
         page.line(at, Point::new(at.x, frame.y0), pen(v));
-        if (xs.first + i as i64).rem_euclid(2) == 0 {
+        if (xs.first + i as i64).rem_euclid(every(&xs)) == 0 {
             let text = digits::short(v, 3);
             let label = Label::small(&text).anchored(Anchor::Middle);
-            page.text(Point::new(at.x, frame.y1 + 1.2 + 0.85 * SMALL), &label);
+            page.text(Point::new(at.x, frame.y1 + 1.6 + 0.85 * SMALL), &label);
         }
     }
     for i in 0..=ys.bands() {
         let v = ys.edge(i);
         let at = on_page(Point::new(x0, v));
         page.line(at, Point::new(frame.x1, at.y), pen(v));
-        if (ys.first + i as i64).rem_euclid(2) == 0 {
+        if (ys.first + i as i64).rem_euclid(every(&ys)) == 0 {
             let text = digits::short(v, 3);
             let label = Label::small(&text).anchored(Anchor::End);
             page.text(Point::new(frame.x0 - 1.2, at.y + 0.36 * SMALL), &label);
@@ -166,7 +174,7 @@ fn plot(page: &mut Page, [left, right]: [f64; 2], names: [&str; 2], curves: &[(V
         }
         page.path(data, Pen::line(INK, 0.4).dashed(dashes));
     }
-    page.cursor = frame.y1 + 1.2 + 2.1 * SMALL;
+    page.cursor = frame.y1 + 1.6 + 2.1 * SMALL;
     let at = Point::new(frame.x1, page.cursor + 0.4 * SMALL);
     page.text(at, &Label::new(names[0]).anchored(Anchor::End));
     page.cursor += 1.6 * LABEL;

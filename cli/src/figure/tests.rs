@@ -7,6 +7,7 @@ use sectile_mesh::{Point, Vector};
 use sectile_solver::figure::{Figure, Trust};
 use sectile_solver::quantity::Quantity as Q;
 use sectile_solver::sample::{Lattice, UnitForce};
+use sectile_solver::solution::{Settings, solve};
 
 use sectile_solver::stress::measure::Measure;
 
@@ -14,6 +15,7 @@ use super::page::Finished;
 use super::style::Drawing;
 use super::surface::{Sharing, Surface};
 use super::*;
+use crate::interaction::Interaction;
 use crate::write::actions::tests::Sample;
 
 fn bands(width_mm: f64) -> Style {
@@ -665,4 +667,42 @@ fn same_input_same_text() {
         .svg
     };
     assert_eq!(draw(), draw());
+}
+
+#[test]
+fn interaction_curves_keep_to_their_page() {
+    let sections = [
+        (
+            "angle",
+            vec![
+                (0.0, 0.0),
+                (80.0, 0.0),
+                (80.0, 8.0),
+                (8.0, 8.0),
+                (8.0, 120.0),
+                (0.0, 120.0),
+            ],
+        ),
+        (
+            "strip",
+            vec![(0.0, 0.0), (500.0, 0.0), (500.0, 2.0), (0.0, 2.0)],
+        ),
+    ];
+    for (name, corners) in sections {
+        let domain = samples::domain(&[samples::polygon(&corners)]);
+        let mut material = samples::materials()[0].clone();
+        material.yield_stress = Some(0.235);
+        let settings = Settings {
+            tolerance: 1e-2,
+            order: None,
+            max_unknowns: 100_000,
+            reference: None,
+        };
+        let solution = solve(&domain, &[material], 1e-3, &settings, &mut |_| {}).unwrap();
+        let interaction = Interaction::new(&solution).unwrap();
+        for width in [60.0, 100.0, 160.0, 300.0] {
+            let figure = interaction::draw("A title", &units(), &interaction, width);
+            sound(&format!("interaction-{name}-{width}"), &figure);
+        }
+    }
 }

@@ -70,7 +70,7 @@ impl Sample {
                 torque: forces.t + forces.tw,
                 offset_torque: offset,
                 load_factor: load_factor_to_yield(&found),
-                plastic_factor: None,
+                plastic_factor: Some(2.468),
                 extremes: found,
                 energy_error: fields.energy_error(&forces),
                 probes: vec![(
@@ -153,7 +153,7 @@ fn stresses_have_every_measure_of_every_action_and_the_envelope() {
     let text = stresses_csv(&sample.units, &sample.names(), &sample.responses);
     let rows = rows(&text, &STRESSES);
     let n = Measure::ALL.len();
-    assert_eq!(rows.len(), 3 * (n + 4) + n + 1);
+    assert_eq!(rows.len(), 3 * (n + 5) + n + 1);
     for response in &sample.responses.list {
         for (measure, extreme) in &response.extremes.0 {
             let row = rows
@@ -175,7 +175,7 @@ fn stresses_have_every_measure_of_every_action_and_the_envelope() {
     assert_eq!(rows.iter().filter(|r| &r[1] == "envelope").count(), n);
     assert_eq!(
         rows.iter().filter(|r| &r[1] == "combination").count(),
-        n + 4
+        n + 5
     );
     assert_eq!(&rows.last().unwrap()[12], CAUTION);
 }

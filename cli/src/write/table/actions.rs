@@ -51,6 +51,9 @@ pub fn render(
     lines.extend(crossings(units, names, responses, &shown, look));
     lines.push(String::new());
     lines.extend(wrap(LEGEND, width, "  "));
+    if responses.list.iter().any(|r| r.plastic_factor.is_some()) {
+        lines.extend(wrap(PLASTIC, width, "  "));
+    }
     if !solution.corners.is_empty() {
         let text = format!(
             "Extremes keep off sharp re-entrant corners, where linear-elastic stress has no limit, by {} \
@@ -67,6 +70,8 @@ pub fn render(
 const LEGEND: &str = "mostly: the part of the action with the largest share of the stress. torque: about \
     the shear centre, that of the line of action included. yield ×: first yield at this multiple of the \
     action. error: of the shear field in energy, guaranteed.";
+const PLASTIC: &str = "plastic ×: N, Mx and My of the action make the whole section yield at this multiple; \
+    its shear, torsion and bimoment are no part of it, nor are buckling and strain hardening.";
 
 fn governing_table(
     units: &Units,
@@ -87,14 +92,23 @@ fn governing_table(
     if used {
         heads.push(("yield ×", String::new()));
     }
+    let plastic = responses.list.iter().any(|r| r.plastic_factor.is_some());
+    if plastic {
+        heads.push(("plastic ×", String::new()));
+    }
     heads.push(("error", String::new()));
     let rows: Vec<Vec<String>> = shown
         .iter()
-        .map(|&i| governing_row(units, names, &responses.list[i], pieces, used))
+        .map(|&i| governing_row(units, names, &responses.list[i], pieces, used, plastic))
         .collect();
     let numbers: Vec<bool> = heads
         .iter()
-        .map(|(h, _)| matches!(*h, "von Mises" | "torque" | "yield ×" | "error"))
+        .map(|(h, _)| {
+            matches!(
+                *h,
+                "von Mises" | "torque" | "yield ×" | "plastic ×" | "error"
+            )
+        })
         .collect();
     columns(&heads, &rows, &numbers, look)
 }
@@ -105,6 +119,7 @@ fn governing_row(
     response: &Response,
     pieces: bool,
     used: bool,
+    plastic: bool,
 ) -> Vec<String> {
     let mut row = vec![response.name.clone()];
     match actions::governing(response) {
@@ -121,6 +136,9 @@ fn governing_row(
     row.push(short(response.torque * moment_per_force(units)));
     if used {
         row.push(response.load_factor.map_or("–".into(), short));
+    }
+    if plastic {
+        row.push(response.plastic_factor.map_or("–".into(), short));
     }
     row.push(digits::percent_up(response.energy_error));
     row

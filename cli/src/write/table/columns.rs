@@ -68,7 +68,8 @@ pub fn columns(
         } else {
             CellAlignment::Left
         });
-        column.set_padding((0, if i == last { 0 } else { 2 }));
+        let gap = if look.width < 80 { 1 } else { 2 };
+        column.set_padding((0, if i == last { 0 } else { gap }));
         column.set_constraint(if free(i) {
             ColumnConstraint::LowerBoundary(Width::Fixed(10))
         } else {
