@@ -1,7 +1,9 @@
 //! Section files in; tables, figures and results out. Knows nothing of numerics.
 
+pub mod answer;
 pub mod batch;
 pub mod command;
+mod digest;
 pub mod figure;
 pub mod interaction;
 pub mod read;

@@ -61,6 +61,52 @@ fn cell<'t>(heads: &[String], row: &'t [String], head: &str) -> &'t str {
     &row[heads.iter().position(|h| h == head).unwrap()]
 }
 
+/// Every property, moments of plasticity and stiffnesses of two materials among them, is the one that
+/// `solve` prints, in its unit and to the last bit.
+#[test]
+fn rows_hold_what_solve_prints() {
+    let folder = tempfile::tempdir().unwrap();
+    let folder = folder.path();
+    let text = "title = \"Flitch (invented)\"\nunits = { length = \"cm\", force = \"kN\", moment = \"kN m\", \
+                stress = \"MPa\" }\n\
+                [material.steel]\nE = 210000\nnu = 0.3\nyield = 250\ndensity = 7850\n\
+                [material.timber]\nE = 11000\nnu = 0.3\nyield = 20\ndensity = 420\n\
+                [[piece]]\nname = \"plate\"\nmaterial = \"steel\"\nbar = { at = [0, 0], b = 1, h = 20 }\n\
+                [[piece]]\nname = \"left\"\nmaterial = \"timber\"\nbar = { at = [-3, 0], b = 5, h = 20 }\n\
+                [[piece]]\nname = \"right\"\nmaterial = \"timber\"\nbar = { at = [3, 0], b = 5, h = 20 }\n";
+    fs::write(folder.join("flitch.section.toml"), text).unwrap();
+    let mut solve = program();
+    solve
+        .current_dir(folder)
+        .args(["solve", "flitch.section.toml", "--json"]);
+    let output = solve.args(["--tolerance", "1e-3"]).output().unwrap();
+    let json: Value = serde_json::from_slice(&output.stdout).unwrap();
+    many(
+        &[
+            "flitch.section.toml",
+            "--columns",
+            "all",
+            "--bounds",
+            "--tolerance",
+            "1e-3",
+            "--out",
+            "many.csv",
+        ],
+        folder,
+    )
+    .success();
+    let (heads, rows) = table(&read(folder, "many.csv"));
+    let properties = json["properties"].as_object().unwrap();
+    assert_eq!(properties["plastic_moment_x"]["unit"], "kN m");
+    assert_eq!(cell(&heads, &rows[0], "moment_unit"), "kN m");
+    for (key, property) in properties {
+        for (end, suffix) in [("value", ""), ("low", "_low"), ("high", "_high")] {
+            let printed = cell(&heads, &rows[0], &format!("{key}{suffix}"));
+            assert_eq!(printed.parse().ok(), property[end].as_f64(), "{key} {end}");
+        }
+    }
+}
+
 #[test]
 fn rows_are_those_of_solve_bit_for_bit_on_any_number_of_threads() {
     let folder = tempfile::tempdir().unwrap();

@@ -44,14 +44,17 @@ fn a_rectangle_follows_its_parabola() {
             continue;
         }
         let ratio = |k: usize| row[k].parse::<f64>().unwrap();
-        let (n, m) = (ratio(5), ratio(6));
+        let (n, m) = (ratio(6), ratio(7));
         assert!((m.abs() - (1.0 - n * n)).abs() < 1e-9, "{n} {m}");
-        assert!((ratio(2) - n * n_p).abs() < 1e-9 * n_p);
-        assert!((ratio(3) - m * m_p).abs() < 1e-9 * m_p);
+        assert!((ratio(3) - n * n_p).abs() < 1e-9 * n_p);
+        assert!((ratio(4) - m * m_p).abs() < 1e-9 * m_p);
+        // The axis moves towards the tension until as much is left of it as N takes.
+        assert!((ratio(2) + n * 50.0).abs() < 1e-7, "{n} {}", ratio(2));
         points += 1;
     }
     assert!(points > 20, "{points}");
-    assert!(text.contains("no buckling"));
+    assert!(text.contains("no buckling") && text.contains("Plastic section analysis"));
+    assert!(!text.contains("Linear-elastic"));
     let svg = fs::read_to_string(results.join("interaction.svg")).unwrap();
-    assert!(svg.contains("Plastic interaction"));
+    assert!(svg.contains("Plastic interaction") && !svg.contains("Linear-elastic"));
 }

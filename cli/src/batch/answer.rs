@@ -2,26 +2,16 @@
 
 use std::panic::{AssertUnwindSafe, catch_unwind};
 
-use sectile_solver::solution::{Settings, Solution, solve};
+use sectile_solver::solution::Solution;
 
 use super::columns::Columns;
-use super::job::{Input, Job, first_message, hash};
+use super::job::{Input, Job, first_message};
 use super::row::Cell;
+use crate::answer::{Wanted, solution};
+use crate::digest::sha256;
 use crate::read::vary::{self, Setting};
-use crate::read::{ReadSection, section_from_text, text_from_path};
+use crate::read::{section_from_text, text_from_path};
 use crate::section::Units;
-use crate::write::units::consistent_materials;
-
-/// What is asked of every section.
-#[derive(Clone, Copy, Debug)]
-pub struct Wanted {
-    /// As in [`Settings`].
-    pub tolerance: f64,
-    /// As in [`Settings`].
-    pub order: Option<usize>,
-    /// As in [`Settings`].
-    pub max_unknowns: usize,
-}
 
 /// A row, and how it went.
 #[derive(Clone, Debug, PartialEq)]
@@ -32,27 +22,6 @@ pub struct Answer {
     pub error: Option<String>,
     /// Whether there are figures, all to the tolerance.
     pub reached: bool,
-}
-
-/// A section's solution, by the same settings for every command.
-///
-/// # Errors
-/// A message of the solver.
-pub fn solution(read: &ReadSection, wanted: Wanted) -> Result<Solution, String> {
-    let settings = Settings {
-        tolerance: wanted.tolerance,
-        order: wanted.order,
-        max_unknowns: wanted.max_unknowns,
-        reference: read.section.reference,
-    };
-    solve(
-        &read.domain,
-        &consistent_materials(&read.section),
-        read.section.units.metres(),
-        &settings,
-        &mut |_| {},
-    )
-    .map_err(|error| error.to_string())
 }
 
 /// The row of a job.
@@ -72,7 +41,7 @@ pub fn answer(input: &Input, job: Job, columns: &Columns, wanted: Wanted) -> Ans
     let figures = columns.properties.len() * per_property;
     match solved {
         Err(error) => {
-            row.extend(blank(2));
+            row.extend(blank(3));
             row.push(Cell::number(wanted.tolerance));
             row.extend(blank(figures + 2));
             row.push(Cell::text(&error));
@@ -86,6 +55,7 @@ pub fn answer(input: &Input, job: Job, columns: &Columns, wanted: Wanted) -> Ans
             row[2] = Cell::text(&solved.title);
             row.push(Cell::text(solved.units.length));
             row.push(Cell::text(solved.units.force));
+            row.push(Cell::text(&solved.units.moment));
             row.push(Cell::number(wanted.tolerance));
             for &property in &columns.properties {
                 match solved.solution.get(property) {
@@ -153,13 +123,13 @@ fn solved(input: &Input, job: Job, wanted: Wanted) -> (String, Result<Solved, St
         None => match text_from_path(&input.path) {
             Err(faults) => return (input.hash.clone(), Err(first_message(&faults))),
             // The file may have been saved anew since it was looked at: the row is of what is solved.
-            Ok((_, text)) => (hash(&text), text),
+            Ok((_, text)) => (sha256(text.as_bytes()), text),
         },
     };
     let solved = section_from_text(&input.name, &text)
         .map_err(|faults| first_message(&faults))
         .and_then(|read| {
-            let solution = solution(&read, wanted)?;
+            let solution = solution(&read, wanted, &mut |_| {}).map_err(|e| e.to_string())?;
             Ok(Solved {
                 title: read.section.title,
                 units: read.section.units,

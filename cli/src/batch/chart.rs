@@ -36,6 +36,7 @@ pub fn draw(
     let units = units(
         cell(answered, "length_unit").unwrap_or_default(),
         cell(answered, "force_unit").unwrap_or_default(),
+        cell(answered, "moment_unit").unwrap_or_default(),
     );
     let (axis, order) = axis(first);
     let plots: Vec<Plot> = properties
@@ -119,7 +120,7 @@ fn told(vary: &Vary, value: usize) -> String {
 }
 
 /// Units for captions from the columns of a row.
-fn units(length: &str, force: &str) -> Units {
+fn units(length: &str, force: &str, moment: &str) -> Units {
     let known = |units: &'static [&'static str], name: &str, other: &'static str| {
         units
             .iter()
@@ -130,7 +131,7 @@ fn units(length: &str, force: &str) -> Units {
     Units {
         length: known(crate::read::quantity::LENGTHS, length, "mm"),
         force: known(crate::read::quantity::FORCES, force, "kN"),
-        moment: String::new(),
+        moment: moment.into(),
         stress: "MPa",
     }
 }

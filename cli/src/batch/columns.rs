@@ -25,7 +25,7 @@ pub const DEFAULT: &[Quantity] = &[
 /// Columns before the varied ones.
 pub const FIRST: [&str; 3] = ["file", "input_sha256", "title"];
 /// Columns between the varied ones and the properties: units, and the tolerance asked for.
-pub const UNITS: [&str; 3] = ["length_unit", "force_unit", "tolerance"];
+pub const UNITS: [&str; 4] = ["length_unit", "force_unit", "moment_unit", "tolerance"];
 /// Columns after the properties.
 pub const LAST: [&str; 3] = ["tolerance_reached", "notes", "error"];
 

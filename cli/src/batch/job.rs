@@ -2,8 +2,7 @@
 
 use std::path::{Path, PathBuf};
 
-use sha2::{Digest, Sha256};
-
+use crate::digest::sha256;
 use crate::read::fault::Faults;
 use crate::read::file::name_of;
 use crate::read::text_from_path;
@@ -84,7 +83,7 @@ pub fn input(path: &Path) -> Input {
     match text_from_path(path) {
         Err(faults) => input.refused = Some(first_message(&faults)),
         Ok((name, text)) => {
-            input.hash = hash(&text);
+            input.hash = sha256(text.as_bytes());
             match vary::sweep(&name, &text) {
                 Err(faults) => input.refused = Some(first_message(&faults)),
                 Ok(sweep) if !sweep.is_empty() => {
@@ -105,15 +104,6 @@ pub fn jobs(inputs: &[Input]) -> Vec<Job> {
         (0..vary::points(&of.sweep)).map(move |point| Job { input, point })
     };
     inputs.iter().enumerate().flat_map(points).collect()
-}
-
-/// SHA-256 of a text.
-#[must_use]
-pub fn hash(text: &str) -> String {
-    Sha256::digest(text.as_bytes())
-        .iter()
-        .map(|byte| format!("{byte:02x}"))
-        .collect()
 }
 
 /// The first fault of a file with its line, on one line; and how many more there are.

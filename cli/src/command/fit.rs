@@ -9,7 +9,7 @@ use sectile_solver::figure::Figure;
 use sectile_solver::quantity::Quantity;
 
 use super::{Outcome, solve};
-use crate::batch::answer::{Wanted, solution};
+use crate::answer::{Wanted, solution};
 use crate::batch::columns;
 use crate::batch::search::{Found, Trial, search};
 use crate::read::file::name_of;
@@ -279,8 +279,8 @@ fn solved(
         order: args.order,
         max_unknowns: args.max_unknowns,
     };
-    let solution =
-        solution(&read, wanted).map_err(|error| format!("{name} with {}: {error}", set()))?;
+    let solution = solution(&read, wanted, &mut |_| {})
+        .map_err(|error| format!("{name} with {}: {error}", set()))?;
     let figure = solution.get(goal.property).ok_or_else(|| {
         format!(
             "{name} has no {} with {}: a section in separate parts has no shear centre, torsion or \

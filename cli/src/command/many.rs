@@ -12,7 +12,8 @@ use rayon::prelude::*;
 use sectile_solver::quantity::Quantity;
 
 use super::{Outcome, interrupt};
-use crate::batch::answer::{Answer, Wanted, answer, key};
+use crate::answer::Wanted;
+use crate::batch::answer::{Answer, answer, key};
 use crate::batch::chart;
 use crate::batch::columns::{self, Columns};
 use crate::batch::job::{self, Input, Job};

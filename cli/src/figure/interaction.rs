@@ -8,9 +8,9 @@ use super::rect::Rect;
 use super::text::{LABEL, SMALL};
 use crate::interaction::{Interaction, LEVELS};
 use crate::section::Units;
-use crate::write::interaction::LIMITS;
+use crate::write::digits;
+use crate::write::interaction::{LIMITS, PLASTIC_CAUTION};
 use crate::write::units::moment_per_force;
-use crate::write::{CAUTION, digits};
 
 /// Room for the numbers beside a plot, mm.
 const NUMBERS: f64 = 9.0;
@@ -106,7 +106,7 @@ pub fn draw(title: &str, units: &Units, interaction: &Interaction, width: f64) -
             .to_string(),
         LIMITS.to_string(),
     ];
-    page.finish(&notes, CAUTION)
+    page.finish(&notes, PLASTIC_CAUTION)
 }
 
 /// One square plot below the cursor, from left to right; moves the cursor below its numbers.

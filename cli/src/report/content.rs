@@ -1,7 +1,5 @@
 //! What a report says.
 
-use sha2::{Digest, Sha256};
-
 use sectile_mesh::domain::piece_extent;
 use sectile_solver::quantity::Group;
 use sectile_solver::stress::extreme::Extreme;
@@ -9,9 +7,10 @@ use sectile_solver::stress::measure::Measure;
 
 use super::Input;
 use super::document::{Block, Figure, Row, Table};
+use crate::digest::sha256;
 use crate::response::{Response, Responses};
 use crate::write::digits::{self, short};
-use crate::write::units::{in_print, moment_per_force, pretty, stress_per_force};
+use crate::write::units::{moment_per_force, pretty, stress_per_force};
 use crate::write::{CAUTION, seams, wording};
 
 /// The blocks of the report, in order.
@@ -89,16 +88,9 @@ const SOURCES: [&str; 4] = [
     "V. Z. Vlasov, Thin-Walled Elastic Beams, 1961: bimoment and restrained warping (from memory).",
 ];
 
-/// SHA-256 in hexadecimal.
-#[must_use]
-pub fn hash(bytes: &[u8]) -> String {
-    let digest = Sha256::digest(bytes);
-    digest.iter().map(|b| format!("{b:02x}")).collect()
-}
-
 fn identity(input: &Input) -> Table {
     let solution = input.solution;
-    let hash = hash(input.text.as_bytes());
+    let hash = sha256(input.text.as_bytes());
     let row = |a: &str, b: String| Row::Cells(vec![a.into(), b]);
     let u = &input.section.units;
     let reached = if solution.reached {
@@ -229,12 +221,11 @@ fn properties(input: &Input) -> Table {
             group = Some(quantity.group());
             rows.push(Row::Group(wording::heading(quantity.group()).into()));
         }
-        let figure = in_print(quantity.dimension(), figure, units);
         let number = |x: f64| short(x + 0.0, 9);
         rows.push(Row::Cells(vec![
             wording::name(*quantity).into(),
             quantity.symbol().into(),
-            digits::minus_sign(&digits::print(&figure).line()),
+            digits::minus_sign(&digits::print(figure).line()),
             number(figure.low),
             number(figure.high),
             pretty(quantity.dimension(), units),

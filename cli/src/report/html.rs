@@ -7,7 +7,8 @@ use base64::engine::general_purpose::STANDARD;
 
 use super::document::{Block, Figure, Row, Table};
 use super::sheet;
-use super::{Input, STATE, content};
+use super::{Input, STATE};
+use crate::digest::sha256;
 
 const STYLE: &str = include_str!("style.css");
 /// In the order in which they build on each other.
@@ -78,7 +79,7 @@ pub fn page(input: &Input, blocks: &[Block]) -> String {
         let _ = writeln!(out, "<script>\n{}</script>", SCRIPTS.concat());
     }
     if input.watched {
-        let stamp = content::hash(input.text.as_bytes());
+        let stamp = sha256(input.text.as_bytes());
         let watch = include_str!("sheet/watch.js");
         let _ = writeln!(
             out,

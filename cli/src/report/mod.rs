@@ -14,6 +14,7 @@ use sectile_mesh::domain::Domain;
 use sectile_solver::material::Material;
 use sectile_solver::solution::Solution;
 
+use crate::digest::sha256;
 use crate::response::{Names, Responses};
 use crate::section::Section;
 
@@ -50,7 +51,7 @@ pub const STATE: &str = "report-state.js";
 /// The text of [`STATE`]: which text of the section file was tried last, and what was wrong with it.
 #[must_use]
 pub fn state(text: &[u8], error: Option<&str>) -> String {
-    let state = serde_json::json!({ "stamp": content::hash(text), "error": error });
+    let state = serde_json::json!({ "stamp": sha256(text), "error": error });
     format!("sectileState({state});\n")
 }
 

@@ -22,7 +22,6 @@ pub const COLUMNS: [&str; 8] = [
 pub fn properties(units: &Units, solution: &Solution, reference: Option<&Material>) -> String {
     let mut rows: Vec<[String; 8]> = vec![COLUMNS.map(String::from)];
     for (quantity, figure) in &solution.properties {
-        let figure = units::in_print(quantity.dimension(), figure, units);
         rows.push([
             quantity.key().into(),
             quantity.symbol().into(),
@@ -69,7 +68,6 @@ mod tests {
         let rows: Vec<_> = reader.records().map(Result::unwrap).collect();
         assert_eq!(rows.len(), solution.properties.len() + 1);
         for (row, (quantity, figure)) in rows.iter().zip(&solution.properties) {
-            let figure = units::in_print(quantity.dimension(), figure, &sample_units());
             assert_eq!(&row[0], quantity.key());
             assert_eq!(row[2].parse::<f64>().unwrap(), figure.value);
             assert_eq!(row[3].parse::<f64>().unwrap(), figure.low);

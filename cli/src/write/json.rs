@@ -183,7 +183,6 @@ impl Results {
             .properties
             .iter()
             .map(|(quantity, figure)| {
-                let figure = units::in_print(quantity.dimension(), figure, units);
                 let property = Property {
                     value: no_minus_zero(figure.value),
                     low: no_minus_zero(figure.low),

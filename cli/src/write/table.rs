@@ -136,8 +136,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
     let printed: Vec<(Quantity, Trust, Printed)> = solution
         .properties
         .iter()
-        .map(|(q, f)| (*q, units::in_print(q.dimension(), f, units)))
-        .map(|(q, f)| (q, f.trust, digits::print(&f)))
+        .map(|(q, f)| (*q, f.trust, digits::print(f)))
         .collect();
     let values = Column::of(printed.iter().map(|(_, _, p)| p.value.as_str()));
     let halves = Column::of(
