@@ -144,7 +144,7 @@ mod tests {
     fn bounds_stand_beside_their_value() {
         let columns = Columns::new(vec![Quantity::Area], true, std::iter::empty());
         let heads = columns.heads();
-        assert_eq!(heads[6..9], ["area", "area_low", "area_high"]);
-        assert_eq!(columns.place("area_low"), Some(7));
+        assert_eq!(heads[7..10], ["area", "area_low", "area_high"]);
+        assert_eq!(columns.place("area_low"), Some(8));
     }
 }

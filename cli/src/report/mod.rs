@@ -45,6 +45,12 @@ pub struct Input<'a> {
     pub watched: bool,
 }
 
+/// The page.
+pub const HTML: &str = "report.html";
+
+/// The same to paste from.
+pub const MARKDOWN: &str = "report.md";
+
 /// The file beside a watched report that tells an open page what is new.
 pub const STATE: &str = "report-state.js";
 

@@ -1,12 +1,9 @@
-//! Responses as CSV: `stresses.csv`, `field-<action>.csv`, `cut-<cut>-<action>.csv`. UTF-8 without a
+//! Responses as CSV: `stresses.csv`, `cut-<cut>-<action>.csv`. UTF-8 without a
 //! byte-order mark, lines ended by `\n`; stresses in the file's unit of stress, positions in its unit
 //! of length. File names: see [`super::slug`].
 
-use sectile_solver::solution::Solution;
 use sectile_solver::stress::cut::CutResult;
 use sectile_solver::stress::extreme::Extreme;
-use sectile_solver::stress::field::WeightedPoint;
-use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::measure::Measure;
 use sectile_solver::stress::state::Stress;
 
@@ -31,31 +28,6 @@ pub const STRESSES: [&str; 13] = [
     "tau_y",
     "mainly_from",
     "remark",
-];
-/// The columns of `field-<action>.csv`.
-pub const FIELD: [&str; 22] = [
-    "triangle",
-    "piece",
-    "x",
-    "y",
-    "weight",
-    "sigma",
-    "tau_x",
-    "tau_y",
-    "tau",
-    "von_mises",
-    "tresca",
-    "principal_1",
-    "principal_3",
-    "sigma_axial",
-    "sigma_bending",
-    "sigma_warping",
-    "tau_x_shear",
-    "tau_y_shear",
-    "tau_x_torsion",
-    "tau_y_torsion",
-    "tau_x_warping",
-    "tau_y_warping",
 ];
 /// The columns of `cut-<cut>-<action>.csv`.
 pub const CUT: [&str; 13] = [
@@ -169,65 +141,6 @@ fn extreme_row(
     ]
 }
 
-/// The stress at the solver's integration points, to nine digits. `weight` is the point's share of
-/// the area: `Σ weight·sigma` is the axial force, `Σ weight·sigma·(y − y_c)` the moment M_x, and so on.
-/// Behind the combined stress and its measures come its parts: σ of N, of M_x with M_y and of B, τ of
-/// V_x with V_y, of T and of T_w.
-#[must_use]
-pub fn field_csv(
-    units: &Units,
-    names: &Names,
-    solution: &Solution,
-    points: &[WeightedPoint],
-    forces: &SectionForces,
-) -> String {
-    let mut table = Table::new(&FIELD);
-    let factor = stress_per_force(units);
-    let [n, vx, vy, mx, my, t, b, tw] = forces.parts();
-    let (shear, bending) = (vx + vy, mx + my);
-    for point in points {
-        let under = |f: &SectionForces| scaled(&point.unit.under(f), factor);
-        let s = under(forces);
-        let [first, third] = s.principal();
-        let [by_shear, by_torsion, by_warping] = [shear, t, tw].map(|f| under(&f).tau);
-        let numbers = [
-            point.at.x,
-            point.at.y,
-            point.weight,
-            s.sigma,
-            s.tau.x,
-            s.tau.y,
-            s.shear(),
-            s.von_mises(),
-            s.tresca(),
-            first,
-            third,
-            under(&n).sigma,
-            under(&bending).sigma,
-            under(&b).sigma,
-            by_shear.x,
-            by_shear.y,
-            by_torsion.x,
-            by_torsion.y,
-            by_warping.x,
-            by_warping.y,
-        ];
-        let piece = solution
-            .mesh
-            .piece
-            .get(point.triangle as usize)
-            .map_or("", |&p| names.piece(p));
-        let mut row: [String; FIELD.len()] = Default::default();
-        row[0] = point.triangle.to_string();
-        row[1] = piece.into();
-        for (cell, number) in row[2..].iter_mut().zip(numbers) {
-            *cell = nine_digits(number);
-        }
-        table.row(row);
-    }
-    table.text()
-}
-
 /// The stresses along a cut, stretch by stretch (`run`, from 0). `tau_normal` is the shear stress
 /// across the cut, positive to the right of its direction.
 #[must_use]
@@ -284,11 +197,6 @@ pub fn scaled(stress: &Stress, factor: f64) -> Stress {
         sigma: stress.sigma * factor,
         tau: stress.tau * factor,
     }
-}
-
-fn nine_digits(x: f64) -> String {
-    // Through text, so that the rounded number prints as short as it is.
-    number(format!("{x:.8e}").parse().unwrap_or(x))
 }
 
 /// Rows of equal length in memory.

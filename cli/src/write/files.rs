@@ -51,7 +51,7 @@ pub enum WriteError {
     System {
         /// The file or folder.
         path: PathBuf,
-        /// `made`, `read`, `written` or `put in its place`.
+        /// `made`, `read`, `written`, `put in its place` or `removed`.
         what: &'static str,
         /// The system's reason.
         source: io::Error,
@@ -145,9 +145,32 @@ pub fn check(folder: &Path, source: &str, names: &[&str]) -> Result<(), WriteErr
     }
 }
 
+/// Files that an earlier answer of the section left in `folder`, as its `results.json` lists them in
+/// `files`. Only plain names count, so that whatever stands there nothing outside the folder is meant.
+fn earlier(folder: &Path) -> Vec<String> {
+    let listed = || -> Option<Vec<String>> {
+        let bytes = fs::read(folder.join(RESULTS)).ok()?;
+        let value: serde_json::Value = serde_json::from_slice(&bytes).ok()?;
+        let files = value.get("files")?.as_array()?;
+        let names = files.iter().filter_map(|name| name.as_str());
+        Some(names.map(String::from).collect())
+    };
+    let plain = |name: &String| {
+        let mut parts = Path::new(name).components();
+        matches!(parts.next(), Some(Component::Normal(part)) if part == name.as_str())
+            && parts.next().is_none()
+    };
+    listed()
+        .unwrap_or_default()
+        .into_iter()
+        .filter(plain)
+        .collect()
+}
+
 /// Writes the files `(name, text or bytes)` of one section into `folder`, which is made if need be: each to a
 /// temporary file beside its place first; only when all are on the disk are they renamed,
-/// `results.json` before the others, so that a folder always says whose it is.
+/// `results.json` before the others, so that a folder always says whose it is. Files of an earlier answer
+/// that this one has not, such as the figures of an action since renamed, are removed.
 ///
 /// # Errors
 /// As [`check`]; or the system refused, and the temporary files are removed again.
@@ -166,6 +189,11 @@ pub fn write_all<B: AsRef<[u8]>>(
     let mut order: Vec<&(&str, B)> = files.iter().collect();
     order.sort_by_key(|(name, _)| *name != RESULTS);
 
+    let outdated: Vec<String> = earlier(folder)
+        .into_iter()
+        .filter(|name| !names.contains(&name.as_str()))
+        .collect();
+
     let mut temporary = Vec::new();
     let outcome = order
         .iter()
@@ -181,7 +209,9 @@ pub fn write_all<B: AsRef<[u8]>>(
                 .zip(&temporary)
                 .try_for_each(|((name, _), path)| put_in_place(path, &folder.join(name)))?;
             paths.retain(|path| !temporary.contains(path));
-            Ok(())
+            outdated
+                .iter()
+                .try_for_each(|name| discard(&folder.join(name)))
         });
     if outcome.is_err() {
         remove(&temporary);
@@ -237,6 +267,17 @@ fn write_through(path: &Path, content: &[u8]) -> Result<(), WriteError> {
         what: "written",
         source,
     })
+}
+
+fn discard(path: &Path) -> Result<(), WriteError> {
+    match fs::remove_file(path) {
+        Err(source) if source.kind() != io::ErrorKind::NotFound => Err(WriteError::System {
+            path: path.to_path_buf(),
+            what: "removed, as the new results have no such file",
+            source,
+        }),
+        _ => Ok(()),
+    }
 }
 
 fn put_in_place(from: &Path, to: &Path) -> Result<(), WriteError> {
@@ -373,5 +414,22 @@ mod tests {
         write(&path, "two").unwrap();
         assert_eq!(fs::read_to_string(&path).unwrap(), "two");
         assert_eq!(listing(&scratch.0), ["a.txt"]);
+    }
+
+    #[test]
+    fn files_of_an_earlier_answer_do_not_outlive_it() {
+        let scratch = Scratch::new("earlier");
+        let out = scratch.0.join("out");
+        let outside = scratch.0.join("kept.txt");
+        fs::write(&outside, "not ours").unwrap();
+        let results = |files: &str| format!("{{\"source\":\"s\",\"files\":[{files}]}}");
+        let first = results("\"a.svg\",\"b.svg\",\"results.json\",\"../kept.txt\",\"gone.svg\"");
+        let with = |results: String| [(RESULTS, results), ("a.svg", "a".to_string())];
+        write_all(&out, "s", &with(first)).unwrap();
+        fs::write(out.join("b.svg"), "b").unwrap();
+        fs::write(out.join("own.txt"), "the user's").unwrap();
+        write_all(&out, "s", &with(results("\"a.svg\""))).unwrap();
+        assert_eq!(listing(&out), ["a.svg", "own.txt", "results.json"]);
+        assert!(outside.exists());
     }
 }

@@ -76,6 +76,9 @@ pub struct Results {
     pub timings: Timings,
     /// Findings.
     pub notes: Vec<Note>,
+    /// The files in the output folder; none where nothing is written.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub files: Vec<String>,
 }
 
 /// The units of the section file.
@@ -242,6 +245,7 @@ impl Results {
                     at: note.at.map(|p| [no_minus_zero(p.x), no_minus_zero(p.y)]),
                 })
                 .collect(),
+            files: Vec::new(),
         }
     }
 

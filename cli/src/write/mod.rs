@@ -5,6 +5,7 @@ pub mod actions;
 pub mod cause;
 pub mod csv;
 pub mod digits;
+pub mod field;
 pub mod files;
 pub mod interaction;
 pub mod json;

@@ -3,6 +3,7 @@
 use std::path::Path;
 use std::time::Instant;
 
+use rayon::prelude::*;
 use sectile_solver::stress::field::{UnitFields, weighted_points};
 
 use super::SolveArgs;
@@ -13,6 +14,7 @@ use crate::figure::style::{Drawing, Style};
 use crate::interaction::Interaction;
 use crate::report;
 use crate::response::Responses;
+use crate::write::field::field_csv;
 use crate::write::json::Run;
 use crate::write::slug::{cut_files, slugs};
 use crate::write::{actions, csv, files, interaction, materials, seams, vtu};
@@ -54,7 +56,7 @@ pub(super) fn write_folder(
             responses,
             style,
         ));
-        written.extend(response_files(answer, responses));
+        written.extend(response_files(args, answer, responses));
     }
     if let Some(interaction) = Interaction::new(&answer.solution) {
         let drawn =
@@ -64,39 +66,44 @@ pub(super) fn write_folder(
         written.push(("interaction.csv".into(), table.into_bytes()));
     }
     if let Some(dpi) = args.png {
-        for (name, svg) in &figures {
+        let images = figures.par_iter().map(|(name, svg)| {
             let png = figure::png::render(svg, dpi).map_err(|e| e.to_string())?;
-            written.push((name.replace(".svg", ".png"), png));
-        }
+            Ok((name.replace(".svg", ".png"), png))
+        });
+        written.extend(images.collect::<Result<Vec<_>, String>>()?);
     }
-    let text_figures = figures;
-    written.extend(
-        text_figures
-            .iter()
-            .map(|(name, svg)| (name.clone(), svg.clone().into_bytes())),
-    );
-    written.push((
-        "properties.csv".into(),
-        csv::properties(&section.units, &answer.solution, answer.reference()).into_bytes(),
-    ));
+    let table = csv::properties(&section.units, &answer.solution, answer.reference());
+    written.push(("properties.csv".into(), table.into_bytes()));
+    if args.report {
+        let input = report::Input {
+            watched: args.watch,
+            ..answer.report(&figures, args.corner_distance)
+        };
+        written.push((report::HTML.into(), report::html(&input).into_bytes()));
+        written.push((
+            report::MARKDOWN.into(),
+            report::markdown(&input).into_bytes(),
+        ));
+    }
+    let svgs = figures
+        .into_iter()
+        .map(|(name, svg)| (name, svg.into_bytes()));
+    written.extend(svgs);
+
     let run = Run {
         write: write_start.elapsed().as_secs_f64(),
         total: start.elapsed().as_secs_f64(),
         peak_memory: peak_memory(),
         ..run.clone()
     };
-    written.push((
-        files::RESULTS.into(),
-        answer.results(&run).pretty().into_bytes(),
-    ));
-    if args.report {
-        let input = report::Input {
-            watched: args.watch,
-            ..answer.report(&text_figures, args.corner_distance)
-        };
-        written.push(("report.html".into(), report::html(&input).into_bytes()));
-        written.push(("report.md".into(), report::markdown(&input).into_bytes()));
+    let mut results = answer.results(&run);
+    results.files = written.iter().map(|(name, _)| name.clone()).collect();
+    results.files.push(files::RESULTS.into());
+    if args.report && args.watch {
+        results.files.push(report::STATE.into());
     }
+    results.files.sort_unstable();
+    written.push((files::RESULTS.into(), results.pretty().into_bytes()));
     let named: Vec<(&str, &[u8])> = written
         .iter()
         .map(|(name, bytes)| (name.as_str(), bytes.as_slice()))
@@ -105,7 +112,11 @@ pub(super) fn write_folder(
 }
 
 /// Tables and fields of the responses.
-fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8>)> {
+fn response_files(
+    args: &SolveArgs,
+    answer: &Answer,
+    responses: &Responses,
+) -> Vec<(String, Vec<u8>)> {
     let units = &answer.read.section.units;
     let names = answer.names();
     let mut out = vec![(
@@ -121,28 +132,19 @@ fn response_files(answer: &Answer, responses: &Responses) -> Vec<(String, Vec<u8
         out.push(("seams.csv".to_string(), csv.into_bytes()));
     }
     let response_slugs = slugs(responses.list.iter().map(|r| r.name.as_str()));
-    let nodes = UnitFields::new(&answer.solution, answer.solution.order);
-    let points = weighted_points(&answer.solution, &responses.fields);
-    // The same ones that get figures.
-    for i in figure::response::chosen(responses) {
-        let (response, slug) = (&responses.list[i], &response_slugs[i]);
-        let Some(nodes) = &nodes else { continue };
-        out.push((
-            format!("field-{slug}.csv"),
-            actions::field_csv(units, &names, &answer.solution, &points, &response.forces)
-                .into_bytes(),
-        ));
-        out.push((
-            format!("field-{slug}.vtu"),
-            vtu::field(
-                units,
-                &answer.solution,
-                &answer.read.domain.piece_materials,
-                nodes,
-                &response.forces,
-            )
-            .into_bytes(),
-        ));
+    if !args.without_fields
+        && let Some(nodes) = UnitFields::new(&answer.solution, answer.solution.order)
+    {
+        let points = weighted_points(&answer.solution, &responses.fields);
+        // The same responses that get figures.
+        for i in figure::response::chosen(responses) {
+            let (forces, slug) = (&responses.list[i].forces, &response_slugs[i]);
+            let csv = field_csv(units, &names, &answer.solution, &points, forces);
+            out.push((format!("field-{slug}.csv"), csv.into_bytes()));
+            let materials = &answer.read.domain.piece_materials;
+            let vtu = vtu::field(units, &answer.solution, materials, &nodes, forces);
+            out.push((format!("field-{slug}.vtu"), vtu.into_bytes()));
+        }
     }
     let cut_slugs: Vec<String> = slugs(names.cuts.iter().map(|c| c.name.as_str()));
     let files = cut_files(&cut_slugs, &response_slugs);

@@ -78,6 +78,10 @@ pub struct SolveArgs {
     /// Answer again whenever a file is saved, until stopped (Ctrl-C); an open report.html follows.
     #[arg(long)]
     pub watch: bool,
+    /// Leave out field-ACTION.csv and field-ACTION.vtu, the stress at every integration point, which are
+    /// large.
+    #[arg(long)]
+    pub without_fields: bool,
     /// Write every figure as PNG too, at this resolution.
     #[arg(long, value_parser = resolution, value_name = "DPI")]
     pub png: Option<f64>,

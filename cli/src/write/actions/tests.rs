@@ -2,11 +2,13 @@
 use super::*;
 use crate::figure::samples;
 use crate::section::{Cut, Probe};
+use crate::write::field::{FIELD, field_csv};
 use sectile_mesh::Point;
 use sectile_solver::quantity::Quantity;
 use sectile_solver::solution::Solution;
 use sectile_solver::stress::extreme::{Quotable, extremes, load_factor_to_yield};
 use sectile_solver::stress::field::{UnitFields, weighted_points};
+use sectile_solver::stress::forces::SectionForces;
 use sectile_solver::stress::{cut, probe};
 
 /// A channel with three actions, the last a combination.
