@@ -168,6 +168,9 @@ fn a_small_seam_closes_a_slit_tube() {
     let closed = std::f64::consts::FRAC_PI_2 * (102.0_f64.powi(4) - 98.0_f64.powi(4));
     let fused = solved(&build(&pieces).unwrap(), 1e-6);
     holds(&fused, Quantity::TorsionConstant, closed, 15);
+    let seams = [whole.clone(), groove([-102.0, 0.0], None)];
+    let welded = solved(&build_seamed(&pieces, &seams).unwrap(), 1e-6);
+    holds(&welded, Quantity::TorsionConstant, closed, 15);
     let mut last = f64::INFINITY;
     for depth in [3.0, 1.0, 0.5] {
         let seams = [whole.clone(), groove([-102.0, 0.0], Some(depth))];
@@ -295,6 +298,74 @@ fn flush_flats_go_from_slit_to_solid_with_penetration() {
         );
         assert!(two.high < last && two.low > 2.0 * strip.high, "{two:?}");
         last = two.low;
+    }
+}
+
+/// Two flats joined at both edges tend to two strips as the seams vanish, though only as a logarithm
+/// does: what the closed slit adds is `ΔJ = (2∫ψ)²/K` with ψ harmonic, 1 on the slit and 0 outside
+/// (Prandtl's stress function of a hole without area). In the limit ∫ψ is that of each flat with ψ = 1
+/// where it lies on the other (Fourier series), and K grows by `ln(1/a)/α` for every sector of angle α
+/// between slit and outline at a seam of size a (elementary, from the sector's conformal map). So 1/ΔJ
+/// grows linearly with ln(1/a), without end.
+#[test]
+fn vanishing_seams_leave_the_slit() {
+    use std::f64::consts::{FRAC_PI_2, PI};
+    let (b, t) = (80.0, 8.0);
+    let strip = figure(
+        &solved(&build(&[block("strip", [0.0, 0.0], [b, t])]).unwrap(), 1e-8),
+        Quantity::TorsionConstant,
+    );
+    // ∫ψ of one flat of which the side from `from` to b lies on the other.
+    let integral = |from: f64| -> f64 {
+        (0..20_000)
+            .map(|k| PI * f64::from(2 * k + 1) / b)
+            .map(|q| 4.0 / (b * q.powi(3)) * (1.0 + (q * from).cos()) * (0.5 * q * t).tanh())
+            .sum()
+    };
+    type Joined = Box<dyn Fn(f64) -> SeamRequest>;
+    let lower = block("lower", [0.0, 0.0], [b, t]);
+    let flush: Joined = Box::new(|size| SeamRequest {
+        both: true,
+        ..groove([0.0, 8.0], Some(size))
+    });
+    let cases: [(&str, f64, [f64; 2], Joined); 2] = [
+        ("flush, grooves", 0.0, [FRAC_PI_2, FRAC_PI_2], flush),
+        (
+            "lapped, fillets",
+            t,
+            [FRAC_PI_2, PI],
+            Box::new(|size| fillets([0, 1], size)),
+        ),
+    ];
+    for (name, offset, sectors, seam) in cases {
+        let upper = block("upper", [offset, t], [b + offset, 2.0 * t]);
+        let flats = [lower.clone(), upper];
+        let per_edge: f64 = sectors.iter().map(|angle| 1.0 / angle).sum();
+        let slope = 2.0 * per_edge / (4.0 * integral(offset)).powi(2);
+        let sizes = [0.5, 0.1, 0.02, 0.004];
+        let mut added = Vec::new();
+        for size in sizes {
+            let domain = build_seamed(&flats, &[seam(size)]).unwrap();
+            let j = figure(&solved(&domain, 1e-5), Quantity::TorsionConstant);
+            assert!(j.low > 2.0 * strip.high, "{name}, {size}: {j:?}");
+            added.push(j.value - 2.0 * strip.value);
+        }
+        // What ∫ψ and K miss of their limits is of first order in a over the thickness.
+        for (sizes, added) in sizes.windows(2).zip(added.windows(2)) {
+            let found = (1.0 / added[1] - 1.0 / added[0]) / (sizes[0] / sizes[1]).ln();
+            println!(
+                "{name}, {} to {}: J over two strips {:.4} to {:.4}, slope over the limit's {:.5}",
+                sizes[0],
+                sizes[1],
+                1.0 + added[0] / (2.0 * strip.value),
+                1.0 + added[1] / (2.0 * strip.value),
+                found / slope
+            );
+            assert!(
+                (found / slope - 1.0).abs() < 0.5 * sizes[0] / t,
+                "{name}: {found} {slope}"
+            );
+        }
     }
 }
 
