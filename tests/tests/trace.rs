@@ -282,6 +282,12 @@ fn polygons_keep_their_holes_and_islands() {
             .sum();
         assert!((found - area).abs() < 1e-9 * area, "{name} {found}");
     }
+    for name in ["plate.wkt", "plate.geojson"] {
+        let (_, solved) = traced_and_solved(name);
+        let found = solved["properties"]["area"]["value"].as_f64().unwrap();
+        assert!((found - plate).abs() < 1e-9 * plate, "{name} {found}");
+        assert_eq!(solved["tolerance_reached"], true, "{name}");
+    }
 }
 
 fn of_text(text: &str, format: Format) -> Result<Traced, Refusal> {

@@ -8,7 +8,6 @@ use clap::Args;
 
 use super::Outcome;
 use crate::read::fault::{Fault, Faults};
-use crate::read::file::LARGEST_FILE;
 use crate::read::quantity::LENGTHS;
 use crate::read::show;
 use crate::trace::format::Format;
@@ -130,16 +129,6 @@ fn traced(args: &TraceArgs) -> Result<(PathBuf, Vec<String>), Vec<Fault>> {
         Ok(traced) => traced,
         Err(refusal) => return Err(with_picture(refusal, &out)),
     };
-    if text.len() as u64 > LARGEST_FILE {
-        return Err(one(Fault::whole(
-            format!(
-                "the section file would be {} MB; those up to {} MB are read",
-                text.len() >> 20,
-                LARGEST_FILE >> 20
-            ),
-            "choose the section's layers with --layer, or allow curves a larger --chord",
-        )));
-    }
     files::write(&out, &text).map_err(|error| {
         one(Fault::whole(
             error.to_string(),

@@ -26,6 +26,7 @@ pub mod svg;
 pub mod wkt;
 
 use crate::read::fault::Fault;
+use crate::read::file::LARGEST_FILE;
 use crate::read::section_from_text;
 use drawing::Drawing;
 use format::Format;
@@ -99,6 +100,8 @@ const GAP: f64 = 1e-4;
 const CHORD: f64 = 1e-4;
 /// A drawing's smallest size: less cannot be told from a point.
 const SMALLEST: f64 = 1e-9;
+/// Outlines and holes of one section: reading more back takes more than a gigabyte of memory.
+const MOST_LOOPS: usize = 100_000;
 /// Farther out than this, products of coordinates lose their digits.
 const FARTHEST: f64 = 1e12;
 
@@ -133,9 +136,30 @@ pub fn trace(
     };
     let mut report = Report::new(&drawing, &tolerances);
     let layers = loops::of_drawing(&drawing, &tolerances, &mut report)?;
+    let loops: usize = layers.iter().map(|(_, loops)| loops.len()).sum();
+    if loops > MOST_LOOPS {
+        return Err(Fault::whole(
+            format!(
+                "the drawing has {loops} closed lines; up to {MOST_LOOPS} are taken as one section"
+            ),
+            "choose the section's layers with --layer, or export it by itself",
+        )
+        .into());
+    }
     let pieces = nest::pieces(&drawing.layers, layers, size);
     report.pieces(&pieces);
     let traced = compose::section_file(name, format, &drawing, &pieces, &report, size);
+    if traced.text.len() as u64 > LARGEST_FILE {
+        return Err(Fault::whole(
+            format!(
+                "the section file would be {} MB; those up to {} MB are read",
+                traced.text.len() >> 20,
+                LARGEST_FILE >> 20
+            ),
+            "choose the section's layers with --layer, or allow curves a larger --chord",
+        )
+        .into());
+    }
     let faults = match section_from_text(name, &traced.text) {
         Ok(_) => return Ok(traced),
         Err(faults) => faults,
