@@ -1,17 +1,20 @@
 // Unit stress fields at the nodes of every triangle, and their superposition.
 //
 // Each node carries twelve numbers: normal stress of unit N, Mx, My, B, then the two shear stresses of
-// unit Vx, Vy, T and Tw, in the declared units. Inside a triangle they are polynomials through its nodes,
-// so a value between nodes is as good as one on them.
+// unit Vx, Vy, T and Tw, in the declared units. Inside a triangle they are polynomials through its nodes: as
+// good between nodes as on them where the page carries as many nodes as the elements have; it says if not.
 
 const FORCES = ["N", "Vx", "Vy", "Mx", "My", "T", "B"];
 const COMPONENTS = 12;
 
-/** Base64 to an array of 32-bit floats (little-endian, as every browser's machine is). */
-function floats(text) {
+/** Base64 to an array of floats: 32 bits each, little-endian as every browser's machine is, or the upper 24. */
+function floats(text, width = 4) {
   const raw = atob(text);
-  const bytes = new Uint8Array(raw.length);
-  for (let i = 0; i < raw.length; i += 1) bytes[i] = raw.charCodeAt(i);
+  const bytes = new Uint8Array((raw.length / width) * 4);
+  for (let i = 0; i < raw.length; i += 1) {
+    const k = i % width;
+    bytes[4 * ((i - k) / width) + k + 4 - width] = raw.charCodeAt(i);
+  }
   return new Float32Array(bytes.buffer);
 }
 
@@ -52,7 +55,7 @@ class Field {
     this.n = data.divisions;
     this.nodes = lattice(this.n);
     this.per = this.nodes.length;
-    this.units = floats(data.fields);
+    this.units = floats(data.fields, 3);
     this.places = floats(data.positions);
     this.origin = data.origin;
     this.piece = data.piece;
@@ -138,6 +141,60 @@ class Field {
   }
 }
 
+/** Divisions of a triangle's sides where extremes are sought first, as the program does. */
+const SEARCHED = 8;
+
+/** The unit fields on a finer lattice, and the stresses there under the section forces last superposed. */
+class Fine {
+  constructor(field) {
+    this.nodes = lattice(SEARCHED);
+    this.per = this.nodes.length;
+    const points = this.per * field.triangles;
+    this.places = new Float64Array(2 * points);
+    this.units = new Float32Array(COMPONENTS * points);
+    this.quotable = new Uint8Array(points);
+    this.stress = { sigma: new Float64Array(points), tauX: new Float64Array(points), tauY: new Float64Array(points) };
+    const shape = this.nodes.map(([i, j]) => shapes(field.n, field.nodes, i / SEARCHED, j / SEARCHED));
+    for (let t = 0; t < field.triangles; t += 1) {
+      for (let k = 0; k < this.per; k += 1) {
+        const point = t * this.per + k;
+        let [x, y] = field.origin;
+        for (let p = 0; p < field.per; p += 1) {
+          const s = shape[k][p];
+          if (s === 0) continue;
+          const node = t * field.per + p;
+          x += s * field.places[2 * node];
+          y += s * field.places[2 * node + 1];
+          for (let c = 0; c < COMPONENTS; c += 1) {
+            this.units[COMPONENTS * point + c] += s * field.units[COMPONENTS * node + c];
+          }
+        }
+        [this.places[2 * point], this.places[2 * point + 1]] = [x, y];
+        this.quotable[point] = field.quotable([x, y]) ? 1 : 0;
+      }
+    }
+  }
+
+  superpose(f) {
+    const { units } = this;
+    const { sigma, tauX, tauY } = this.stress;
+    for (let p = 0; p < sigma.length; p += 1) {
+      const u = COMPONENTS * p;
+      sigma[p] = f.N * units[u] + f.Mx * units[u + 1] + f.My * units[u + 2] + f.B * units[u + 3];
+      tauX[p] = f.Vx * units[u + 4] + f.Vy * units[u + 6] + f.T * units[u + 8];
+      tauY[p] = f.Vx * units[u + 5] + f.Vy * units[u + 7] + f.T * units[u + 9];
+    }
+  }
+
+  /** The stress at a point, in an object that is used again. */
+  at(point, into) {
+    into.sigma = this.stress.sigma[point];
+    into.tauX = this.stress.tauX[point];
+    into.tauY = this.stress.tauY[point];
+    return into;
+  }
+}
+
 /** What can be shown and searched: name, value of a stress, whether it has a sign. */
 const MEASURES = {
   von_mises: { name: "von Mises", of: (s) => Math.sqrt(s.sigma ** 2 + 3 * (s.tauX ** 2 + s.tauY ** 2)) },
@@ -167,14 +224,16 @@ const EXTREMES = [
   { key: "tresca", label: "largest Tresca", measure: "tresca" },
 ];
 
-/** The extremes under `forces`: at the nodes, then climbed to inside the best few triangles. */
-function extremes(field, forces) {
-  const corner = field.nodes.map((_, p) => field.nodes.map((__, q) => (p === q ? 1 : 0)));
+/** How many triangles are searched for each extreme. */
+const STARTS = 4;
+
+/** The extremes under `forces`: on the fine lattice, then climbed to inside the best few triangles. */
+function extremes(field, fine, forces) {
+  fine.superpose(forces);
   const wanted = [...EXTREMES];
   if (field.yields.some((y) => y)) {
     wanted.push({ key: "utilisation", label: "utilisation of yield", measure: "von_mises", use: true });
   }
-  const found = wanted.map(() => []);
   const score = (want, t, s) => {
     let value = MEASURES[want.measure].of(s);
     if (want.use) {
@@ -184,43 +243,69 @@ function extremes(field, forces) {
     }
     return want.least ? -value : value;
   };
-  for (let t = 0; t < field.triangles; t += 1) {
-    const best = wanted.map(() => ({ rank: -Infinity }));
-    for (let p = 0; p < field.per; p += 1) {
-      const s = field.at(t, corner[p], forces);
-      if (!field.quotable(s.at)) continue;
-      wanted.forEach((want, k) => {
-        const rank = score(want, t, s);
-        if (rank > best[k].rank) best[k] = { rank, t, p };
-      });
-    }
-    best.forEach((b, k) => {
-      if (b.rank > -Infinity) found[k].push(b);
-    });
-  }
-  return wanted.map((want, k) => {
-    found[k].sort((a, b) => b.rank - a.rank);
+  const found = bestTriangles(field, fine);
+  return wanted.map((want) => {
+    const starts = found[want.key];
     let top = null;
-    for (const start of found[k].slice(0, 4)) {
-      const end = climb(field, forces, start, (t, s) => score(want, t, s));
+    for (const start of starts) {
+      const end = climb(field, forces, start, (t, x) => score(want, t, x));
       if (!top || end.rank > top.rank) top = end;
     }
     if (!top) return { ...want, value: 0, at: [0, 0], piece: "" };
     const value = want.least ? -top.rank : top.rank;
-    return { ...want, value, at: top.at, piece: field.pieces[field.piece[top.t]], stress: top.stress };
+    return { ...want, value, at: top.at, piece: field.pieces[field.piece[top.t]] };
   });
+}
+
+/**
+ * The triangles with the largest stress on the fine lattice and the point where, by the key of an extreme. In one
+ * pass and by squares instead of roots, since it follows every step of a slider.
+ */
+function bestTriangles(field, fine) {
+  const { sigma, tauX, tauY } = fine.stress;
+  const keys = ["sigma_max", "sigma_min", "tau", "von_mises", "tresca", "utilisation"];
+  const found = keys.map(() => []);
+  const ranks = new Float64Array(keys.length);
+  const best = new Float64Array(keys.length);
+  const where = new Int32Array(keys.length);
+  for (let t = 0; t < field.triangles; t += 1) {
+    const limit = field.yields[field.piece[t]];
+    best.fill(-Infinity);
+    for (let p = 0; p < fine.per; p += 1) {
+      const point = t * fine.per + p;
+      if (!fine.quotable[point]) continue;
+      const normal = sigma[point];
+      const square = tauX[point] * tauX[point] + tauY[point] * tauY[point];
+      ranks[0] = normal;
+      ranks[1] = -normal;
+      ranks[2] = square;
+      ranks[3] = normal * normal + 3 * square;
+      ranks[4] = ranks[3] + square;
+      ranks[5] = limit ? ranks[3] / (limit * limit) : -Infinity;
+      for (let k = 0; k < ranks.length; k += 1) {
+        if (ranks[k] > best[k]) [best[k], where[k]] = [ranks[k], p];
+      }
+    }
+    found.forEach((starts, k) => {
+      if (!(best[k] > (starts[STARTS - 1]?.rank ?? -Infinity))) return;
+      const [i, j] = fine.nodes[where[k]];
+      starts.push({ rank: best[k], t, xi: i / SEARCHED, eta: j / SEARCHED });
+      starts.sort((one, other) => other.rank - one.rank);
+      starts.length = Math.min(starts.length, STARTS);
+    });
+  }
+  return Object.fromEntries(keys.map((key, k) => [key, found[k]]));
 }
 
 /** Steps along the directions of the three sides, halved whenever none of them gains. */
 function climb(field, forces, start, score) {
-  const [i, j] = field.nodes[start.p];
-  let [xi, eta] = [i / field.n, j / field.n];
+  let { xi, eta } = start;
   const look = (x, e) => {
     const stress = field.at(start.t, shapes(field.n, field.nodes, x, e), forces);
     return { stress, at: stress.at, rank: field.quotable(stress.at) ? score(start.t, stress) : -Infinity };
   };
   let best = look(xi, eta);
-  let step = 0.5 / field.n;
+  let step = 0.5 / SEARCHED;
   for (let halvings = 0; halvings < 9; ) {
     let gained = false;
     for (const [dx, de] of [[1, 0], [-1, 0], [0, 1], [0, -1], [1, -1], [-1, 1]]) {

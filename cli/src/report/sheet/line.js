@@ -26,15 +26,18 @@ class LineOfAction {
       "aria-label",
       "Point of the line of action of the shear force. Arrow keys move it, with Shift ten times as far, Home puts it on the shear centre.",
     );
+    // Where on the handle it is held: the handle must not jump to the pointer.
+    let held = [0, 0];
     this.handle.addEventListener("pointerdown", (event) => {
+      const [x, y] = picture.toCanvas(this.at);
+      held = [x - event.clientX, y - event.clientY];
       this.handle.setPointerCapture(event.pointerId);
       event.preventDefault();
       this.handle.focus();
     });
     this.handle.addEventListener("pointermove", (event) => {
       if (!this.handle.hasPointerCapture(event.pointerId)) return;
-      const frame = svg.getBoundingClientRect();
-      this.set(picture.toSection([event.clientX - frame.left, event.clientY - frame.top]));
+      this.set(picture.toSection([held[0] + event.clientX, held[1] + event.clientY]));
     });
     this.handle.addEventListener("keydown", (event) => this.key(event));
   }

@@ -34,24 +34,12 @@ function shown(value, digits = 4) {
 }
 
 class Picture {
-  constructor(canvas, field, data) {
+  constructor(canvas, field, fine, data) {
     this.canvas = canvas;
     this.field = field;
+    this.fine = fine;
     this.data = data;
-    // As fine as a picture can be drawn without a stop.
-    const n = Math.max(2, Math.min(8, Math.floor(Math.sqrt(30000 / field.triangles))));
-    const fine = lattice(n);
-    this.shape = fine.map(([i, j]) => shapes(field.n, field.nodes, i / n, j / n));
-    this.cells = latticeCells(n);
-    this.fine = fine.length;
-    this.places = new Float64Array(2 * this.fine * field.triangles);
-    const none = { N: 0, Vx: 0, Vy: 0, Mx: 0, My: 0, T: 0, B: 0 };
-    for (let t = 0; t < field.triangles; t += 1) {
-      this.shape.forEach((shape, k) => {
-        const { at } = field.at(t, shape, none);
-        this.places.set(at, 2 * (t * this.fine + k));
-      });
-    }
+    this.cells = latticeCells(SEARCHED);
     const [x0, x1, y0, y1] = data.box;
     this.box = { x0, x1, y0, y1 };
   }
@@ -69,26 +57,67 @@ class Picture {
     this.canvas.height = Math.round(height * ratio);
     this.size = [width, height];
     this.ratio = ratio;
+    this.pixel = 1 / scale;
     const left = 0.5 * (width - scale * (x1 - x0));
     this.toCanvas = ([x, y]) => [left + scale * (x - x0), height - margin - scale * (y - y0)];
     this.toSection = ([u, v]) => [x0 + (u - left) / scale, y0 + (height - margin - v) / scale];
+    this.cover();
   }
 
-  /** Draws the measure under the forces; returns the levels for the legend. */
-  draw(key, forces) {
-    const { field } = this;
-    const measure = MEASURES[key];
-    const values = new Float64Array(this.fine * field.triangles);
-    let [low, high] = [Infinity, -Infinity];
-    for (let t = 0; t < field.triangles; t += 1) {
-      for (let k = 0; k < this.fine; k += 1) {
-        const s = field.at(t, this.shape[k], forces);
-        const value = measure.of(s);
-        values[t * this.fine + k] = value;
-        if (field.quotable(s.at)) {
-          low = Math.min(low, value);
-          high = Math.max(high, value);
+  /** Finds for each pixel the cell that its middle is in, and how near it is to the cell's first two corners. */
+  cover() {
+    const { fine, ratio } = this;
+    const [w, h] = [this.canvas.width, this.canvas.height];
+    this.owner = new Int32Array(w * h).fill(-1);
+    this.weights = new Float32Array(2 * w * h);
+    this.image = new ImageData(w, h);
+    const places = new Float64Array(fine.places.length);
+    for (let k = 0; k < places.length; k += 2) {
+      const [u, v] = this.toCanvas([fine.places[k], fine.places[k + 1]]);
+      places[k] = ratio * u - 0.5;
+      places[k + 1] = ratio * v - 0.5;
+    }
+    const count = this.cells.length;
+    for (let t = 0; t < this.field.triangles; t += 1) {
+      for (let c = 0; c < count; c += 1) {
+        const [p, q, r] = this.cells[c];
+        const first = t * fine.per;
+        const [xp, yp] = [places[2 * (first + p)], places[2 * (first + p) + 1]];
+        const [xq, yq] = [places[2 * (first + q)], places[2 * (first + q) + 1]];
+        const [xr, yr] = [places[2 * (first + r)], places[2 * (first + r) + 1]];
+        const det = (xp - xr) * (yq - yr) - (xq - xr) * (yp - yr);
+        if (det === 0) continue;
+        const [low, high] = [Math.max(0, Math.ceil(Math.min(yp, yq, yr))), Math.min(h - 1, Math.max(yp, yq, yr))];
+        const [left, right] = [Math.max(0, Math.ceil(Math.min(xp, xq, xr))), Math.min(w - 1, Math.max(xp, xq, xr))];
+        for (let y = low; y <= high; y += 1) {
+          for (let x = left; x <= right; x += 1) {
+            const a = ((x - xr) * (yq - yr) - (xq - xr) * (y - yr)) / det;
+            const b = ((xp - xr) * (y - yr) - (x - xr) * (yp - yr)) / det;
+            // A hair of overlap, that no pixel is left out between two cells.
+            if (a < -1e-6 || b < -1e-6 || a + b > 1 + 1e-6) continue;
+            const pixel = y * w + x;
+            this.owner[pixel] = t * count + c;
+            this.weights[2 * pixel] = a;
+            this.weights[2 * pixel + 1] = b;
+          }
         }
+      }
+    }
+  }
+
+  /** Draws the measure under the forces last superposed; returns the levels for the legend. */
+  draw(key) {
+    const { fine } = this;
+    const measure = MEASURES[key];
+    const values = new Float64Array(fine.quotable.length);
+    let [low, high] = [Infinity, -Infinity];
+    const s = {};
+    for (let point = 0; point < values.length; point += 1) {
+      const value = measure.of(fine.at(point, s));
+      values[point] = value;
+      if (fine.quotable[point]) {
+        low = Math.min(low, value);
+        high = Math.max(high, value);
       }
     }
     if (measure.signed) {
@@ -99,33 +128,24 @@ class Picture {
     }
     const range = levels(low, high);
     const count = Math.max(1, range.last - range.first);
-    const paths = Array.from({ length: count }, () => new Path2D());
-    for (let t = 0; t < field.triangles; t += 1) {
-      for (const [a, b, c] of this.cells) {
-        const i = t * this.fine;
-        const mean = (values[i + a] + values[i + b] + values[i + c]) / 3;
-        const band = Math.min(count - 1, Math.max(0, Math.floor(mean / range.step - range.first)));
-        const path = paths[band];
-        const corner = [a, b, c].map((k) => {
-          const p = 2 * (i + k);
-          return this.toCanvas([this.places[p], this.places[p + 1]]);
-        });
-        path.moveTo(...corner[0]);
-        path.lineTo(...corner[1]);
-        path.lineTo(...corner[2]);
-        path.closePath();
-      }
+    const colours = Array.from({ length: count }, (_, k) => this.colour(range, k, measure.signed));
+    const inks = colours.map((hex) => {
+      const [r, g, b] = [1, 3, 5].map((at) => parseInt(hex.slice(at, at + 2), 16));
+      return (255 << 24) | (b << 16) | (g << 8) | r;
+    });
+    const pixels = new Uint32Array(this.image.data.buffer);
+    const { owner, weights, cells } = this;
+    for (let pixel = 0; pixel < owner.length; pixel += 1) {
+      if (owner[pixel] < 0) continue;
+      const cell = cells[owner[pixel] % cells.length];
+      const first = Math.floor(owner[pixel] / cells.length) * fine.per;
+      const [a, b] = [weights[2 * pixel], weights[2 * pixel + 1]];
+      const value = a * values[first + cell[0]] + b * values[first + cell[1]] + (1 - a - b) * values[first + cell[2]];
+      pixels[pixel] = inks[Math.min(count - 1, Math.max(0, Math.floor(value / range.step - range.first)))];
     }
     const g = this.canvas.getContext("2d");
+    g.putImageData(this.image, 0, 0);
     g.setTransform(this.ratio, 0, 0, this.ratio, 0, 0);
-    g.clearRect(0, 0, ...this.size);
-    const colours = paths.map((_, k) => this.colour(range, k, measure.signed));
-    paths.forEach((path, k) => {
-      // Cells overlap by a hair, else the paper shines through between them.
-      [g.fillStyle, g.strokeStyle, g.lineWidth] = [colours[k], colours[k], 0.8];
-      g.stroke(path);
-      g.fill(path);
-    });
     this.edges(g);
     return { ...range, colours };
   }

@@ -6,7 +6,8 @@
   const data = JSON.parse(source.textContent);
   const field = new Field(data);
   const by = (id) => document.getElementById(id);
-  const picture = new Picture(by("picture"), field, data);
+  const fine = new Fine(field);
+  const picture = new Picture(by("picture"), field, fine, data);
   const forces = Object.fromEntries(FORCES.map((name) => [name, 0]));
   let measure = "von_mises";
   let probe = null;
@@ -19,7 +20,7 @@
     Mx: data.units.moment,
     My: data.units.moment,
     T: data.units.moment,
-    B: `${data.units.force} ${data.units.length}²`,
+    B: `${data.units.moment}·${data.units.length}`,
   };
   const title = {
     N: "axial force N",
@@ -41,7 +42,7 @@
   const reach = (name) => {
     const largest = Math.max(0, ...data.actions.map((a) => Math.abs(a.forces[name])));
     if (largest > 0) return round(2 * largest);
-    const stress = extremes(field, one(name)).find((e) => e.key === "von_mises").value;
+    const stress = extremes(field, fine, one(name)).find((e) => e.key === "von_mises").value;
     return stress > 0 ? round(data.reference_stress / stress) : 1;
   };
 
@@ -126,39 +127,24 @@
 
   function show() {
     const { offset, all } = total();
-    const range = picture.draw(measure, all);
+    const found = extremes(field, fine, all);
+    const range = picture.draw(measure);
     line.draw(forces.Vx, forces.Vy);
     const { moment, stress } = data.units;
     by("offset").textContent = shown(offset);
     by("torque").textContent = shown(all.T);
     document.querySelectorAll(".moment-unit").forEach((node) => (node.textContent = moment));
-    const unit = stress;
-    const found = extremes(field, all);
     by("extremes").replaceChildren(
       ...found.map((e) => {
-        const row = document.createElement("tr");
-        row.dataset.key = e.key;
-        row.dataset.value = String(e.value);
-        const cells = [
-          e.label,
-          e.use ? shown(e.value) : `${shown(e.value)} ${unit}`,
-          `(${shown(e.at[0])}, ${shown(e.at[1])})`,
-          e.piece,
-        ];
-        row.append(
-          ...cells.map((text, k) => {
-            const cell = document.createElement(k ? "td" : "th");
-            cell.textContent = text;
-            return cell;
-          }),
-        );
-        return row;
+        const value = e.use ? shown(e.value) : `${shown(e.value)} ${stress}`;
+        const line = row(e.key, e.label, value, `(${shown(e.at[0])}, ${shown(e.at[1])})`, e.piece);
+            return line;
       }),
     );
+    by("largest").textContent = `${shown(found.find((e) => e.key === "von_mises").value)} ${stress}`;
     const use = found.find((e) => e.use);
     by("factor").textContent = use ? (use.value > 0 ? shown(1 / use.value) : "no stress") : "no yield stress stated";
-    by("factor").dataset.value = use && use.value > 0 ? String(1 / use.value) : "";
-    legend(range, unit);
+    legend(range, stress);
     if (probe) read(probe, all);
     document.dispatchEvent(new CustomEvent("sheet", { detail: { forces, at: line.at, measure } }));
   }
@@ -177,29 +163,52 @@
     by("legend-unit").textContent = `${MEASURES[measure].name}, ${unit}`;
   }
 
+  /** A row of a table: its heading, a number, and texts. */
+  function row(key, heading, value, ...texts) {
+    const line = document.createElement("tr");
+    line.dataset.key = key;
+    const head = document.createElement("th");
+    head.scope = "row";
+    head.textContent = heading;
+    line.append(head);
+    for (const [k, text] of [value, ...texts].entries()) {
+      const cell = document.createElement("td");
+      if (k === 0) cell.className = "number";
+      cell.textContent = text;
+      line.append(cell);
+    }
+    return line;
+  }
+
   function read(point, all) {
     const found = field.locate(point);
-    const place = `(${shown(point[0])}, ${shown(point[1])}) ${data.units.length}`;
+    const piece = found ? field.pieces[field.piece[found.t]] : "no material";
+    by("place").textContent = `Stress at (${point.join(", ")}) ${data.units.length}, ${piece}`.replaceAll("-", "−");
+    by("place").dataset.piece = found ? piece : "";
     if (!found) {
-      by("reading").textContent = `${place}: no material`;
+      by("reading").replaceChildren();
       return;
     }
     const s = field.at(found.t, shapes(field.n, field.nodes, found.xi, found.eta), all);
-    const parts = Object.entries(MEASURES).map(([, m]) => `${m.name} ${shown(m.of(s))}`);
-    const piece = field.pieces[field.piece[found.t]];
-    by("reading").textContent = `${place}, ${piece}: ${parts.join(", ")} ${data.units.stress}`;
+    by("reading").replaceChildren(
+      ...Object.entries(MEASURES).map(([key, m]) => row(key, m.name, `${shown(m.of(s))} ${data.units.stress}`)),
+    );
   }
 
   const stage = by("stage");
   stage.addEventListener("pointermove", (event) => {
     const frame = picture.canvas.getBoundingClientRect();
-    probe = picture.toSection([event.clientX - frame.left, event.clientY - frame.top]);
+    // To as many decimals as a tenth of a pixel has: the place that is named is the place that is read.
+    const decimals = Math.max(0, Math.ceil(1 - Math.log10(picture.pixel)));
+    probe = picture
+      .toSection([event.clientX - frame.left, event.clientY - frame.top])
+      .map((c) => Number(c.toFixed(decimals)));
+    [by("probe-x").value, by("probe-y").value] = probe;
     read(probe, total().all);
   });
-  for (const [id, k] of [["probe-x", 0], ["probe-y", 1]]) {
+  for (const id of ["probe-x", "probe-y"]) {
     by(id).addEventListener("input", () => {
-      probe = probe || [...data.centre];
-      probe[k] = Number(by(id).value) || 0;
+      probe = ["probe-x", "probe-y"].map((field) => Number(by(field).value) || 0);
       read(probe, total().all);
     });
   }
@@ -217,5 +226,6 @@
     apply(kept);
   } else if (data.actions.length) apply(data.actions[0]);
   else set("Vy", Number(inputs.Vy.slide.max) / 2);
+  by("coarse").hidden = !data.coarse;
   by("sheet").dataset.ready = "yes";
 })();
