@@ -294,6 +294,26 @@ fn of_text(text: &str, format: Format) -> Result<Traced, Refusal> {
     trace("drawing", text.as_bytes(), format, &Options::default())
 }
 
+/// A line drawn over the side of a closed outline is left out and counted, one that leaves it is told.
+#[test]
+fn lines_drawn_over_an_outline_are_left_out() {
+    let svg = |line: &str| {
+        format!(
+            "<svg xmlns=\"http://www.w3.org/2000/svg\" viewBox=\"0 0 100 100\">\
+             <rect x=\"10\" y=\"10\" width=\"60\" height=\"20\"/>{line}</svg>"
+        )
+    };
+    let plain = of_text(&svg(""), Format::Svg).unwrap();
+    let over = "<line x1=\"65\" y1=\"30\" x2=\"20\" y2=\"30\"/>";
+    let traced = of_text(&svg(over), Format::Svg).unwrap();
+    let outline = |text: &str| text[text.find("[[piece]]").unwrap()..].to_string();
+    assert_eq!(outline(&traced.text), outline(&plain.text));
+    let told = traced.remarks.join(" ");
+    assert!(told.contains("lay on others: 1 side"), "{told}");
+    let beyond = "<line x1=\"65\" y1=\"30\" x2=\"80\" y2=\"30\"/>";
+    assert!(of_text(&svg(beyond), Format::Svg).is_err());
+}
+
 #[test]
 fn corners_come_in_columns() {
     for text in [

@@ -7,7 +7,7 @@ use sectile_mesh::outline::side::Side;
 use super::chain::{self, Chained, Opening};
 use super::drawing::{Drawing, MOST_SIDES, Path, Shape};
 use super::report::Report;
-use super::{Refusal, fit, open, overlap};
+use super::{Refusal, fit, open, overlap, redrawn};
 use crate::read::fault::Fault;
 
 /// The lengths that decide what belongs together.
@@ -71,7 +71,8 @@ pub fn of_drawing(
     let mut found = Vec::new();
     let mut openings: Vec<Opening> = Vec::new();
     let mut faults = Vec::new();
-    for (layer, (mut loops, loose)) in layers.into_iter().enumerate() {
+    for (layer, (mut loops, mut loose)) in layers.into_iter().enumerate() {
+        report.overlapping += redrawn::drop_redrawn(&mut loose, &loops, tolerances.same());
         let (loose, removed) = overlap::united(loose, tolerances);
         report.overlapping += removed;
         let Chained {

@@ -21,6 +21,7 @@ pub mod nest;
 pub mod number;
 pub mod open;
 pub mod overlap;
+pub mod redrawn;
 pub mod report;
 pub mod svg;
 pub mod wkt;
