@@ -50,3 +50,47 @@ fn the_box_agrees_with_bredt() {
     let bredt = 45_000.0 / (2.0 * 230.0 * 264.0);
     assert!(mean < bredt && mean > 0.99 * bredt, "{mean}, not {bredt}");
 }
+
+/// What the remarks of the sweep's demo tell to run.
+#[test]
+fn the_bracket_rail_is_swept_and_fitted() {
+    let demos = section_files("../cli/demo");
+    let demo = demos
+        .iter()
+        .find(|d| file_name(d).starts_with("bracket-rail"));
+    let folder = tempfile::tempdir().unwrap();
+    std::fs::copy(demo.unwrap(), folder.path().join("rail.section.toml")).unwrap();
+    let run = |arguments: &[&str]| {
+        let mut command = Command::new(env!("CARGO_BIN_EXE_sectile-as-tested"));
+        command
+            .current_dir(folder.path())
+            .args(arguments)
+            .assert()
+            .success();
+    };
+    let chart = "shear_centre_x,second_moment_x";
+    run(&[
+        "many",
+        "rail.section.toml",
+        "--out",
+        "rail.csv",
+        "--chart",
+        chart,
+    ]);
+    let rows = std::fs::read_to_string(folder.path().join("rail.csv")).unwrap();
+    assert_eq!(rows.lines().count(), 1 + 7 * 3);
+    assert!(folder.path().join("rail.svg").exists());
+    let mut fit = vec!["fit", "rail.section.toml", "--goal", "shear_centre_x = -20"];
+    fit.extend([
+        "--vary",
+        "piece.rail.profile.tw",
+        "--from",
+        "2",
+        "--to",
+        "10",
+    ]);
+    run(&fit);
+    let results = solved(&folder.path().join("rail-fitted.section.toml"));
+    let centre = &results["properties"]["shear_centre_x"];
+    assert!(centre["low"].as_f64() <= Some(-20.0) && centre["high"].as_f64() >= Some(-20.0));
+}
