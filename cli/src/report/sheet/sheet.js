@@ -191,7 +191,11 @@
     }
     const s = field.at(found.t, shapes(field.n, field.nodes, found.xi, found.eta), all);
     by("reading").replaceChildren(
-      ...Object.entries(MEASURES).map(([key, m]) => row(key, m.name, `${shown(m.of(s))} ${data.units.stress}`)),
+      ...Object.entries(MEASURES).map(([key, m]) => {
+        // What the page's numbers cannot tell from nothing is nothing.
+        const value = Math.abs(m.of(s)) < 1e-6 * MEASURES.tresca.of(s) ? 0 : m.of(s);
+        return row(key, m.name, `${shown(value)} ${data.units.stress}`);
+      }),
     );
   }
 
