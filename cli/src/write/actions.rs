@@ -118,15 +118,39 @@ fn extreme_row(
     measure: Measure,
     extreme: &Extreme,
 ) -> [String; 13] {
+    let [quantity, value, unit, x, y, piece, sigma, tau_x, tau_y] =
+        extreme_cells(units, names, measure, extreme);
+    let cause = cause::main(measure, extreme).map_or(String::new(), |c| c.part.into());
+    [
+        action.into(),
+        kind.into(),
+        quantity,
+        value,
+        unit,
+        x,
+        y,
+        piece,
+        sigma,
+        tau_x,
+        tau_y,
+        cause,
+        String::new(),
+    ]
+}
+
+/// What every table tells of an extreme: its measure, value and unit, where it is, and the stress there.
+pub(super) fn extreme_cells(
+    units: &Units,
+    names: &Names,
+    measure: Measure,
+    extreme: &Extreme,
+) -> [String; 9] {
     let factor = stress_per_force(units);
     let (value, unit) = match measure {
         Measure::Utilisation => (extreme.value, ""),
         _ => (extreme.value * factor, units.stress),
     };
-    let cause = cause::main(measure, extreme).map_or(String::new(), |c| c.part.into());
     [
-        action.into(),
-        kind.into(),
         measure.key().into(),
         number(value),
         unit.into(),
@@ -136,8 +160,6 @@ fn extreme_row(
         number(extreme.stress.sigma * factor),
         number(extreme.stress.tau.x * factor),
         number(extreme.stress.tau.y * factor),
-        cause,
-        String::new(),
     ]
 }
 

@@ -5,10 +5,8 @@ use sectile_solver::stress::extreme::Extreme;
 use sectile_solver::stress::measure::Measure;
 
 use super::CAUTION;
-use super::actions::Table;
+use super::actions::{Table, extreme_cells};
 use super::digits;
-use super::json::number;
-use super::units::stress_per_force;
 use crate::response::{Names, Responses};
 use crate::section::Units;
 
@@ -72,25 +70,22 @@ fn row(
     measure: Measure,
     extreme: &Extreme,
 ) -> [String; MATERIALS.len()] {
-    let factor = stress_per_force(units);
-    let (value, unit) = match measure {
-        Measure::Utilisation => (extreme.value, ""),
-        _ => (extreme.value * factor, units.stress),
-    };
     let [action, kind, material] = heads.map(String::from);
+    let [quantity, value, unit, x, y, piece, sigma, tau_x, tau_y] =
+        extreme_cells(units, names, measure, extreme);
     [
         action,
         kind,
         material,
-        measure.key().into(),
-        number(value),
-        unit.into(),
-        number(extreme.at.x),
-        number(extreme.at.y),
-        names.piece(extreme.piece).into(),
-        number(extreme.stress.sigma * factor),
-        number(extreme.stress.tau.x * factor),
-        number(extreme.stress.tau.y * factor),
+        quantity,
+        value,
+        unit,
+        x,
+        y,
+        piece,
+        sigma,
+        tau_x,
+        tau_y,
         String::new(),
     ]
 }

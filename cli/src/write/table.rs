@@ -3,15 +3,13 @@
 
 pub mod actions;
 mod columns;
+mod layout;
 pub mod materials;
 pub mod seams;
 
 use std::collections::BTreeSet;
 
-use comfy_table::{
-    Attribute, Cell, CellAlignment, Color, ColumnConstraint, ContentArrangement, Table, Width,
-    presets,
-};
+use comfy_table::{Attribute, Cell, CellAlignment, Color, ColumnConstraint, Width};
 
 use sectile_solver::figure::Trust;
 use sectile_solver::material::Material;
@@ -32,8 +30,8 @@ pub struct Look {
     pub styled: bool,
 }
 
-/// The whole text: title, mesh, the material that a section of several refers to, properties by group, what the words promise, findings, caution. It
-/// ends in a line break.
+/// The whole text: title, mesh, the material that a section of several refers to, properties by group,
+/// what the words promise, findings, caution. It ends in a line break.
 #[must_use]
 pub fn render(
     title: &str,
@@ -145,16 +143,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
             .filter_map(|(_, _, p)| p.half_width.as_deref()),
     );
 
-    let mut table = Table::new();
-    table
-        .load_style(presets::NOTHING)
-        .set_content_arrangement(ContentArrangement::Dynamic)
-        .set_width(look.width);
-    if look.styled {
-        table.enforce_styling();
-    } else {
-        table.force_no_tty();
-    }
+    let mut table = layout::plain(look);
     let sign = if look.width < 80 { "±" } else { "± " };
     let mut group: Option<Group> = None;
     for (quantity, trust, p) in &printed {
@@ -185,8 +174,8 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
             Cell::new(format!("\u{a0}\u{a0}{}", wording::name(*quantity))),
             Cell::new(quantity.symbol()),
             Cell::new(values.align(&p.value)),
-            Cell::new(half.replace(' ', "\u{a0}")),
-            Cell::new(unit.replace(' ', "\u{a0}")),
+            Cell::new(layout::unbroken(&half)),
+            Cell::new(layout::unbroken(&unit)),
             word,
         ]);
     }
@@ -200,11 +189,7 @@ fn properties(units: &Units, solution: &Solution, look: Look) -> Vec<String> {
             ColumnConstraint::ContentWidth
         });
     }
-    // Non-breaking spaces hold the columns together while they are laid out; readers want plain ones.
-    table
-        .lines()
-        .map(|line| line.replace('\u{a0}', " ").trim_end().to_string())
-        .collect()
+    layout::lines(&table)
 }
 
 /// Room before and behind the decimal point, so that points stand below one another.

@@ -1,11 +1,10 @@
 //! Small tables of names and numbers within the width of the terminal.
 
-use comfy_table::{
-    Attribute, Cell, CellAlignment, ColumnConstraint, ContentArrangement, Table, Width, presets,
-};
+use comfy_table::{Attribute, Cell, CellAlignment, ColumnConstraint, Width};
 
 use sectile_solver::stress::extreme::Extreme;
 
+use super::layout::{lines, plain, unbroken};
 use super::{Look, style};
 use crate::write::digits;
 
@@ -20,18 +19,8 @@ pub fn columns(
     numbers: &[bool],
     look: Look,
 ) -> Vec<String> {
-    let mut table = Table::new();
-    table
-        .load_style(presets::NOTHING)
-        .set_content_arrangement(ContentArrangement::Dynamic)
-        .set_width(look.width);
-    if look.styled {
-        table.enforce_styling();
-    } else {
-        table.force_no_tty();
-    }
-    let hard = |text: &str| text.replace(' ', "\u{a0}");
-    let head = |text: &str| style(Cell::new(hard(text)), Attribute::Dim, look);
+    let mut table = plain(look);
+    let head = |text: &str| style(Cell::new(unbroken(text)), Attribute::Dim, look);
     let indent = |h: &str| {
         if h == heads[0].0 {
             format!("  {h}")
@@ -57,7 +46,7 @@ pub fn columns(
             } else {
                 text.clone()
             };
-            Cell::new(if free(i) { text } else { hard(&text) })
+            Cell::new(if free(i) { text } else { unbroken(&text) })
         });
         table.add_row(cells.collect::<Vec<_>>());
     }
@@ -76,10 +65,7 @@ pub fn columns(
             ColumnConstraint::ContentWidth
         });
     }
-    table
-        .lines()
-        .map(|line| line.replace('\u{a0}', " ").trim_end().to_string())
-        .collect()
+    lines(&table)
 }
 
 /// A number to four digits.
