@@ -2,12 +2,15 @@
 //!
 //! Sought at the lattice points of every triangle, then around the best of them by a search in its
 //! triangle. Points close to sharp re-entrant corners are left out: the calculated stress there grows
-//! with every refinement.
+//! with every refinement. Since it grows towards them, extremes like to lie on the rim of what is left
+//! out: the lattice's lines end in points of it too, and the search slides along it.
 
 use sectile_mesh::Point;
+use sectile_mesh::map::TriangleMap;
 
-use super::field::UnitFields;
+use super::field::{UnitFields, UnitStress};
 use super::forces::SectionForces;
+use super::locate::{Located, invert};
 use super::measure::Measure;
 use super::state::Stress;
 use crate::evaluate::{Evaluator, PointTable, Ready};
@@ -59,6 +62,14 @@ pub struct Quotable {
     /// By lattice point of the unit fields.
     allowed: Vec<bool>,
     circles: Vec<(Point, f64)>,
+    /// Where lines of the lattice cross the circles.
+    rim: Vec<RimPoint>,
+}
+
+#[derive(Clone, Copy, Debug)]
+struct RimPoint {
+    at: Located,
+    unit: UnitStress,
 }
 
 impl Quotable {
@@ -70,12 +81,17 @@ impl Quotable {
             .iter()
             .map(|c| (c.at, exclusion * c.wall))
             .collect();
-        let allowed = fields
+        let allowed: Vec<bool> = fields
             .positions
             .iter()
             .map(|p| is_allowed(&circles, *p))
             .collect();
-        Self { allowed, circles }
+        let rim = rim(solution, fields, &allowed, &circles);
+        Self {
+            allowed,
+            circles,
+            rim,
+        }
     }
 
     /// Those of these points that lie in pieces for which `keep` holds.
@@ -93,15 +109,82 @@ impl Quotable {
             .enumerate()
             .map(|(i, allowed)| *allowed && keep(solution.mesh.piece[i / per]))
             .collect();
+        let kept = |point: &&RimPoint| keep(solution.mesh.piece[point.at.triangle]);
         Self {
             allowed,
             circles: self.circles.clone(),
+            rim: self.rim.iter().filter(kept).copied().collect(),
         }
     }
 }
 
+/// A point of the rim that has been rounded is still one.
 fn is_allowed(circles: &[(Point, f64)], p: Point) -> bool {
-    circles.iter().all(|(c, r)| p.distance(*c) >= *r)
+    circles
+        .iter()
+        .all(|(c, r)| p.distance(*c) >= *r * (1.0 - 1e-9))
+}
+
+/// The points where a line between neighbours of the lattice leaves what is allowed, by halving.
+fn rim(
+    solution: &Solution,
+    fields: &UnitFields,
+    allowed: &[bool],
+    circles: &[(Point, f64)],
+) -> Vec<RimPoint> {
+    let Some(evaluator) = Evaluator::new(solution) else {
+        return Vec::new();
+    };
+    let frame = &evaluator.solved.frame;
+    let lattice = &fields.lattice;
+    // Each line belongs to one or two cells.
+    let mut lines: Vec<[usize; 2]> = lattice
+        .cells
+        .iter()
+        .flat_map(|&[a, b, c]| [[a, b], [b, c], [a, c]])
+        .map(|[a, b]| [a.min(b), a.max(b)])
+        .collect();
+    lines.sort_unstable();
+    lines.dedup();
+    let mut out = Vec::new();
+    for (triangle, allowed) in allowed.chunks_exact(lattice.points.len()).enumerate() {
+        if allowed.iter().all(|a| *a) || !allowed.iter().any(|a| *a) {
+            continue;
+        }
+        let ready = evaluator.ready(triangle);
+        let map = evaluator.map(triangle);
+        let place = |p: [f64; 2]| {
+            let at = map.at(p[0], p[1]);
+            frame.outward(Point::new(at.x, at.y))
+        };
+        for &[a, b] in &lines {
+            let (inside, outside) = match (allowed[a], allowed[b]) {
+                (true, false) => (a, b),
+                (false, true) => (b, a),
+                _ => continue,
+            };
+            let reference = |k: usize| [lattice.points[k][1], lattice.points[k][2]];
+            let (mut good, mut bad) = (reference(inside), reference(outside));
+            for _ in 0..40 {
+                let middle = [0.5 * (good[0] + bad[0]), 0.5 * (good[1] + bad[1])];
+                if is_allowed(circles, place(middle)) {
+                    good = middle;
+                } else {
+                    bad = middle;
+                }
+            }
+            let table = PointTable::single(&evaluator.solved.tables, good, &ready);
+            let at = evaluator.at(&ready, &table, 0);
+            out.push(RimPoint {
+                at: Located {
+                    triangle,
+                    reference: good,
+                },
+                unit: fields.superposition.unit_stress(evaluator.solved, &at),
+            });
+        }
+    }
+    out
 }
 
 /// The extremes under section forces. `yield_stress` by piece.
@@ -117,54 +200,56 @@ pub fn extremes(
         return Extremes(Vec::new());
     };
     let per = fields.lattice.points.len();
-    let piece_of = |i: usize| solution.mesh.piece[i / per];
     let yield_of = |piece: u32| yield_stress.get(piece as usize).copied().flatten();
-    let mut best = [(f64::NEG_INFINITY, usize::MAX); Measure::ALL.len()];
+    let mut best: [(f64, Option<Located>); Measure::ALL.len()] =
+        [(f64::NEG_INFINITY, None); Measure::ALL.len()];
+    let mut offer = |unit: &UnitStress, limit: Option<f64>, at: &dyn Fn() -> Located| {
+        for (slot, r) in best.iter_mut().zip(ranks(&unit.under(forces), limit)) {
+            if r > slot.0 {
+                *slot = (r, Some(at()));
+            }
+        }
+    };
     for (t, units) in fields.units.chunks_exact(per).enumerate() {
         let limit = yield_of(solution.mesh.piece[t]);
         for (p, unit) in units.iter().enumerate() {
-            let i = t * per + p;
-            if quotable.allowed[i] {
-                for (slot, r) in best.iter_mut().zip(ranks(&unit.under(forces), limit)) {
-                    if r > slot.0 {
-                        *slot = (r, i);
-                    }
-                }
+            if quotable.allowed[t * per + p] {
+                let [_, xi, eta] = fields.lattice.points[p];
+                offer(unit, limit, &|| Located {
+                    triangle: t,
+                    reference: [xi, eta],
+                });
             }
         }
     }
+    for point in &quotable.rim {
+        let limit = yield_of(solution.mesh.piece[point.at.triangle]);
+        offer(&point.unit, limit, &|| point.at);
+    }
     let mut ready: Vec<(usize, Ready)> = Vec::new();
     let mut out = Vec::new();
-    for (slot, &measure) in best.iter().zip(Measure::ALL) {
-        let i = slot.1;
-        if i == usize::MAX {
-            continue;
-        }
-        let triangle = i / per;
+    for ((_, start), &measure) in best.iter().zip(Measure::ALL) {
+        let Some(start) = start else { continue };
+        let triangle = start.triangle;
         if !ready.iter().any(|(t, _)| *t == triangle) {
             ready.push((triangle, evaluator.ready(triangle)));
         }
         let Some((_, own)) = ready.iter().find(|(t, _)| *t == triangle) else {
             continue;
         };
+        let piece = solution.mesh.piece[triangle];
         let search = Search {
             evaluator: &evaluator,
             fields,
             quotable,
             forces,
             measure,
-            limit: yield_of(piece_of(i)),
+            limit: yield_of(piece),
             ready: own,
+            map: evaluator.map(triangle),
         };
-        let l = fields.lattice.points[i % per];
-        out.push((
-            measure,
-            search.climb(
-                [l[1], l[2]],
-                1.0 / fields.lattice.divisions as f64,
-                piece_of(i),
-            ),
-        ));
+        let step = 1.0 / fields.lattice.divisions as f64;
+        out.push((measure, search.climb(start.reference, step, piece)));
     }
     Extremes(out)
 }
@@ -203,13 +288,14 @@ struct Search<'a> {
     measure: Measure,
     limit: Option<f64>,
     ready: &'a Ready,
+    map: TriangleMap,
 }
 
 /// Halvings of the step of a search.
 const HALVINGS: usize = 9;
 
 impl Search<'_> {
-    fn unit(&self, p: [f64; 2]) -> (Point, super::field::UnitStress) {
+    fn unit(&self, p: [f64; 2]) -> (Point, UnitStress) {
         let solved = self.evaluator.solved;
         let table = PointTable::single(&solved.tables, p, self.ready);
         let at = self.evaluator.at(self.ready, &table, 0);
@@ -238,7 +324,22 @@ impl Search<'_> {
         rank(self.measure, &unit.under(self.forces), self.limit)
     }
 
-    /// Steps along the three sides' directions, halved whenever none of them gains.
+    /// The point, or if it is left out the next one of the rim; nothing if that is not in the triangle.
+    fn allowed(&self, p: [f64; 2]) -> Option<[f64; 2]> {
+        let frame = &self.evaluator.solved.frame;
+        let at = self.map.at(p[0], p[1]);
+        let place = frame.outward(Point::new(at.x, at.y));
+        let left_out = |&&(c, r): &&(Point, f64)| place.distance(c) < r;
+        let Some(&(centre, radius)) = self.quotable.circles.iter().find(left_out) else {
+            return Some(p);
+        };
+        let out = place - centre;
+        let rim = centre + out * (radius / out.length());
+        invert(&self.map, frame.inward(rim))
+    }
+
+    /// Steps along the three sides' directions, halved whenever none of them gains. A step that would
+    /// leave what is allowed goes to the rim, so that the search slides along it.
     fn climb(&self, start: [f64; 2], step: f64, piece: u32) -> Extreme {
         const DIRECTIONS: [[f64; 2]; 6] = [
             [1.0, 0.0],
@@ -259,7 +360,9 @@ impl Search<'_> {
                 if q[0] < 0.0 || q[1] < 0.0 || q[0] + q[1] > 1.0 {
                     continue;
                 }
-                if let Some(r) = self.rank_at(q)
+                let q = self.allowed(q);
+                if let Some(q) = q
+                    && let Some(r) = self.rank_at(q)
                     && r > best
                 {
                     (best, p, gained) = (r, q, true);

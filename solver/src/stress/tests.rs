@@ -8,8 +8,9 @@ use sectile_mesh::outline::shape::{circle, polygon, tube};
 
 use super::cut::cut;
 use super::extreme::{DEFAULT_EXCLUSION, Quotable, extremes, load_factor_to_yield};
-use super::field::UnitFields;
+use super::field::{UnitFields, UnitStress};
 use super::forces::SectionForces;
+use super::locate::locate;
 use super::measure::Measure;
 use super::probe::at_point;
 use crate::evaluate::{Evaluator, PointTable};
@@ -427,6 +428,78 @@ fn grooved_shaft_meets_its_exact_peak() {
     assert!((tau.value - 1.8).abs() < 1e-3, "{}", tau.value);
     assert!(tau.at.distance(Point::new(0.2, 0.0)) < 1e-2);
     assert!(found.get(Measure::Utilisation).is_none());
+}
+
+/// Beside sharp corners the largest stress lies on the rim of what is left out: no point of it, looked at
+/// closely, has more than is quoted.
+#[test]
+fn no_point_of_the_rim_has_more_than_is_quoted() {
+    let channel = corners(&[
+        [0., 0.],
+        [80., 0.],
+        [80., 12.],
+        [8., 12.],
+        [8., 188.],
+        [60., 188.],
+        [60., 200.],
+        [0., 200.],
+    ]);
+    let (_, solution) = solved(channel, 0.3, 1e-3);
+    let fields = UnitFields::new(&solution, 8).unwrap();
+    let evaluator = Evaluator::new(&solution).unwrap();
+    for share in [0.1, 0.25] {
+        let quotable = Quotable::new(&solution, &fields, share);
+        // Many places on each circle, those on sides of triangles once for each.
+        let rim: Vec<UnitStress> = solution
+            .corners
+            .iter()
+            .flat_map(|corner| {
+                (0..3000).map(move |k| {
+                    let angle = std::f64::consts::TAU * f64::from(k) / 3000.0;
+                    corner.at + sectile_mesh::Vector::at_angle(angle) * (share * corner.wall)
+                })
+            })
+            .flat_map(|p| locate(&evaluator, p))
+            .map(|at| {
+                let ready = evaluator.ready(at.triangle);
+                let table = PointTable::single(&evaluator.solved.tables, at.reference, &ready);
+                let point = evaluator.at(&ready, &table, 0);
+                fields.superposition.unit_stress(evaluator.solved, &point)
+            })
+            .collect();
+        assert!(rim.len() > 3000);
+        let mut on_rim = 0;
+        for (t, vx, vy, mx) in [
+            (1.0, 0.0, 0.0, 0.0),
+            (0.0, 1.0, 0.0, 0.0),
+            (0.0, 0.0, 1.0, 0.0),
+            (30.0, -2.0, 1.0, 40.0),
+            (-8.0, 0.5, 1.0, -90.0),
+        ] {
+            let forces = SectionForces {
+                t,
+                vx,
+                vy,
+                mx,
+                ..SectionForces::default()
+            };
+            let found = extremes(&solution, &fields, &quotable, &forces, &[None]);
+            for measure in [Measure::Tau, Measure::VonMises, Measure::Principal1] {
+                let quoted = found.get(measure).unwrap();
+                let most = rim
+                    .iter()
+                    .filter_map(|unit| measure.of(&unit.under(&forces), None))
+                    .fold(0.0, f64::max);
+                assert!(
+                    most <= quoted.value * (1.0 + 1e-4),
+                    "{share} {measure:?} {forces:?}: {most} on the rim, {} quoted",
+                    quoted.value
+                );
+                on_rim += usize::from(most > quoted.value * (1.0 - 1e-4));
+            }
+        }
+        assert!(on_rim > 4, "{on_rim}: the rim matters");
+    }
 }
 
 /// A cut across the web of a channel: the flow of V is `V Q / I` (common practice, no source), exactly so for the

@@ -89,9 +89,14 @@ class Field {
     return { at: [this.origin[0] + x, this.origin[1] + y], sigma, tauX, tauY };
   }
 
-  /** Whether a stress there may be quoted: not close to a corner where it has no limit. */
-  quotable([x, y]) {
-    return this.excluded.every(([cx, cy, r]) => Math.hypot(x - cx, y - cy) >= r);
+  /** The circle of what is left out in which a point lies: close to a corner where stress has no limit. */
+  around([x, y]) {
+    return this.excluded.find(([cx, cy, r]) => Math.hypot(x - cx, y - cy) < r);
+  }
+
+  /** Whether a stress there may be quoted. */
+  quotable(place) {
+    return !this.around(place);
   }
 
   /** The triangle and reference coordinates of a point, or null outside of the material. */
@@ -141,19 +146,32 @@ class Field {
   }
 }
 
+/** The point just outside of a circle in the direction of a point inside. */
+function outTo([cx, cy, r], [x, y]) {
+  const grow = ((1 + 1e-6) * r) / Math.hypot(x - cx, y - cy);
+  return [cx + grow * (x - cx), cy + grow * (y - cy)];
+}
+
 /** Divisions of a triangle's sides where extremes are sought first, as the program does. */
 const SEARCHED = 8;
 
-/** The unit fields on a finer lattice, and the stresses there under the section forces last superposed. */
+/** Halvings of a lattice's line that find where it leaves what may be quoted. */
+const RIM_HALVINGS = 24;
+
+/**
+ * The unit fields on a finer lattice, and the stresses there under the section forces last superposed. Behind the
+ * lattice's points of all triangles come those of the rim: where its lines leave what may be quoted, since beside a
+ * sharp corner the largest stress lies there.
+ */
 class Fine {
   constructor(field) {
     this.nodes = lattice(SEARCHED);
     this.per = this.nodes.length;
-    const points = this.per * field.triangles;
+    this.points = this.per * field.triangles;
+    const { points } = this;
     this.places = new Float64Array(2 * points);
-    this.units = new Float32Array(COMPONENTS * points);
     this.quotable = new Uint8Array(points);
-    this.stress = { sigma: new Float64Array(points), tauX: new Float64Array(points), tauY: new Float64Array(points) };
+    const units = new Float32Array(COMPONENTS * points);
     const shape = this.nodes.map(([i, j]) => shapes(field.n, field.nodes, i / SEARCHED, j / SEARCHED));
     for (let t = 0; t < field.triangles; t += 1) {
       for (let k = 0; k < this.per; k += 1) {
@@ -166,13 +184,61 @@ class Fine {
           x += s * field.places[2 * node];
           y += s * field.places[2 * node + 1];
           for (let c = 0; c < COMPONENTS; c += 1) {
-            this.units[COMPONENTS * point + c] += s * field.units[COMPONENTS * node + c];
+            units[COMPONENTS * point + c] += s * field.units[COMPONENTS * node + c];
           }
         }
         [this.places[2 * point], this.places[2 * point + 1]] = [x, y];
         this.quotable[point] = field.quotable([x, y]) ? 1 : 0;
       }
     }
+    this.findRim(field);
+    this.units = new Float32Array(COMPONENTS * (points + this.rim.length));
+    this.units.set(units);
+    this.rim.forEach(({ t, xi, eta }, r) => {
+      const weights = shapes(field.n, field.nodes, xi, eta);
+      for (let c = 0; c < COMPONENTS; c += 1) {
+        let sum = 0;
+        for (let p = 0; p < field.per; p += 1) sum += weights[p] * field.units[COMPONENTS * (t * field.per + p) + c];
+        this.units[COMPONENTS * (points + r) + c] = sum;
+      }
+    });
+    const all = points + this.rim.length;
+    this.stress = { sigma: new Float64Array(all), tauX: new Float64Array(all), tauY: new Float64Array(all) };
+  }
+
+  /** The points of the rim, triangle by triangle, and where those of each triangle start. */
+  findRim(field) {
+    const key = (a, b) => Math.min(a, b) * this.per + Math.max(a, b);
+    const lines = new Map();
+    for (const [a, b, c] of latticeCells(SEARCHED)) {
+      for (const [from, to] of [[a, b], [b, c], [a, c]]) lines.set(key(from, to), [from, to]);
+    }
+    this.rim = [];
+    this.rimStart = new Int32Array(field.triangles + 1);
+    for (let t = 0; t < field.triangles; t += 1) {
+      this.rimStart[t] = this.rim.length;
+      const quotable = this.quotable.subarray(t * this.per, (t + 1) * this.per);
+      if (quotable.every((q) => q === quotable[0])) continue;
+      for (const [a, b] of lines.values()) {
+        if (quotable[a] === quotable[b]) continue;
+        const end = (p) => [this.nodes[p][0] / SEARCHED, this.nodes[p][1] / SEARCHED];
+        let [good, bad] = quotable[a] ? [end(a), end(b)] : [end(b), end(a)];
+        for (let k = 0; k < RIM_HALVINGS; k += 1) {
+          const middle = [0.5 * (good[0] + bad[0]), 0.5 * (good[1] + bad[1])];
+          if (field.quotable(field.position(t, ...middle))) good = middle;
+          else bad = middle;
+        }
+        this.rim.push({ t, xi: good[0], eta: good[1] });
+      }
+    }
+    this.rimStart[field.triangles] = this.rim.length;
+  }
+
+  /** Where a point lies in its triangle. */
+  reference(point) {
+    if (point >= this.points) return this.rim[point - this.points];
+    const [i, j] = this.nodes[point % this.per];
+    return { xi: i / SEARCHED, eta: j / SEARCHED };
   }
 
   superpose(f) {
@@ -268,28 +334,30 @@ function bestTriangles(field, fine) {
   const ranks = new Float64Array(keys.length);
   const best = new Float64Array(keys.length);
   const where = new Int32Array(keys.length);
+  const consider = (point, limit) => {
+    const normal = sigma[point];
+    const square = tauX[point] * tauX[point] + tauY[point] * tauY[point];
+    ranks[0] = normal;
+    ranks[1] = -normal;
+    ranks[2] = square;
+    ranks[3] = normal * normal + 3 * square;
+    ranks[4] = ranks[3] + square;
+    ranks[5] = limit ? ranks[3] / (limit * limit) : -Infinity;
+    for (let k = 0; k < ranks.length; k += 1) {
+      if (ranks[k] > best[k]) [best[k], where[k]] = [ranks[k], point];
+    }
+  };
   for (let t = 0; t < field.triangles; t += 1) {
     const limit = field.yields[field.piece[t]];
     best.fill(-Infinity);
-    for (let p = 0; p < fine.per; p += 1) {
-      const point = t * fine.per + p;
-      if (!fine.quotable[point]) continue;
-      const normal = sigma[point];
-      const square = tauX[point] * tauX[point] + tauY[point] * tauY[point];
-      ranks[0] = normal;
-      ranks[1] = -normal;
-      ranks[2] = square;
-      ranks[3] = normal * normal + 3 * square;
-      ranks[4] = ranks[3] + square;
-      ranks[5] = limit ? ranks[3] / (limit * limit) : -Infinity;
-      for (let k = 0; k < ranks.length; k += 1) {
-        if (ranks[k] > best[k]) [best[k], where[k]] = [ranks[k], p];
-      }
+    for (let point = t * fine.per; point < (t + 1) * fine.per; point += 1) {
+      if (fine.quotable[point]) consider(point, limit);
     }
+    for (let r = fine.rimStart[t]; r < fine.rimStart[t + 1]; r += 1) consider(fine.points + r, limit);
     found.forEach((starts, k) => {
       if (!(best[k] > (starts[STARTS - 1]?.rank ?? -Infinity))) return;
-      const [i, j] = fine.nodes[where[k]];
-      starts.push({ rank: best[k], t, xi: i / SEARCHED, eta: j / SEARCHED });
+      const { xi, eta } = fine.reference(where[k]);
+      starts.push({ rank: best[k], t, xi, eta });
       starts.sort((one, other) => other.rank - one.rank);
       starts.length = Math.min(starts.length, STARTS);
     });
@@ -297,7 +365,10 @@ function bestTriangles(field, fine) {
   return Object.fromEntries(keys.map((key, k) => [key, found[k]]));
 }
 
-/** Steps along the directions of the three sides, halved whenever none of them gains. */
+/**
+ * Steps along the directions of the three sides, halved whenever none of them gains. A step that would leave what
+ * may be quoted goes to its rim, so that the search slides along it.
+ */
 function climb(field, forces, start, score) {
   let { xi, eta } = start;
   const look = (x, e) => {
@@ -309,8 +380,15 @@ function climb(field, forces, start, score) {
   for (let halvings = 0; halvings < 9; ) {
     let gained = false;
     for (const [dx, de] of [[1, 0], [-1, 0], [0, 1], [0, -1], [1, -1], [-1, 1]]) {
-      const [x, e] = [xi + step * dx, eta + step * de];
+      let [x, e] = [xi + step * dx, eta + step * de];
       if (x < 0 || e < 0 || x + e > 1) continue;
+      const place = field.position(start.t, x, e);
+      const circle = field.around(place);
+      if (circle) {
+        const onRim = field.invert(start.t, outTo(circle, place));
+        if (!onRim || onRim.miss > 0) continue;
+        [x, e] = [onRim.xi, onRim.eta];
+      }
       const next = look(x, e);
       if (next.rank > best.rank) {
         [best, xi, eta, gained] = [next, x, e, true];
