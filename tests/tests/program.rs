@@ -261,6 +261,37 @@ fn actions_are_answered_with_the_keys_of_the_contract() {
     assert!(cut["normal_force"].is_number());
 }
 
+/// Section forces come back in the units in which they were stated, the bimoment's too: moment times length.
+#[test]
+fn section_forces_come_back_as_they_were_stated() {
+    let folder = tempfile::tempdir().unwrap();
+    let file = folder.path().join("bar.section.toml");
+    let stated = [
+        ("N", 3.5),
+        ("Vx", -1.25),
+        ("Mx", 12.0),
+        ("My", 0.75),
+        ("T", 0.5),
+        ("B", -40.0),
+        ("Tw", 0.125),
+    ];
+    let lines: String = stated.iter().map(|(k, v)| format!("{k} = {v}\n")).collect();
+    let text = format!(
+        "[units]\nlength = \"mm\"\nforce = \"kN\"\nmoment = \"kN m\"\n\
+         [[piece]]\nname = \"bar\"\nbar = {{ at = [0, 0], b = 10, h = 30 }}\n\
+         [[action]]\nname = \"all\"\n{lines}"
+    );
+    std::fs::write(&file, text).unwrap();
+    let results = json(&["--tolerance", "1e-3"], &file);
+    for (key, value) in stated {
+        let found = results["actions"][0]["forces"][key].as_f64().unwrap();
+        assert!(
+            (found - value).abs() <= 1e-12 * value.abs(),
+            "{key}: {found}"
+        );
+    }
+}
+
 #[test]
 fn a_yield_stress_that_is_asked_for_and_missing_is_an_error() {
     let folder = tempfile::tempdir().unwrap();

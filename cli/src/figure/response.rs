@@ -22,7 +22,7 @@ use super::{cut, divisions};
 use crate::response::{Names, Response, Responses};
 use crate::section::Units;
 use crate::write::slug;
-use crate::write::units::{moment_per_force, stress_per_force};
+use crate::write::units::{moment_per_force, stress_per_force, unit_of_bimoment};
 use crate::write::{actions, digits};
 
 /// Figures are drawn for so many responses; a file may have hundreds.
@@ -312,7 +312,7 @@ impl Scene<'_> {
 pub fn described(units: &Units, response: &Response) -> String {
     let f = &response.forces;
     let moment = moment_per_force(units);
-    let bimoment = format!("{} {}²", units.force, units.length);
+    let bimoment = unit_of_bimoment(units);
     let all = [
         ("N", f.n, units.force),
         ("V_x", f.vx, units.force),
@@ -320,7 +320,7 @@ pub fn described(units: &Units, response: &Response) -> String {
         ("M_x", f.mx * moment, units.moment.as_str()),
         ("M_y", f.my * moment, units.moment.as_str()),
         ("T", f.t * moment, units.moment.as_str()),
-        ("B", f.b, bimoment.as_str()),
+        ("B", f.b * moment, bimoment.as_str()),
         ("T_w", f.tw * moment, units.moment.as_str()),
     ];
     let parts: Vec<String> = all

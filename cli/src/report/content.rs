@@ -10,7 +10,7 @@ use super::document::{Block, Figure, Row, Table};
 use crate::digest::sha256;
 use crate::response::{Response, Responses};
 use crate::write::digits::{self, short};
-use crate::write::units::{moment_per_force, pretty, stress_per_force};
+use crate::write::units::{moment_per_force, pretty, stress_per_force, unit_of_bimoment};
 use crate::write::{CAUTION, seams, wording};
 
 /// The blocks of the report, in order.
@@ -258,9 +258,11 @@ fn answers(input: &Input, responses: &Responses, out: &mut Vec<Block>) {
     };
     out.push(Block::Table(Table {
         caption: format!(
-            "Section forces: N, V in {}, moments and torques in {}, B in {} {}²; T with the torque of the line of action, which \
-             is given beside it",
-            units.force, units.moment, units.force, units.length
+            "Section forces: N, V in {}, moments and torques in {}, B in {}; T with the torque of the line of \
+             action, which is given beside it",
+            units.force,
+            units.moment,
+            unit_of_bimoment(units)
         ),
         columns: vec![
             "Action", "#N", "#V_x", "#V_y", "V through", "#M_x", "#M_y", "#T", "#of the line", "#T_w", "#B",
@@ -282,7 +284,7 @@ fn answers(input: &Input, responses: &Responses, out: &mut Vec<Block>) {
                     number(f.t * moment),
                     number(r.offset_torque * moment),
                     number(f.tw * moment),
-                    number(f.b),
+                    number(f.b * moment),
                 ])
             })
             .collect(),

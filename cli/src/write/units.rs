@@ -47,6 +47,12 @@ pub fn in_print(dimension: Dimension, figure: &Figure, units: &Units) -> Figure 
     }
 }
 
+/// The unit of bimoments, that of moments times that of length, as section files state them: `kN m·mm`.
+#[must_use]
+pub fn unit_of_bimoment(units: &Units) -> String {
+    format!("{}·{}", units.moment, units.length)
+}
+
 /// Pounds of force in newtons: the pound is 0.45359237 kg and standard gravity 9.80665 m/s², both by
 /// definition.
 const POUND_FORCE: f64 = 0.453_592_37 * 9.806_65;

@@ -55,7 +55,8 @@ pub struct Action {
     pub materials: Vec<Within>,
 }
 
-/// Section forces: N, V in the unit of force; M, T, Tw in the unit of moment; B in force × length².
+/// Section forces in the units in which a section file states them: N, V in that of force; M, T, Tw in
+/// that of moment; B in that of moment times that of length.
 #[derive(Clone, Debug, Serialize)]
 #[serde(rename_all = "PascalCase")]
 #[allow(missing_docs)]
@@ -213,7 +214,7 @@ fn forces(units: &Units, f: &SectionForces) -> Forces {
         mx: z(f.mx * moment),
         my: z(f.my * moment),
         t: z(f.t * moment),
-        b: z(f.b),
+        b: z(f.b * moment),
         tw: z(f.tw * moment),
     }
 }
