@@ -221,13 +221,13 @@ fn properties(input: &Input) -> Table {
             group = Some(quantity.group());
             rows.push(Row::Group(wording::heading(quantity.group()).into()));
         }
-        let number = |x: f64| short(x + 0.0, 9);
+        let [low, high] = digits::ends(figure);
         rows.push(Row::Cells(vec![
             wording::name(*quantity).into(),
             quantity.symbol().into(),
             digits::minus_sign(&digits::print(figure).line()),
-            number(figure.low),
-            number(figure.high),
+            low,
+            high,
             pretty(quantity.dimension(), units),
             wording::trust(figure.trust).into(),
         ]));

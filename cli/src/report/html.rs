@@ -134,11 +134,26 @@ fn table(out: &mut String, table: &Table) {
 fn figure(out: &mut String, figure: &Figure) {
     let caption = escape(&figure.caption);
     let data = STANDARD.encode(&figure.svg);
+    let class = if is_tall(&figure.svg) {
+        " class=\"tall\""
+    } else {
+        ""
+    };
     let _ = writeln!(
         out,
-        "<figure><img alt=\"{caption}\" src=\"data:image/svg+xml;base64,{data}\">\
+        "<figure{class}><img alt=\"{caption}\" src=\"data:image/svg+xml;base64,{data}\">\
          <figcaption>{caption}</figcaption></figure>"
     );
+}
+
+/// Whether a figure is so high that it needs a printed page for itself.
+fn is_tall(svg: &str) -> bool {
+    let view = svg.split_once("viewBox=\"").map_or("", |(_, rest)| rest);
+    let mut numbers = view.split(['"', ' ']).skip(2).map(str::parse::<f64>);
+    match (numbers.next(), numbers.next()) {
+        (Some(Ok(width)), Some(Ok(height))) => height > 1.3 * width,
+        _ => false,
+    }
 }
 
 /// Text as the content of an element or an attribute.

@@ -45,6 +45,10 @@ pub struct Input<'a> {
     pub watched: bool,
 }
 
+/// Print width of a report's figures, mm: two of them fit a page one above the other, at the size for
+/// which their text is set.
+pub const FIGURE_WIDTH: f64 = 110.0;
+
 /// The page.
 pub const HTML: &str = "report.html";
 

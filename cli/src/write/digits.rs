@@ -136,6 +136,34 @@ pub fn up(value: f64, digits: i32) -> String {
     short((value / digit - 1e-9).ceil() * digit, digits)
 }
 
+/// The ends of an enclosure, for a table: to a hundredth of its half-width or finer, rounded outwards, but to nine
+/// significant digits at most and then to the nearest.
+#[must_use]
+pub fn ends(figure: &Figure) -> [String; 2] {
+    let (low, high) = (figure.low, figure.high);
+    let half = 0.5 * (high - low);
+    let size = low.abs().max(high.abs());
+    let place = |x: f64| x.log10().floor() as i32;
+    let digits = if half > 0.0 && size.is_finite() {
+        place(size) - place(half) + 3
+    } else {
+        9
+    };
+    if digits >= 9 {
+        return [low, high].map(|x| short(x + 0.0, 9));
+    }
+    let power = place(size) + 1 - digits;
+    let unit = |x: f64, round: fn(f64) -> f64| {
+        // Multiplied or divided by a whole power of ten, so that 0.3 does not become 0.30000000000000004.
+        if power >= 0 {
+            round(x / 10.0_f64.powi(power)) * 10.0_f64.powi(power)
+        } else {
+            round(x * 10.0_f64.powi(-power)) / 10.0_f64.powi(-power)
+        }
+    };
+    [unit(low, f64::floor), unit(high, f64::ceil)].map(|x| short(x + 0.0, digits + 1))
+}
+
 /// A share that bounds an error, in percent to two digits, rounded up.
 #[must_use]
 pub fn percent_up(share: f64) -> String {

@@ -30,38 +30,11 @@ pub(super) fn write_folder(
     let write_start = Instant::now();
     let section = &answer.read.section;
     let mut written: Vec<(String, Vec<u8>)> = Vec::new();
-    let style = Style {
-        width_mm: args.width,
-        drawing: if args.contours {
-            Drawing::Lines
-        } else {
-            Drawing::Bands
-        },
-    };
-    let mut figures = figure::all(
-        &section.title,
-        &section.units,
-        &answer.read.domain,
-        &section.materials,
-        &answer.solution,
-        style,
-    );
+    let figures = figures(args, answer, args.width);
     if let Some(responses) = &answer.responses {
-        figures.extend(figure::responses(
-            &section.title,
-            &section.units,
-            &answer.read.domain,
-            &answer.solution,
-            &answer.names(),
-            responses,
-            style,
-        ));
         written.extend(response_files(args, answer, responses));
     }
     if let Some(interaction) = Interaction::new(&answer.solution) {
-        let drawn =
-            figure::interaction::draw(&section.title, &section.units, &interaction, args.width);
-        figures.push(("interaction.svg".into(), drawn.svg));
         let table = interaction::csv(&section.units, &interaction);
         written.push(("interaction.csv".into(), table.into_bytes()));
     }
@@ -75,9 +48,10 @@ pub(super) fn write_folder(
     let table = csv::properties(&section.units, &answer.solution, answer.reference());
     written.push(("properties.csv".into(), table.into_bytes()));
     if args.report {
+        let printed = self::figures(args, answer, report::FIGURE_WIDTH);
         let input = report::Input {
             watched: args.watch,
-            ..answer.report(&figures, args.corner_distance)
+            ..answer.report(&printed, args.corner_distance)
         };
         written.push((report::HTML.into(), report::html(&input).into_bytes()));
         written.push((
@@ -109,6 +83,33 @@ pub(super) fn write_folder(
         .map(|(name, bytes)| (name.as_str(), bytes.as_slice()))
         .collect();
     files::write_all(folder, &answer.source, &named).map_err(|e| e.to_string())
+}
+
+/// Every figure at a print width in mm: the name of its file and its SVG.
+fn figures(args: &SolveArgs, answer: &Answer, width: f64) -> Vec<(String, String)> {
+    let section = &answer.read.section;
+    let (title, units, domain) = (&section.title, &section.units, &answer.read.domain);
+    let style = Style {
+        width_mm: width,
+        drawing: if args.contours {
+            Drawing::Lines
+        } else {
+            Drawing::Bands
+        },
+    };
+    let solution = &answer.solution;
+    let mut figures = figure::all(title, units, domain, &section.materials, solution, style);
+    if let Some(responses) = &answer.responses {
+        let names = answer.names();
+        figures.extend(figure::responses(
+            title, units, domain, solution, &names, responses, style,
+        ));
+    }
+    if let Some(interaction) = Interaction::new(solution) {
+        let drawn = figure::interaction::draw(title, units, &interaction, width);
+        figures.push(("interaction.svg".into(), drawn.svg));
+    }
+    figures
 }
 
 /// Tables and fields of the responses.

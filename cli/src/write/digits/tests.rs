@@ -141,3 +141,38 @@ fn bounds_of_errors_round_up() {
     assert_eq!(percent_up(0.123_4), "13 %");
     assert_eq!(percent_up(2.0e-5), "0.002 %");
 }
+
+#[test]
+fn ends_are_as_fine_as_their_distance_and_never_inwards() {
+    let of = |low: f64, high: f64| {
+        ends(&Figure {
+            value: 0.5 * (low + high),
+            low,
+            high,
+            trust: Trust::Bounded,
+        })
+    };
+    assert_eq!(
+        of(1_338_545.328, 1_338_667.641),
+        ["1.3385453×10⁶", "1.3386677×10⁶"]
+    );
+    assert_eq!(
+        of(-2.100_013_57e-11, 2.099_986_43e-11),
+        ["−21.1×10⁻¹²", "21×10⁻¹²"]
+    );
+    assert_eq!(
+        of(-0.000_263_795_979, 0.000_259_802_288),
+        ["−264×10⁻⁶", "260×10⁻⁶"]
+    );
+    assert_eq!(of(13_407.928_5, 13_407.928_5), ["13407.9285", "13407.9285"]);
+    assert_eq!(of(0.0, 0.0), ["0", "0"]);
+    for (low, high) in [
+        (1.0 / 3.0, 0.5),
+        (-7.77e-5, 1e9),
+        (99.99, 100.01),
+        (-1e-300, 1e300),
+    ] {
+        let [below, above] = of(low, high);
+        assert!(!below.is_empty() && !above.is_empty());
+    }
+}
