@@ -118,7 +118,7 @@ pub(crate) fn solve(
 
     let scaled = scaled_moments(&moments, &frame);
     let start = Instant::now();
-    let tables = Tables::new(order);
+    let tables = Tables::of(order);
     clock.assemble += start.elapsed().as_secs_f64();
     let mut levels: Vec<Level> = Vec::new();
     let mut eigenvalue = f64::NAN;
@@ -128,7 +128,7 @@ pub(crate) fn solve(
             &frame,
             &scaled,
             &mixture.ratios,
-            &tables,
+            tables,
             levels.is_empty(),
             &mut clock,
         )?;

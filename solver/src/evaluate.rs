@@ -125,7 +125,7 @@ impl<'a> Evaluator<'a> {
         let kernel = Kernel {
             geometry: &self.geometry,
             space: self.space,
-            tables: &self.solved.tables,
+            tables: self.solved.tables,
             ratios: &self.solved.ratios,
         };
         let mut nodes = Vec::new();

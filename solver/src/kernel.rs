@@ -315,25 +315,37 @@ impl<'a> Kernel<'a> {
         })
     }
 
-    /// `∫ e u v` against every node function: the mass matrix times a node field, over the nodes.
+    /// `e w det` at the points of every triangle's table, one triangle after the other: what
+    /// [`Self::mass_times`] takes, so that the maps are not made again for every field.
     #[must_use]
-    pub fn mass_times(&self, field: &[f64]) -> Vec<f64> {
-        let mut out = vec![0.0; field.len()];
+    pub fn mass_weights(&self) -> Vec<f64> {
         let mut work = Workspace::default();
+        let mut out = Vec::new();
         for t in 0..self.triangles() {
-            let table = &self.enter(t, &mut work).table;
-            let n = table.functions;
+            let weights = &self.enter(t, &mut work).table.rule.weights;
             let e = self.ratio(t).e;
-            for (q, at) in work.maps.iter().enumerate() {
-                let values = &table.value[q * n..(q + 1) * n];
-                let u: f64 = work
-                    .nodes
-                    .iter()
-                    .zip(values)
-                    .map(|(&i, v)| field[i] * v)
-                    .sum();
-                let w = e * table.rule.weights[q] * at.det * u;
-                for (&i, v) in work.nodes.iter().zip(values) {
+            out.extend(work.maps.iter().zip(weights).map(|(at, w)| e * w * at.det));
+        }
+        out
+    }
+
+    /// `∫ e u v` against every node function: the mass matrix times a node field, over the nodes.
+    /// `weights`: those of [`Self::mass_weights`].
+    #[must_use]
+    pub fn mass_times(&self, weights: &[f64], field: &[f64]) -> Vec<f64> {
+        let mut out = vec![0.0; field.len()];
+        let mut nodes = Vec::new();
+        let mut rest = weights;
+        for t in 0..self.triangles() {
+            let table = &self.tabulated(self.geometry.map(t).is_straight()).table;
+            self.space.fill_nodes(t, &mut nodes);
+            let n = table.functions;
+            let (own, others) = rest.split_at(table.rule.weights.len());
+            rest = others;
+            for (values, weight) in table.value.chunks_exact(n).zip(own) {
+                let u: f64 = nodes.iter().zip(values).map(|(&i, v)| field[i] * v).sum();
+                let w = weight * u;
+                for (&i, v) in nodes.iter().zip(values) {
                     out[i] += w * v;
                 }
             }

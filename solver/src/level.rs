@@ -252,7 +252,8 @@ fn least_eigenvalue(
 ) -> Result<f64, SolveError> {
     let dot = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(p, q)| p * q).sum::<f64>();
     let ones = vec![1.0; kernel.space.nodes()];
-    let mass_of_one = kernel.mass_times(&ones);
+    let weights = kernel.mass_weights();
+    let mass_of_one = kernel.mass_times(&weights, &ones);
     // A fixed sequence without structure: the multiples of the golden ratio, modulo 1.
     let mut field: Vec<f64> = (0..kernel.space.nodes())
         .map(|i| (i as f64 * 0.618_033_988_749_894_9).fract() - 0.5)
@@ -264,7 +265,7 @@ fn least_eigenvalue(
         for v in &mut field {
             *v -= mean;
         }
-        let load = kernel.mass_times(&field);
+        let load = kernel.mass_times(&weights, &field);
         let norm = dot(&field, &load);
         if let Some(energy) = last {
             quotient = energy / norm;

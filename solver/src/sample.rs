@@ -74,7 +74,7 @@ fn everywhere<T: Send>(
     let Some(evaluator) = Evaluator::new(solution) else {
         return Vec::new();
     };
-    let table = PointTable::new(&evaluator.solved.tables, reference(lattice));
+    let table = PointTable::new(evaluator.solved.tables, reference(lattice));
     (0..evaluator.triangles())
         .into_par_iter()
         .flat_map_iter(|t| {

@@ -115,7 +115,7 @@ pub(crate) struct Solved {
     /// Bounds on what the projection of the sources leaves out, by source.
     pub oscillation: [f64; 3],
     pub fields: Fields,
-    pub tables: Tables,
+    pub tables: &'static Tables,
 }
 
 impl Solution {

@@ -1,7 +1,9 @@
 //! Everything that depends on the order of the elements alone, made once.
 
+use std::sync::OnceLock;
+
 use crate::element::divergence::DivergenceFields;
-use crate::element::lagrange::Lagrange;
+use crate::element::lagrange::{Lagrange, MAX_ORDER};
 use crate::element::table::Table;
 
 /// A table with the fields of given divergence at its points.
@@ -43,7 +45,17 @@ pub const fn curved_source_degree(order: usize) -> usize {
     order + 4
 }
 
+/// By order, from 1.
+static MADE: [OnceLock<Tables>; MAX_ORDER] = [const { OnceLock::new() }; MAX_ORDER];
+
 impl Tables {
+    /// The tables of `order`, from 1 to [`MAX_ORDER`], made when they are first asked for: they depend on
+    /// nothing else, and many sections need the same.
+    #[must_use]
+    pub fn of(order: usize) -> &'static Self {
+        MADE[order - 1].get_or_init(|| Self::new(order))
+    }
+
     /// The tables of `order`.
     #[must_use]
     pub fn new(order: usize) -> Self {

@@ -149,7 +149,7 @@ fn check_balance(name: &str, s: &Seamed) {
     let kernel = Kernel {
         geometry: &geometry,
         space: Space::new(&s.solution.mesh, s.solution.order),
-        tables: &solved.tables,
+        tables: solved.tables,
         ratios: &solved.ratios,
     };
     let torsion = &solved.fields.torsion;

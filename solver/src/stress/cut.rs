@@ -97,7 +97,7 @@ pub fn cut(
         let ready = evaluator.ready(middle.triangle);
         for &(u, weight) in &gauss {
             let at = in_triangle(a + u * (b - a));
-            let table = PointTable::single(&evaluator.solved.tables, at.reference, &ready);
+            let table = PointTable::single(evaluator.solved.tables, at.reference, &ready);
             let here = evaluator.at(&ready, &table, 0);
             let tau = fields.superposition.equilibrated(&here, forces);
             let sigma = fields

@@ -173,7 +173,7 @@ fn rim(
                     bad = middle;
                 }
             }
-            let table = PointTable::single(&evaluator.solved.tables, good, &ready);
+            let table = PointTable::single(evaluator.solved.tables, good, &ready);
             let at = evaluator.at(&ready, &table, 0);
             out.push(RimPoint {
                 at: Located {
@@ -297,7 +297,7 @@ const HALVINGS: usize = 9;
 impl Search<'_> {
     fn unit(&self, p: [f64; 2]) -> (Point, UnitStress) {
         let solved = self.evaluator.solved;
-        let table = PointTable::single(&solved.tables, p, self.ready);
+        let table = PointTable::single(solved.tables, p, self.ready);
         let at = self.evaluator.at(self.ready, &table, 0);
         // Coordinates keep the digits that rounding leaves, so that 0 and 200 are just that.
         let digits = 11 - solved.frame.scale.log10().floor() as i32;

@@ -84,7 +84,7 @@ pub fn weighted_points(solution: &Solution, fields: &UnitFields) -> Vec<Weighted
         return Vec::new();
     };
     let solved = evaluator.solved;
-    let tables = &solved.tables;
+    let tables = solved.tables;
     let rules = [&tables.straight.table.rule, &tables.curved.table.rule];
     let points = rules.map(|r| PointTable::new(tables, r.points.clone()));
     (0..evaluator.triangles())
@@ -118,7 +118,7 @@ impl UnitFields {
         let evaluator = Evaluator::new(solution)?;
         let superposition = Superposition::new(&evaluator);
         let lattice = Lattice::new(divisions);
-        let table = PointTable::new(&evaluator.solved.tables, reference(&lattice));
+        let table = PointTable::new(evaluator.solved.tables, reference(&lattice));
         let all: Vec<(Point, UnitStress)> = (0..evaluator.triangles())
             .into_par_iter()
             .flat_map_iter(|t| {
@@ -160,7 +160,7 @@ impl Superposition {
     pub(crate) fn new(evaluator: &Evaluator) -> Self {
         let solved = evaluator.solved;
         let raw = unit_weights(solved);
-        let tables = &solved.tables;
+        let tables = solved.tables;
         let rules = [&tables.straight.table.rule, &tables.curved.table.rule];
         let points = rules.map(|r| PointTable::new(tables, r.points.clone()));
         let centre = solved.shear.centre.map(|c| c.value);

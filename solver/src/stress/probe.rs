@@ -63,7 +63,7 @@ pub(super) fn stress_in(
     at: &Located,
 ) -> Stress {
     let ready = evaluator.ready(at.triangle);
-    let table = PointTable::single(&evaluator.solved.tables, at.reference, &ready);
+    let table = PointTable::single(evaluator.solved.tables, at.reference, &ready);
     let point = evaluator.at(&ready, &table, 0);
     fields
         .superposition

@@ -154,7 +154,7 @@ fn unit_forces() -> [SectionForces; 8] {
 fn resultants(solution: &Solution, fields: &UnitFields, forces: &SectionForces) -> [f64; 8] {
     let evaluator = Evaluator::new(solution).unwrap();
     let solved = evaluator.solved;
-    let tables = &solved.tables;
+    let tables = solved.tables;
     let rules = [&tables.straight.table.rule, &tables.curved.table.rule];
     let points = rules.map(|r| PointTable::new(tables, r.points.clone()));
     let length = solved.frame.scale;
@@ -222,7 +222,7 @@ fn no_shear_crosses_a_free_edge() {
         let (_, solution) = solved(outline, 0.3, 1e-3);
         let fields = UnitFields::new(&solution, 2).unwrap();
         let evaluator = Evaluator::new(&solution).unwrap();
-        let tables = &evaluator.solved.tables;
+        let tables = evaluator.solved.tables;
         let steps = [0.0, 0.13, 0.5, 0.77, 1.0];
         let corner = [[0.0, 0.0], [1.0, 0.0], [0.0, 1.0]];
         for forces in unit_forces().iter().filter(|f| f.vx + f.vy + f.t != 0.0) {
@@ -462,7 +462,7 @@ fn no_point_of_the_rim_has_more_than_is_quoted() {
             .flat_map(|p| locate(&evaluator, p))
             .map(|at| {
                 let ready = evaluator.ready(at.triangle);
-                let table = PointTable::single(&evaluator.solved.tables, at.reference, &ready);
+                let table = PointTable::single(evaluator.solved.tables, at.reference, &ready);
                 let point = evaluator.at(&ready, &table, 0);
                 fields.superposition.unit_stress(evaluator.solved, &point)
             })
