@@ -104,7 +104,7 @@ pub fn draw(title: &str, units: &Units, interaction: &Interaction, width: f64) -
         "Over Mx the neutral axis is parallel to x, over My to y; the other moment is as it comes. N is \
          positive in tension."
             .to_string(),
-        LIMITS.to_string(),
+        digits::minus_sign(LIMITS),
     ];
     page.finish(&notes, PLASTIC_CAUTION)
 }

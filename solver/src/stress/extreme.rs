@@ -203,10 +203,10 @@ pub fn extremes(
     let yield_of = |piece: u32| yield_stress.get(piece as usize).copied().flatten();
     let mut best: [(f64, Option<Located>); Measure::ALL.len()] =
         [(f64::NEG_INFINITY, None); Measure::ALL.len()];
-    let mut offer = |unit: &UnitStress, limit: Option<f64>, at: &dyn Fn() -> Located| {
+    let mut offer = |unit: &UnitStress, limit: Option<f64>, at: Located| {
         for (slot, r) in best.iter_mut().zip(ranks(&unit.under(forces), limit)) {
             if r > slot.0 {
-                *slot = (r, Some(at()));
+                *slot = (r, Some(at));
             }
         }
     };
@@ -215,16 +215,17 @@ pub fn extremes(
         for (p, unit) in units.iter().enumerate() {
             if quotable.allowed[t * per + p] {
                 let [_, xi, eta] = fields.lattice.points[p];
-                offer(unit, limit, &|| Located {
+                let at = Located {
                     triangle: t,
                     reference: [xi, eta],
-                });
+                };
+                offer(unit, limit, at);
             }
         }
     }
     for point in &quotable.rim {
         let limit = yield_of(solution.mesh.piece[point.at.triangle]);
-        offer(&point.unit, limit, &|| point.at);
+        offer(&point.unit, limit, point.at);
     }
     let mut ready: Vec<(usize, Ready)> = Vec::new();
     let mut out = Vec::new();
